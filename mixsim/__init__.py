@@ -1,0 +1,1 @@
+"""Permittivity and permeability of dielectric mixtures from one recipe."""
