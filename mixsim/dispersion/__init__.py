@@ -1,0 +1,21 @@
+"""Dispersion: terms, index models and measured tables as functions of angular frequency."""
+
+from __future__ import annotations
+
+from mixsim.dispersion.descriptions import width_from_wavelength
+from mixsim.dispersion.index import INDEX_MODELS, IndexModel
+from mixsim.dispersion.registry import TERMS, Parameter, Route, Term
+from mixsim.dispersion.table import Table, interpolate, read_table
+
+__all__ = [
+    "INDEX_MODELS",
+    "TERMS",
+    "IndexModel",
+    "Parameter",
+    "Route",
+    "Table",
+    "Term",
+    "interpolate",
+    "read_table",
+    "width_from_wavelength",
+]

@@ -1,0 +1,275 @@
+"""The register of terms: name → pure function, its parameters, and the words that may give them.
+
+A new term is one function with its `_low` in `terms`, its test and one entry of `TERMS`.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterable, Mapping
+from dataclasses import dataclass
+from typing import Any
+
+from mixsim.dispersion import descriptions, terms
+from mixsim.errors import Refusal, nearest
+
+
+@dataclass(frozen=True, slots=True)
+class Parameter:
+    """One number (or list of numbers) of a term or index model.
+
+    Attributes
+    ----------
+    name
+        Word in the recipe.
+    dimension
+        Name of its dimension in `mixsim.units`.
+    minimum, exclusive
+        Least SI value allowed, or None; and whether it is itself refused.
+    default
+        Value in SI where the recipe may leave it out without changing what is meant, or None.
+    meaning
+        What it is, for people.
+    is_list
+        Whether it takes a list of such numbers.
+    """
+
+    name: str
+    dimension: str
+    minimum: float | None
+    exclusive: bool
+    default: float | None
+    meaning: str
+    is_list: bool = False
+
+
+@dataclass(frozen=True, slots=True)
+class Route:
+    """One way to give a canonical parameter.
+
+    Attributes
+    ----------
+    key
+        Parameter whose presence chooses this way.
+    function
+        Pure function of `needs`, by their names; None where `key` is the canonical parameter itself.
+    also
+        Other parameters that it reads; they may have defaults, and may be read elsewhere too.
+    """
+
+    key: str
+    function: Callable[..., Any] | None = None
+    also: tuple[str, ...] = ()
+
+    @property
+    def needs(self) -> tuple[str, ...]:
+        """Every parameter that this way reads."""
+        return (self.key, *self.also)
+
+
+@dataclass(frozen=True, slots=True)
+class Term:
+    """One registered term.
+
+    Attributes
+    ----------
+    name
+        Word in the recipe.
+    function
+        ``function(omega, **canonical parameters)``: contribution to ε or μ.
+    low
+        ``low(**canonical parameters)`` as (rate, plateau): value → i·rate/ω + plateau as ω → 0.
+    canonical
+        For each parameter of these two, the ways to give it.
+    parameters
+        Every parameter that a recipe may write, by name.
+    summary, equation, source
+        What a person wants to know of it, as text.
+    """
+
+    name: str
+    function: Callable[..., Any]
+    low: Callable[..., tuple[Any, Any]]
+    canonical: Mapping[str, tuple[Route, ...]]
+    parameters: Mapping[str, Parameter]
+    summary: str
+    equation: str
+    source: str
+
+    def resolve(self, given: Iterable[str]) -> Mapping[str, Route]:
+        """The way in which each canonical parameter is given.
+
+        Parameters
+        ----------
+        given
+            Names of the parameters that are given.
+
+        Returns
+        -------
+        routes
+            One way for each canonical parameter, in the order of `canonical`.
+
+        Raises
+        ------
+        Refusal
+            Where a parameter is unknown, missing, given in two ways, or used by none of the ways chosen.
+
+        Examples
+        --------
+        >>> routes = TERMS["lorentz"].resolve({"step", "resonance", "damping"})
+        >>> routes["plasma"].key, routes["plasma"].function.__name__
+        ('step', 'plasma_from_step')
+        """
+        names = set(given)
+        for name in sorted(names - set(self.parameters)):
+            allowed = f"a {self.name} term takes {', '.join(self.parameters)}"
+            raise Refusal(f"unknown parameter {name!r}", allowed, nearest(name, self.parameters))
+        chosen = {canonical: self._chosen(canonical, names) for canonical in self.canonical}
+        for route in chosen.values():
+            missing = [name for name in self._required(route) if name not in names]
+            if missing:
+                absent = " and ".join(missing)
+                raise Refusal(
+                    f"{route.key} is given without {absent}", f"{route.key} needs {absent} beside it"
+                )
+        used = {name for route in chosen.values() for name in route.needs}
+        for name in self.parameters:
+            if name in names - used:
+                raise Refusal(
+                    f"{name} has no part in a {self.name} term given by "
+                    + ", ".join(dict.fromkeys(route.key for route in chosen.values())),
+                    f"leave it out, or give it with {' or '.join(self._companions(name))}",
+                )
+        return chosen
+
+    def _chosen(self, canonical: str, names: set[str]) -> Route:
+        routes = self.canonical[canonical]
+        taken = [route for route in routes if route.key in names]
+        if not taken:
+            ways = ", or ".join(" with ".join((r.key, *self._required(r))) for r in routes)
+            raise Refusal(f"{canonical} of a {self.name} term is not given", f"give {ways}")
+        if len(taken) > 1:
+            both = " and ".join(route.key for route in taken)
+            raise Refusal(
+                f"{canonical} of a {self.name} term is given {len(taken)} times, by {both}",
+                "they exclude each other: give one of them",
+            )
+        return taken[0]
+
+    def _required(self, route: Route) -> tuple[str, ...]:
+        return tuple(name for name in route.also if self.parameters[name].default is None)
+
+    def _companions(self, name: str) -> list[str]:
+        routes = [route for ways in self.canonical.values() for route in ways]
+        return list(dict.fromkeys(route.key for route in routes if name in route.also))
+
+
+def positive(name: str, dimension: str, meaning: str) -> Parameter:
+    """Parameter that must be above zero and has no default."""
+    return Parameter(name, dimension, minimum=0.0, exclusive=True, default=None, meaning=meaning)
+
+
+def not_negative(name: str, dimension: str, meaning: str, default: float | None = None) -> Parameter:
+    """Parameter that must be zero or above."""
+    return Parameter(name, dimension, minimum=0.0, exclusive=False, default=default, meaning=meaning)
+
+
+def by_name(*parameters: Parameter) -> Mapping[str, Parameter]:
+    """Parameters by their names."""
+    return {parameter.name: parameter for parameter in parameters}
+
+
+TERMS: Mapping[str, Term] = {
+    term.name: term
+    for term in (
+        Term(
+            name="lorentz",
+            function=terms.lorentz,
+            low=terms.lorentz_low,
+            canonical={
+                "plasma": (
+                    Route("plasma", descriptions.plasma_scaled, also=("strength",)),
+                    Route("step", descriptions.plasma_from_step, also=("resonance",)),
+                    Route("number_density", descriptions.plasma_from_number_density, also=("strength",)),
+                ),
+                "resonance": (Route("resonance"),),
+                "damping": (Route("damping"),),
+            },
+            parameters=by_name(
+                not_negative("plasma", "spectral", "plasma frequency"),
+                not_negative(
+                    "strength",
+                    "number",
+                    "multiplies plasma²; with number_density, the oscillator strength",
+                    default=1.0,
+                ),
+                not_negative("step", "number", "static contribution"),
+                not_negative("number_density", "number density", "oscillators per volume"),
+                positive("resonance", "spectral", "resonance frequency"),
+                not_negative("damping", "rate", "full width at half maximum"),
+            ),
+            summary="bound oscillators: an absorption band and the step that it leaves below it",
+            equation="ωp² / (ω₀² − ω² − iΓω)",
+            source="H. A. Lorentz, The Theory of Electrons, 1909",
+        ),
+        Term(
+            name="drude",
+            function=terms.drude,
+            low=terms.drude_low,
+            canonical={
+                "plasma": (
+                    Route("plasma", descriptions.plasma_scaled, also=("strength",)),
+                    Route("carrier_density", descriptions.plasma_from_carriers, also=("effective_mass",)),
+                    Route("conductivity", descriptions.plasma_from_conductivity, also=("collision_time",)),
+                ),
+                "damping": (
+                    Route("damping"),
+                    Route("mobility", descriptions.damping_from_mobility, also=("effective_mass",)),
+                    Route("collision_time", descriptions.damping_from_collision_time),
+                ),
+            },
+            parameters=by_name(
+                not_negative("plasma", "spectral", "plasma frequency, unscreened"),
+                not_negative("strength", "number", "multiplies plasma²", default=1.0),
+                not_negative("carrier_density", "number density", "free carriers per volume"),
+                positive("effective_mass", "electron masses", "effective mass in electron masses"),
+                not_negative("conductivity", "conductivity", "dc conductivity"),
+                not_negative("damping", "rate", "collision rate"),
+                positive("mobility", "mobility", "mobility of the carriers"),
+                positive("collision_time", "time", "time between collisions"),
+            ),
+            summary="free carriers with one collision rate",
+            equation="−ωp² / (ω² + iγω)",
+            source="P. Drude, Ann. Phys. 306, 566 (1900)",
+        ),
+        Term(
+            name="debye",
+            function=terms.debye,
+            low=terms.debye_low,
+            canonical={
+                "step": (Route("step"),),
+                "relaxation_time": (
+                    Route("relaxation_time"),
+                    Route("relaxation_frequency", descriptions.relaxation_time_from_frequency),
+                ),
+            },
+            parameters=by_name(
+                not_negative("step", "number", "static contribution"),
+                positive("relaxation_time", "time", "relaxation time"),
+                positive("relaxation_frequency", "spectral", "relaxation frequency, 1/(2πτ)"),
+            ),
+            summary="relaxation of dipoles with one relaxation time",
+            equation="Δ / (1 − iωτ)",
+            source="P. Debye, Polar Molecules, 1929",
+        ),
+        Term(
+            name="conduction",
+            function=terms.conduction,
+            low=terms.conduction_low,
+            canonical={"conductivity": (Route("conductivity"),)},
+            parameters=by_name(not_negative("conductivity", "conductivity", "dc conductivity")),
+            summary="conduction of charge, below the collision rate of the carriers",
+            equation="iσ / (ε₀ω)",
+            source="Ampère–Maxwell law",
+        ),
+    )
+}

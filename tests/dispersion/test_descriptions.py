@@ -1,0 +1,102 @@
+"""Descriptions: every way to give a term gives the same term."""
+
+from __future__ import annotations
+
+import numpy as np
+import pytest
+
+from mixsim.dispersion import TERMS, width_from_wavelength
+from mixsim.errors import Refusal
+from mixsim.units import (
+    ELECTRON_MASS,
+    ELEMENTARY_CHARGE,
+    SPEED_OF_LIGHT,
+    VACUUM_PERMITTIVITY,
+    read,
+    spectral_from,
+)
+
+PLASMA, RESONANCE, DAMPING, MASS, TIME = 2.4e15, 3.1e15, 1.8e14, 0.35, 8.27e-12
+DENSITY = PLASMA**2 * VACUUM_PERMITTIVITY * ELECTRON_MASS / ELEMENTARY_CHARGE**2
+LINE = {"resonance": RESONANCE, "damping": DAMPING}
+
+# One term and the numbers of each other data sheet, worked out here from the plain definitions.
+SAME = [
+    ("lorentz", {"plasma": PLASMA, **LINE}),
+    ("lorentz", {"plasma": 2 * PLASMA, "strength": 0.25, **LINE}),
+    ("lorentz", {"step": (PLASMA / RESONANCE) ** 2, **LINE}),
+    ("lorentz", {"number_density": DENSITY, **LINE}),
+    ("lorentz", {"number_density": 4 * DENSITY, "strength": 0.25, **LINE}),
+    ("drude", {"plasma": PLASMA, "damping": DAMPING}),
+    ("drude", {"plasma": PLASMA / 3, "strength": 9.0, "damping": DAMPING}),
+    ("drude", {"plasma": PLASMA, "collision_time": 1 / DAMPING}),
+    ("drude", {"carrier_density": DENSITY * MASS, "effective_mass": MASS, "damping": DAMPING}),
+    (
+        "drude",
+        {
+            "carrier_density": DENSITY * MASS,
+            "effective_mass": MASS,
+            "mobility": ELEMENTARY_CHARGE / (DAMPING * MASS * ELECTRON_MASS),
+        },
+    ),
+    (
+        "drude",
+        {
+            "conductivity": VACUUM_PERMITTIVITY * PLASMA**2 / DAMPING,
+            "collision_time": 1 / DAMPING,
+        },
+    ),
+    ("debye", {"step": 73.16, "relaxation_time": TIME}),
+    ("debye", {"step": 73.16, "relaxation_frequency": spectral_from(1 / (2 * np.pi * TIME), "Hz")}),
+    ("conduction", {"conductivity": 0.3}),
+]
+CANONICAL = {
+    "lorentz": {"plasma": PLASMA, **LINE},
+    "drude": {"plasma": PLASMA, "damping": DAMPING},
+    "debye": {"step": 73.16, "relaxation_time": TIME},
+    "conduction": {"conductivity": 0.3},
+}
+
+
+@pytest.mark.parametrize(("name", "given"), SAME, ids=[f"{n}: {', '.join(g)}" for n, g in SAME])
+def test_equivalent_descriptions_agree(name: str, given: dict[str, float]) -> None:
+    term = TERMS[name]
+    defaults = {key: p.default for key, p in term.parameters.items() if p.default is not None}
+    values = {**defaults, **given}
+    canonical = {}
+    for key, route in term.resolve(given).items():
+        inputs = {needed: values[needed] for needed in route.needs}
+        canonical[key] = route.function(**inputs) if route.function else inputs[route.key]
+    assert canonical == pytest.approx(CANONICAL[name], rel=1e-12)
+    omega = np.geomspace(1e9, 1e16, 7)
+    np.testing.assert_allclose(
+        term.function(omega, **canonical), term.function(omega, **CANONICAL[name]), rtol=1e-12
+    )
+
+
+def test_every_route_of_the_register_is_compared() -> None:
+    compared = {(name, key) for name, given in SAME for key in given}
+    assert compared == {(name, key) for name, term in TERMS.items() for key in term.parameters}
+
+
+def test_width_in_wavelength_is_the_difference_of_its_two_ends() -> None:
+    def ends(centre: float, width: float) -> float:
+        return spectral_from(centre - width / 2, "nm") - spectral_from(centre + width / 2, "nm")
+
+    resonance = spectral_from(np.array([500.0, 600.0]), "nm")
+    width = np.array([[1e-3], [40.0], [900.0]])
+    value = width_from_wavelength(width * 1e-9, resonance=resonance)
+    truth = [[ends(centre, float(full)) for centre in (500.0, 600.0)] for full in width[:, 0]]
+    np.testing.assert_allclose(value, truth, rtol=1e-9)
+    narrow = 2 * np.pi * SPEED_OF_LIGHT * 1e-12 / (500e-9) ** 2
+    assert value[0, 0] == pytest.approx(narrow, rel=1e-9)
+    leaf = read("40 nm", "rate")
+    assert leaf.dimension == "wavelength width"
+    assert width_from_wavelength(leaf.value, resonance=resonance[1]) == pytest.approx(value[1, 1])
+
+
+def test_width_in_wavelength_must_leave_a_band() -> None:
+    resonance = spectral_from(np.array([300.0, 600.0]), "nm")
+    with pytest.raises(Refusal, match=r"700 nm about 300 nm; .* 600 nm"):
+        width_from_wavelength(700e-9, resonance=resonance)
+    assert np.isnan(width_from_wavelength(np.nan, resonance=resonance)).all()

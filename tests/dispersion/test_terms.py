@@ -1,0 +1,183 @@
+"""Terms: naive transcriptions in many digits, low-frequency behaviour, sum rule, Kramers–Kronig."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from itertools import pairwise
+from typing import Any
+
+import mpmath
+import numpy as np
+import pytest
+from scipy.integrate import quad
+
+from mixsim.dispersion import TERMS
+from mixsim.dispersion.terms import conduction, debye, drude, drude_low, lorentz, lorentz_low
+from mixsim.units import VACUUM_PERMITTIVITY
+
+MP = mpmath.MPContext()  # of our own: the number of digits is global in the shared one
+MP.dps = 60
+J = MP.mpc(0, 1)
+
+# The textbook fractions, written down term by term and not as the code arranges them.
+NAIVE: dict[str, Callable[..., Any]] = {
+    "lorentz": lambda w, plasma, resonance, damping: plasma**2 / (resonance**2 - w**2 - J * w * damping),
+    "drude": lambda w, plasma, damping: -(plasma**2) / (w**2 + J * damping * w),
+    "debye": lambda w, step, relaxation_time: step / (1 - J * w * relaxation_time),
+    "conduction": lambda w, conductivity: J * conductivity / (MP.mpf(VACUUM_PERMITTIVITY) * w),
+}
+CASES = {
+    "lorentz": [
+        {"plasma": 3.0, "resonance": 2.0, "damping": 0.4},
+        {"plasma": 3.0, "resonance": 2.0, "damping": 0.0},
+        {"plasma": 1.1e14, "resonance": 3.1e15, "damping": 4.2e14},
+        {"plasma": 0.0, "resonance": 2.0, "damping": 0.4},
+    ],
+    "drude": [
+        {"plasma": 3.0, "damping": 0.4},
+        {"plasma": 3.0, "damping": 0.0},
+        {"plasma": 2.4e15, "damping": 1.8e14},
+        {"plasma": 0.0, "damping": 0.0},
+    ],
+    "debye": [{"step": 73.16, "relaxation_time": 8.27e-12}, {"step": 2.0, "relaxation_time": 0.5}],
+    "conduction": [{"conductivity": 0.3}, {"conductivity": 0.0}],
+}
+POINTS = [(name, case) for name, cases in CASES.items() for case in cases]
+
+
+def exact(name: str, omega: Any, case: dict[str, float]) -> Any:
+    return NAIVE[name](MP.mpf(omega), **{key: MP.mpf(value) for key, value in case.items()})
+
+
+def test_every_term_of_the_register_is_transcribed() -> None:
+    assert set(NAIVE) == set(CASES) == set(TERMS)
+
+
+@pytest.mark.parametrize(("name", "case"), POINTS)
+def test_term_equals_its_naive_transcription(name: str, case: dict[str, float]) -> None:
+    scale = case.get("resonance") or case.get("damping") or 1.0 / case.get("relaxation_time", 1.0)
+    for factor in (1e-9, 1e-3, 0.7, 0.999999, 1.000001, 1.6, 1e3, 1e9):
+        value = TERMS[name].function(scale * factor, **case)
+        truth = complex(exact(name, scale * factor, case))
+        assert value.real == pytest.approx(truth.real, rel=1e-14, abs=1e-14 * abs(truth)), factor
+        assert value.imag == pytest.approx(truth.imag, rel=1e-14, abs=1e-300), factor
+
+
+@pytest.mark.parametrize(
+    ("name", "case"), [p for p in POINTS if p[1].get("damping") != 0.0 or p[0] == "lorentz"]
+)
+def test_low_is_the_limit_of_zero_frequency(name: str, case: dict[str, float]) -> None:
+    rate, plateau = TERMS[name].low(**case)
+    scale = MP.mpf(case.get("resonance") or case.get("damping") or 1.0)
+    # The next order is ω itself, so half of the 60 digits are left to tell the limit by.
+    omega = scale * MP.mpf("1e-30")
+    value = exact(name, omega, case)
+    assert float(MP.im(value) * omega) == pytest.approx(float(rate), rel=1e-15, abs=1e-28 * float(scale))
+    assert float(MP.re(value)) == pytest.approx(float(plateau), rel=1e-15, abs=1e-28)
+
+
+def test_carriers_without_collisions_have_no_finite_rate() -> None:
+    rate, plateau = drude_low(plasma=[3.0, 0.0, 3.0, np.nan], damping=[0.0, 0.0, 2.0, 0.0])
+    np.testing.assert_array_equal(rate, [np.inf, 0.0, 4.5, np.nan])
+    np.testing.assert_array_equal(plateau, [0.0, 0.0, -2.25, np.nan])
+
+
+@pytest.mark.parametrize(("name", "case"), POINTS)
+def test_terms_vanish_at_high_frequency(name: str, case: dict[str, float]) -> None:
+    assert abs(TERMS[name].function(1e40, **case)) < 1e-8
+
+
+@pytest.mark.parametrize(
+    "value", [lorentz(3.0, plasma=1.0, resonance=2.0, damping=0.0), drude(3.0, plasma=1.0, damping=0.0)]
+)
+def test_loss_free_terms_have_a_loss_of_plus_zero(value: complex) -> None:
+    assert value.real < 0 and value.imag == 0.0 and not np.signbit(value.imag)
+    assert np.sqrt(value).imag > 0  # decays; with -0.0 it would grow
+
+
+def test_undamped_line_is_not_finite_at_its_resonance_alone() -> None:
+    value = lorentz([1.0, 2.0, 3.0], plasma=1.0, resonance=2.0, damping=0.0)
+    np.testing.assert_array_equal(np.isfinite(value), [True, False, True])
+
+
+@pytest.mark.parametrize(
+    "wavenumber",
+    [215.0],
+    ids=["published: Ordal et al., Appl. Opt. 22, 1099 (1983), gold, damping 215 cm^-1"],
+)
+def test_drude_at_its_own_damping(wavenumber: float) -> None:
+    value = drude(wavenumber, plasma=72800.0, damping=wavenumber)
+    assert -value.real == pytest.approx(value.imag, rel=1e-14)
+    assert value.imag == pytest.approx(57326.6, abs=0.06)  # ωp²/(2γ²) from the published pair
+    low = drude_low(plasma=72800.0, damping=wavenumber)
+    assert value.real == pytest.approx(low[1] / 2, rel=1e-14)
+
+
+@pytest.mark.parametrize(
+    ("gigahertz", "truth"),
+    [(1.0, 78.163 + 3.791j), (2.45, 77.193 + 9.165j), (10.0, 62.806 + 29.933j), (50.0, 14.640 + 24.526j)],
+    ids=lambda x: f"memory: Kaatze, J. Chem. Eng. Data 34, 371 (1989), water 25 °C; digits computed {x}",
+)
+def test_debye_of_water(gigahertz: float, truth: complex) -> None:
+    omega = 2e9 * np.pi * gigahertz
+    assert 5.2 + debye(omega, step=78.36 - 5.2, relaxation_time=8.27e-12) == pytest.approx(truth, abs=8e-4)
+
+
+def test_conduction_is_the_loss_that_the_drude_rate_leaves() -> None:
+    plasma, damping = 2.4e15, 1.8e14
+    sigma = VACUUM_PERMITTIVITY * plasma**2 / damping
+    slow = damping * 1e-6
+    assert conduction(slow, conductivity=sigma).imag == pytest.approx(
+        drude(slow, plasma=plasma, damping=damping).imag, rel=1e-11
+    )
+
+
+LORENTZ = {"plasma": 3.0, "resonance": 2.0, "damping": 0.4}
+
+
+def moment(power: int, low: float, high: float) -> float:
+    """∫ ω^power ε'' dω of the Lorentz term."""
+    marks = [x for x in (1.5, 2.0, 2.5) if low < x < high]
+    edges = [low, *marks, high]
+    return sum(
+        quad(lambda w: w**power * lorentz(w, **LORENTZ).imag, a, b, epsabs=1e-12, epsrel=1e-12, limit=200)[0]
+        for a, b in pairwise(edges)
+    )
+
+
+def test_f_sum_and_static_step_of_lorentz() -> None:
+    assert moment(1, 1e-12, np.inf) == pytest.approx(np.pi / 2 * 9.0, rel=1e-9)
+    static = 2 / np.pi * moment(-1, 1e-12, np.inf)
+    assert static == pytest.approx(9.0 / 4.0, rel=1e-9)
+    assert static == pytest.approx(lorentz_low(**LORENTZ)[1], rel=1e-9)
+
+
+@pytest.mark.parametrize(
+    ("window", "static", "f_sum"),
+    [((1e-12, 4.0), 0.9926, 0.923), ((1e-12, 10.0), 0.9996, 0.974), ((0.5, 5.0), 0.963, 0.942)],
+    ids=["computed: to twice the resonance", "computed: to five times", "computed: cut at both ends"],
+)
+def test_a_window_loses_more_of_the_f_sum_than_of_the_step(
+    window: tuple[float, float], static: float, f_sum: float
+) -> None:
+    assert 2 / np.pi * moment(-1, *window) / 2.25 == pytest.approx(static, abs=6e-4)
+    assert moment(1, *window) / (np.pi / 2 * 9.0) == pytest.approx(f_sum, abs=6e-4)
+
+
+@pytest.mark.parametrize("omega", [0.3, 1.9, 2.3, 6.0])
+@pytest.mark.parametrize(
+    "term",
+    [lambda w: lorentz(w, **LORENTZ), lambda w: debye(w, step=2.0, relaxation_time=0.5)],
+    ids=["lorentz", "debye"],
+)
+def test_kramers_kronig(term: Callable[[float], complex], omega: float) -> None:
+    here = omega * term(omega).imag
+
+    def integrand(x: float) -> float:
+        # P∫ dx/(x² − ω²) = 0 from 0 to ∞: taking it off leaves nothing singular.
+        return (x * term(x).imag - here) / (x * x - omega * omega) if x != omega else 0.0
+
+    edges = [0.0, omega, 2 * omega + 4.0, np.inf]
+    pieces = pairwise(edges)
+    total = sum(quad(integrand, a, b, epsabs=1e-10, epsrel=1e-10, limit=400)[0] for a, b in pieces)
+    assert 2 / np.pi * total == pytest.approx(term(omega).real, rel=1e-6, abs=1e-7)
