@@ -1,0 +1,165 @@
+"""The mixing rules by name: what each computes, assumes and can be asked.
+
+A new rule is one module, its test and one entry of `RULES`.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass
+
+from mixsim.errors import Refusal, nearest
+from mixsim.mixing.bruggeman import bruggeman
+from mixsim.mixing.bruggeman import fraction_from as bruggeman_fraction
+from mixsim.mixing.bruggeman import inclusion_from as bruggeman_inclusion
+from mixsim.mixing.depolarisation import Array
+from mixsim.mixing.lorentz_lorenz import fraction_from as lorentz_lorenz_fraction
+from mixsim.mixing.lorentz_lorenz import inclusion_from as lorentz_lorenz_inclusion
+from mixsim.mixing.lorentz_lorenz import lorentz_lorenz
+from mixsim.mixing.maxwell_garnett import fraction_from as maxwell_garnett_fraction
+from mixsim.mixing.maxwell_garnett import inclusion_from as maxwell_garnett_inclusion
+from mixsim.mixing.maxwell_garnett import maxwell_garnett
+
+RuleFunction = Callable[..., Array]
+
+
+@dataclass(frozen=True, slots=True)
+class Rule:
+    """One mixing rule.
+
+    Attributes
+    ----------
+    name
+        Word in the recipe.
+    function
+        ``function(phases, *, fractions, depolarisations, **own parameters)``, host first.
+    summary, equation, assumptions, dilute_limit, valid_for, source
+        What a person wants to know of it, as text.
+    takes_shapes
+        Whether grains may be other than spheres.
+    takes_aligned
+        Whether such grains may be aligned, so that the answer has principal axes.
+    symmetric
+        Whether no phase is the host.
+    additive_only
+        Whether the fractions must add up to one.
+    homogeneous
+        Whether scaling every phase scales the answer; not so where vacuum is the silent host.
+    fraction_from
+        ``(mixture, *, host, inclusion)``: closed-form fraction of the second of two phases
+        of spheres, or None.
+    inclusion_from
+        ``(mixture, *, host, fraction)``: closed-form permittivity of that phase, or None.
+    percolation
+        Fraction from which spheres of a conducting phase conduct through the mixture [-], or None where
+        they never do below one.
+    """
+
+    name: str
+    function: RuleFunction
+    summary: str
+    equation: str
+    assumptions: str
+    dilute_limit: str
+    valid_for: str
+    source: str
+    takes_shapes: bool
+    takes_aligned: bool
+    symmetric: bool
+    additive_only: bool
+    homogeneous: bool
+    fraction_from: RuleFunction | None
+    inclusion_from: RuleFunction | None
+    percolation: float | None
+
+
+_CLAUSIUS_MOSSOTTI = "exact: ε_h (1 + 3 f (ε_i − ε_h)/(ε_i + 2 ε_h)) for spheres"
+
+RULES: Mapping[str, Rule] = {
+    rule.name: rule
+    for rule in (
+        Rule(
+            name="maxwell-garnett",
+            function=maxwell_garnett,
+            summary="separate grains in a host, spheres or spheroids, random or aligned",
+            equation="(ε − ε_h)/(ε + 2ε_h) = Σ f_k (ε_k − ε_h)/(ε_k + 2ε_h) for spheres",
+            assumptions="each grain sits in the host, apart from the others, small against the wavelength",
+            dilute_limit=_CLAUSIUS_MOSSOTTI,
+            valid_for="low to moderate loading of dispersed grains; too low as strong fillers near touching",
+            source="J. C. Maxwell Garnett, Phil. Trans. R. Soc. Lond. A 203, 385 (1904)",
+            takes_shapes=True,
+            takes_aligned=True,
+            symmetric=False,
+            additive_only=True,
+            homogeneous=True,
+            fraction_from=maxwell_garnett_fraction,
+            inclusion_from=maxwell_garnett_inclusion,
+            percolation=None,
+        ),
+        Rule(
+            name="bruggeman",
+            function=bruggeman,
+            summary="phases of spheres on the same footing, in contact at random",
+            equation="Σ f_k (ε_k − ε)/(ε_k + 2ε) = 0",
+            assumptions="no phase is the host; grains, far below a wavelength, see the mixture around them",
+            dilute_limit=_CLAUSIUS_MOSSOTTI,
+            valid_for="aggregates and porous bodies away from the threshold 1/3, twice that of hard spheres",
+            source="D. A. G. Bruggeman, Ann. Phys. 416, 636 (1935)",
+            takes_shapes=False,
+            takes_aligned=False,
+            symmetric=True,
+            additive_only=True,
+            homogeneous=True,
+            fraction_from=bruggeman_fraction,
+            inclusion_from=bruggeman_inclusion,
+            percolation=1.0 / 3.0,
+        ),
+        Rule(
+            name="lorentz-lorenz",
+            function=lorentz_lorenz,
+            summary="polarisabilities add in vacuum: solutions and glasses with a measured density",
+            equation="(ε − 1)/(ε + 2) = Σ φ_k (ε_k − 1)/(ε_k + 2)",
+            assumptions="every constituent keeps its molar refraction; the local field is that of Lorentz",
+            dilute_limit="not that of grains in a host: the constituents are mixed molecule by molecule",
+            valid_for="index of liquids, solutions, glasses at optical frequencies; not polar liquids below",
+            source="H. A. Lorentz, Ann. Phys. 245, 641 (1880); L. Lorenz, Ann. Phys. 247, 70 (1880)",
+            takes_shapes=False,
+            takes_aligned=False,
+            symmetric=True,
+            additive_only=False,
+            homogeneous=False,
+            fraction_from=lorentz_lorenz_fraction,
+            inclusion_from=lorentz_lorenz_inclusion,
+            percolation=None,
+        ),
+    )
+}
+
+
+def rule_named(name: str) -> Rule:
+    """Rule of this name.
+
+    Parameters
+    ----------
+    name
+        Word as in the recipe.
+
+    Returns
+    -------
+    rule
+        Its entry in `RULES`.
+
+    Raises
+    ------
+    Refusal
+        Where there is no such rule; it names those that there are and the nearest.
+
+    Examples
+    --------
+    >>> rule_named("bruggeman").percolation
+    0.3333333333333333
+    """
+    try:
+        return RULES[name]
+    except KeyError:
+        raise Refusal(f"rule {name!r}", f"one of {', '.join(RULES)}", nearest(name, RULES)) from None
