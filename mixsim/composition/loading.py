@@ -89,10 +89,10 @@ def volume_fractions(
         if mixture_density is None:
             host = 1.0 - v - sum(given, np.float64(0.0))
         else:
-            mass = sum(
+            given_mass = sum(
                 (f * _density(item.density) for f, item in zip(given, loadings, strict=True)), np.float64(0.0)
             )
-            host = (np.asarray(mixture_density, dtype=float) - mass) / _density(host_density)
+            host = (np.asarray(mixture_density, dtype=float) - given_mass) / _density(host_density)
         return (host, *given, v)
 
     rho_h = _density(host_density)

@@ -1,0 +1,202 @@
+"""From a checked recipe to its mixture: each number of a formula bound to the leaf that holds it."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from typing import Any
+
+from mixsim.composition import number_density_from_mole_fraction, number_density_from_weight_fraction
+from mixsim.dispersion import INDEX_MODELS, TERMS, IndexModel, Parameter, width_from_wavelength
+from mixsim.mixing import rule_named
+from mixsim.mixture.inputs import Derived, Fixed, Input, Leafed
+from mixsim.mixture.mixture import HOST, Constituent, Mixture
+from mixsim.mixture.spectra import (
+    VACUUM,
+    BoundTerm,
+    Doped,
+    Index,
+    LocalPlasma,
+    Measured,
+    Spectrum,
+    TermSum,
+)
+from mixsim.recipe import Recipe, loading_of
+
+
+def compile_recipe(recipe: Recipe) -> Mixture:
+    """The mixture that a recipe describes.
+
+    Parameters
+    ----------
+    recipe
+        A checked recipe.
+
+    Returns
+    -------
+    mixture
+        The evaluator of its numbers.
+    """
+    return _Compiler(recipe).mixture()
+
+
+class _Compiler:
+    def __init__(self, recipe: Recipe) -> None:
+        self.recipe = recipe
+        self.schema = recipe.schema
+
+    def mixture(self) -> Mixture:
+        name = self.schema.host.material
+        densities = {dopant: self._number_density(dopant) for dopant in self.schema.dopants}
+        permittivity = self._permittivity(name)
+        doping = tuple(
+            self._dopant_term(dopant, term, content, permittivity, densities[dopant])
+            for dopant, given in self.schema.dopants.items()
+            for term, content in given.terms.items()
+        )
+        return Mixture(
+            defaults={path: leaf.value for path, leaf in self.recipe.leaves.items()},
+            host=Constituent(
+                HOST,
+                name,
+                Doped(permittivity, doping) if doping else permittivity,
+                self._permeability(name),
+                self._maybe(f"materials.{name}.density"),
+            ),
+            inclusions=tuple(self._inclusion(inclusion) for inclusion in self.schema.inclusions),
+            voids=self._maybe("voids.volume_fraction"),
+            density=self._maybe("mixing.density"),
+            rule=rule_named(self.schema.mixing.rule),
+            number_densities={dopant: given for dopant, given in densities.items() if given is not None},
+        )
+
+    def _maybe(self, path: str) -> Input | None:
+        return Leafed(path) if path in self.recipe.leaves else None
+
+    def _inclusion(self, name: str) -> Constituent:
+        inclusion = self.schema.inclusions[name]
+        material, path = inclusion.material, f"inclusions.{name}"
+        basis, _ = loading_of(inclusion)
+        return Constituent(
+            name,
+            material,
+            self._permittivity(material),
+            self._permeability(material),
+            self._maybe(f"materials.{material}.density"),
+            basis,
+            Leafed(f"{path}.{basis}"),
+            self._maybe(f"{path}.shape.aspect_ratio"),
+            inclusion.orientation == "aligned",
+        )
+
+    def _permittivity(self, name: str) -> Spectrum:
+        material, path = self.schema.materials[name], f"materials.{name}"
+        if material.permittivity is not None:
+            return self._response(material.permittivity, f"{path}.permittivity")
+        stated = self._maybe(f"{path}.static"), self._maybe(f"{path}.high_frequency")
+        if material.table is not None:
+            return Measured(self.recipe.tables[name], *stated)
+        assert material.index is not None
+        permeability = self._permeability(name)
+        model = INDEX_MODELS[material.index.model]
+        inputs = self._index_inputs(model, material.index, f"{path}.index")
+        return Index(model, inputs, None if permeability is VACUUM else permeability, *stated)
+
+    def _permeability(self, name: str) -> Spectrum:
+        permeability = self.schema.materials[name].permeability
+        if permeability is None:
+            return VACUUM
+        return self._response(permeability, f"materials.{name}.permeability")
+
+    def _response(self, response: Any, path: str) -> Spectrum:
+        susceptibility = self._maybe(f"{path}.susceptibility")
+        level: Input = Leafed(f"{path}.infinity")
+        if susceptibility is not None:
+            level = Derived(_level_from_susceptibility, {"susceptibility": susceptibility})
+        terms = (self._term(content, f"{path}.terms.{name}", {}) for name, content in response.terms.items())
+        return TermSum(level, tuple(terms))
+
+    def _index_inputs(
+        self, model: IndexModel, content: Any, path: str
+    ) -> dict[str, Input | tuple[Input, ...]]:
+        inputs: dict[str, Input | tuple[Input, ...]] = {}
+        for name, parameter in model.parameters.items():
+            given = getattr(content, name)
+            if given is not None and parameter.is_list:
+                inputs[name] = tuple(Leafed(f"{path}.{name}.{i}") for i in range(len(given)))
+            elif given is not None or parameter.default is not None:
+                inputs[name] = self._number(f"{path}.{name}", parameter)
+        return inputs
+
+    def _term(self, content: Any, path: str, implied: Mapping[str, Input]) -> BoundTerm:
+        """A term of a recipe; `implied` are parameters that stand elsewhere than in it."""
+        term = TERMS[content.model]
+        given = {name for name in term.parameters if getattr(content, name) is not None}
+        numbers: dict[str, Input] = {
+            name: implied[name] if name in implied else self._number(f"{path}.{name}", parameter)
+            for name, parameter in term.parameters.items()
+            if name in given or name in implied or parameter.default is not None
+        }
+        for name in given:
+            if self.recipe.leaves[f"{path}.{name}"].dimension == "wavelength width":
+                about = {"width": numbers[name], "resonance": numbers["resonance"]}
+                numbers[name] = Derived(width_from_wavelength, about)
+        routes = term.resolve({*given, *implied})
+        return BoundTerm(
+            term,
+            {
+                canonical: numbers[route.key]
+                if route.function is None
+                else Derived(route.function, {name: numbers[name] for name in route.needs})
+                for canonical, route in routes.items()
+            },
+        )
+
+    def _number(self, path: str, parameter: Parameter) -> Input:
+        if path in self.recipe.leaves:
+            return Leafed(path)
+        assert parameter.default is not None
+        return Fixed(parameter.default)
+
+    def _dopant_term(
+        self, dopant: str, name: str, content: Any, host: Spectrum, density: Input | None
+    ) -> BoundTerm:
+        by_concentration = density is not None and _wants_concentration(content)
+        implied = {"number_density": density} if by_concentration and density is not None else {}
+        bound = self._term(content, f"dopants.{dopant}.terms.{name}", implied)
+        if not by_concentration or self.schema.dopants[dopant].local_field == "none":
+            return bound
+        felt = LocalPlasma(bound.inputs["plasma"], bound.inputs["resonance"], host)
+        return BoundTerm(bound.term, {**bound.inputs, "plasma": felt})
+
+    def _number_density(self, name: str) -> Input | None:
+        """Ions per volume of host, on whichever basis the recipe gives them."""
+        dopant, path = self.schema.dopants[name], f"dopants.{name}"
+        if dopant.number_density is not None:
+            return Leafed(f"{path}.number_density")
+        if dopant.weight_fraction is None and dopant.mole_fraction is None:
+            return None
+        host = f"materials.{self.schema.host.material}"
+        inputs: dict[str, Input] = {
+            "density": Leafed(f"{host}.density"),
+            "molar_mass": Leafed(f"{path}.molar_mass"),
+            "ions_per_formula": self._maybe(f"{path}.ions_per_formula") or Fixed(1.0),
+        }
+        if dopant.weight_fraction is not None:
+            inputs["weight_fraction"] = Leafed(f"{path}.weight_fraction")
+            return Derived(number_density_from_weight_fraction, inputs)
+        inputs |= {
+            "mole_fraction": Leafed(f"{path}.mole_fraction"),
+            "host_molar_mass": Leafed(f"{host}.molar_mass"),
+        }
+        return Derived(number_density_from_mole_fraction, inputs)
+
+
+def _wants_concentration(content: Any) -> bool:
+    """Whether a dopant's term leaves its strength to the concentration of the dopant."""
+    given = (content.plasma, content.step, content.number_density) if content.model == "lorentz" else (True,)
+    return not any(given)
+
+
+def _level_from_susceptibility(*, susceptibility: Any) -> Any:
+    """ε∞ = 1 + χ."""
+    return 1.0 + susceptibility

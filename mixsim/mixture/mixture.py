@@ -1,0 +1,313 @@
+"""The one evaluator: numbers of a recipe and a frequency axis to the response of the mixture."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass, replace
+from functools import cached_property
+from typing import Any
+
+import numpy as np
+from numpy.typing import ArrayLike
+
+from mixsim.composition import Basis, Loading, volume_fractions
+from mixsim.errors import Refusal, nearest
+from mixsim.mixing import SPHERE, Depolarisation, Rule, aligned_spheroid, random_spheroid, rule_named
+from mixsim.mixture.blocks import Axes, blocks
+from mixsim.mixture.inputs import Input, Values
+from mixsim.mixture.response import Array, Composition, Limits, Response
+from mixsim.mixture.spectra import VACUUM, Spectrum
+from mixsim.mixture.static import low_frequency
+from mixsim.units import VACUUM_PERMITTIVITY
+
+HOST, VOIDS = "host", "voids"
+
+
+@dataclass(frozen=True)
+class Constituent:
+    """One phase of the mixture.
+
+    Attributes
+    ----------
+    name
+        "host", the name of the inclusion, or "voids".
+    material
+        Name of its material.
+    permittivity, permeability
+        What it is.
+    density
+        Density, where its material has one.
+    basis, amount
+        Its loading; None for host and voids.
+    aspect_ratio
+        Symmetry axis over cross axis of its grains; None for spheres.
+    aligned
+        Whether those axes are aligned.
+    """
+
+    name: str
+    material: str
+    permittivity: Spectrum
+    permeability: Spectrum
+    density: Input | None = None
+    basis: Basis | None = None
+    amount: Input | None = None
+    aspect_ratio: Input | None = None
+    aligned: bool = False
+
+
+@dataclass(frozen=True)
+class Mixture:
+    """The mixture that a recipe describes, as a function of its numbers and a frequency axis.
+
+    Attributes
+    ----------
+    defaults
+        Every leaf of the recipe by its path, in SI.
+    host, inclusions
+        Constituents.
+    voids
+        Volume fraction of spheres of vacuum, or None.
+    density
+        Measured density of the mixture, or None where volumes add.
+    rule
+        The mixing rule.
+    number_densities
+        Ions per volume of host, by name of the dopant.
+    """
+
+    defaults: Mapping[str, float]
+    host: Constituent
+    inclusions: tuple[Constituent, ...]
+    voids: Input | None
+    density: Input | None
+    rule: Rule
+    number_densities: Mapping[str, Input]
+
+    def response(self, values: Mapping[str, ArrayLike], omega: ArrayLike) -> Response:
+        """Permittivity and permeability of the mixture.
+
+        Parameters
+        ----------
+        values
+            Leaves that differ from the recipe, path → number or array of any batch shape [SI]. Their shapes
+            broadcast together: open axes (A, 1) and (1, B) make a grid.
+        omega
+            Angular frequencies, shape (N,) [rad/s].
+
+        Returns
+        -------
+        response
+            Both of shape batch + (N,), or batch + (3, N) where grains are aligned.
+
+        Raises
+        ------
+        Refusal
+            Where a path is unknown, shapes do not fit or a table does not reach.
+
+        Notes
+        -----
+        Computed in blocks of frequencies and batch that stay in the cache; in each window of frequencies,
+        what does not depend on a varied leaf is computed once. Values are not held to the ranges of the
+        recipe here: whoever varies them does that.
+        """
+        axis = np.asarray(omega, dtype=float)
+        if axis.ndim != 1:
+            raise Refusal(f"omega of shape {axis.shape}", "one axis of angular frequencies, shape (N,)")
+        axes = self._axes(values)
+        shape = (*axes.shape, axis.size)
+        permittivity = np.empty(shape, dtype=complex)
+        magnetic = any(phase.permeability is not VACUUM for phase in self.phases)
+        permeability = np.empty(shape, dtype=complex) if magnetic else np.ones(shape, dtype=complex)
+        for window, rows in blocks(axes.shape, axis.size):
+            here = axis[window]
+            electric_fixed = self._fixed("permittivity", axes, here)
+            magnetic_fixed = self._fixed("permeability", axes, here) if magnetic else {}
+            for row in rows:
+                x, place = axes.values(row), (*row, window)
+                composed = self._composed(x)
+                permittivity[place] = self._mixed("permittivity", x, here, composed, electric_fixed)
+                if magnetic:
+                    permeability[place] = self._mixed("permeability", x, here, composed, magnetic_fixed)
+        return Response(permittivity, permeability)
+
+    def limits(self, values: Mapping[str, ArrayLike]) -> Limits:
+        """Exact static and high-frequency limits of the mixture, conductors included.
+
+        Parameters
+        ----------
+        values
+            As in `response`.
+
+        Returns
+        -------
+        limits
+            Of the batch shape, followed by (3,) where grains are aligned.
+
+        Raises
+        ------
+        Refusal
+            Where a path is unknown or shapes do not fit.
+        """
+        axes = self._axes(values)
+        x = axes.values()
+        fractions, shapes = self._composed(x)
+
+        def mix(phases: Sequence[Any]) -> Any:
+            return self.rule.function(phases, fractions=fractions, depolarisations=shapes)
+
+        def full(limit: Any) -> Array:
+            spread = np.broadcast_to(np.asarray(limit), (*axes.shape, 1))
+            return spread[..., 0].copy()
+
+        electric, magnetic = ([getattr(p, q) for p in self.phases] for q in ("permittivity", "permeability"))
+        low = low_frequency(mix, *zip(*(phase.low(x) for phase in electric), strict=True))
+        low_magnetic = low_frequency(mix, *zip(*(phase.low(x) for phase in magnetic), strict=True))
+        return Limits(
+            static=full(low.static),
+            high_frequency=full(np.asarray(mix([phase.high(x) for phase in electric]), dtype=complex)),
+            conductivity=full(low.rate * VACUUM_PERMITTIVITY),
+            plateau=full(low.plateau),
+            static_permeability=full(low_magnetic.static),
+            high_frequency_permeability=full(
+                np.asarray(mix([phase.high(x) for phase in magnetic]), dtype=complex)
+            ),
+        )
+
+    def composition(self, values: Mapping[str, ArrayLike]) -> Composition:
+        """Volume and weight fractions, density, and concentrations of dopants.
+
+        Parameters
+        ----------
+        values
+            As in `response`.
+
+        Returns
+        -------
+        composition
+            Each of the batch shape.
+
+        Raises
+        ------
+        Refusal
+            Where a path is unknown or shapes do not fit.
+        """
+        axes = self._axes(values)
+        x = axes.values()
+
+        def full(number: Any) -> Array:
+            spread = np.asarray(number, dtype=float)
+            if spread.ndim:
+                spread = spread.reshape(spread.shape[: -axes.trail])
+            return np.broadcast_to(spread, axes.batch).copy()
+
+        volumes = dict(zip(self._names, self._fractions(x), strict=True))
+        densities = [phase.density(x) if phase.density else None for phase in (self.host, *self.inclusions)]
+        weights = density = None
+        if all(known is not None for known in densities):
+            masses = {name: volumes[name] * rho for name, rho in zip(volumes, densities, strict=False)}
+            total: Any = (
+                sum(masses.values(), start=np.asarray(0.0)) if self.density is None else self.density(x)
+            )
+            if self.voids is not None:
+                masses[VOIDS] = 0.0 * total
+            with np.errstate(invalid="ignore", divide="ignore"):  # nothing but voids: 0/0
+                weights = {name: full(mass / total) for name, mass in masses.items()}
+            density = full(total)
+        return Composition(
+            volume_fractions={name: full(volume) for name, volume in volumes.items()},
+            weight_fractions=weights,
+            density=density,
+            number_densities={name: full(number(x)) for name, number in self.number_densities.items()},
+        )
+
+    def constituents(self, omega: ArrayLike) -> Mapping[str, Response]:
+        """Permittivity and permeability of host and inclusions on their own, at the recipe's numbers.
+
+        Parameters
+        ----------
+        omega
+            Angular frequencies, shape (N,) [rad/s].
+
+        Returns
+        -------
+        responses
+            By name, each of shape (N,).
+        """
+        axis, x = np.asarray(omega, dtype=float), self.defaults
+        return {
+            phase.name: Response(
+                np.asarray(phase.permittivity.at(x, axis)), np.asarray(phase.permeability.at(x, axis))
+            )
+            for phase in (self.host, *self.inclusions)
+        }
+
+    def with_rule(self, name: str) -> Mixture:
+        """The same constituents under another rule."""
+        return replace(self, rule=rule_named(name))
+
+    @cached_property
+    def phases(self) -> tuple[Constituent, ...]:
+        """Constituents in the order in which the rule is given them, host first."""
+        voids = Constituent(VOIDS, "vacuum", VACUUM, VACUUM)
+        return (self.host, *self.inclusions, *([] if self.voids is None else [voids]))
+
+    @property
+    def aligned(self) -> bool:
+        """Whether the answers have principal axes."""
+        return any(inclusion.aligned for inclusion in self.inclusions)
+
+    @property
+    def _names(self) -> list[str]:
+        return [phase.name for phase in self.phases]
+
+    def _axes(self, values: Mapping[str, ArrayLike]) -> Axes:
+        for path in values:
+            if path not in self.defaults:
+                raise Refusal(f"unknown path {path!r}", "a path of the recipe", nearest(path, self.defaults))
+        return Axes(self.defaults, values, principal=self.aligned)
+
+    def _fixed(self, quantity: str, axes: Axes, omega: Array) -> dict[str, Any]:
+        """Spectra of the phases that no varied leaf touches, at some frequencies."""
+        spectra = {phase.name: getattr(phase, quantity) for phase in self.phases}
+        return {
+            name: spectrum.at(axes.scalars, omega)
+            for name, spectrum in spectra.items()
+            if not spectrum.paths & axes.varied
+        }
+
+    def _mixed(self, quantity: str, x: Values, omega: Array, composed: Any, fixed: Mapping[str, Any]) -> Any:
+        fractions, shapes = composed
+        phases = [
+            fixed[phase.name] if phase.name in fixed else getattr(phase, quantity).at(x, omega)
+            for phase in self.phases
+        ]
+        if len(phases) == 1:
+            return phases[0]
+        return self.rule.function(phases, fractions=fractions, depolarisations=shapes)
+
+    def _composed(self, x: Values) -> tuple[tuple[Any, ...], list[Depolarisation]]:
+        return self._fractions(x), [self._shape(phase, x) for phase in self.phases]
+
+    def _fractions(self, x: Values) -> tuple[Any, ...]:
+        loadings = []
+        for grain in self.inclusions:
+            assert grain.basis is not None and grain.amount is not None
+            loadings.append(
+                Loading(grain.basis, grain.amount(x), grain.density(x) if grain.density else None)
+            )
+        fractions = volume_fractions(
+            loadings,
+            host_density=self.host.density(x) if self.host.density else None,
+            voids=0.0 if self.voids is None else self.voids(x),
+            mixture_density=None if self.density is None else self.density(x),
+        )
+        return fractions if self.voids is not None else fractions[:-1]
+
+    def _shape(self, phase: Constituent, x: Values) -> Depolarisation:
+        if phase.aspect_ratio is None:
+            return SPHERE
+        ratio = np.asarray(phase.aspect_ratio(x))
+        if not phase.aligned:
+            return random_spheroid(ratio)
+        return aligned_spheroid(ratio[..., 0] if ratio.ndim else ratio)

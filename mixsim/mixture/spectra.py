@@ -1,0 +1,242 @@
+"""Permittivity (or permeability) of one constituent as a function of the leaves and of frequency.
+
+Each kind answers three questions: its value at some frequencies, its behaviour as ω → 0, written
+i·rate/ω + plateau, and its limit as ω → ∞. Where a limit is not known it is NaN: an index formula is never
+extrapolated to dc in silence.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from functools import cached_property
+from typing import Any, Protocol
+
+import numpy as np
+
+from mixsim.dispersion import IndexModel, Table, Term, interpolate
+from mixsim.mixture.inputs import Input, Values, paths_of
+
+UNKNOWN = float("nan")
+
+
+class Spectrum(Protocol):
+    """What one constituent is, for ε or for μ."""
+
+    @property
+    def paths(self) -> frozenset[str]:
+        """Leaves that it depends on."""
+
+    def at(self, x: Values, omega: Any) -> Any:
+        """Complex value at angular frequencies [rad/s]."""
+
+    def low(self, x: Values) -> tuple[Any, Any]:
+        """Rate [rad/s] and plateau as ω → 0."""
+
+    def high(self, x: Values) -> Any:
+        """Limit as ω → ∞."""
+
+
+@dataclass(frozen=True)
+class Constant:
+    """The same at every frequency: vacuum, or a material without magnetism."""
+
+    value: float = 1.0
+    paths: frozenset[str] = frozenset()
+
+    def at(self, x: Values, omega: Any) -> Any:
+        return np.asarray(self.value + 0.0 * omega, dtype=complex)
+
+    def low(self, x: Values) -> tuple[Any, Any]:
+        return 0.0, self.value
+
+    def high(self, x: Values) -> Any:
+        return self.value
+
+
+VACUUM = Constant()
+
+
+@dataclass(frozen=True)
+class BoundTerm:
+    """A registered term and where it takes each canonical parameter from."""
+
+    term: Term
+    inputs: Mapping[str, Input]
+
+    @cached_property
+    def paths(self) -> frozenset[str]:
+        return paths_of(self.inputs.values())
+
+    def at(self, x: Values, omega: Any) -> Any:
+        """Contribution at angular frequencies [rad/s]."""
+        return self.term.function(omega, **self._parameters(x))
+
+    def low(self, x: Values) -> tuple[Any, Any]:
+        """Rate [rad/s] and plateau of the contribution as ω → 0."""
+        rate, plateau = self.term.low(**self._parameters(x))
+        return rate, plateau
+
+    def _parameters(self, x: Values) -> dict[str, Any]:
+        return {name: given(x) for name, given in self.inputs.items()}
+
+
+@dataclass(frozen=True)
+class TermSum:
+    """A level above all resonances, and terms: their polarisations add."""
+
+    level: Input
+    terms: tuple[BoundTerm, ...]
+
+    @cached_property
+    def paths(self) -> frozenset[str]:
+        return paths_of((self.level, *self.terms))
+
+    def at(self, x: Values, omega: Any) -> Any:
+        level = self.level(x)
+        if not self.terms:
+            return np.asarray(level + 0.0 * omega, dtype=complex)
+        first, *others = (term.at(x, omega) for term in self.terms)
+        total = _added(np.asarray(first), level)
+        for other in others:
+            total = _added(total, other)
+        return total
+
+    def low(self, x: Values) -> tuple[Any, Any]:
+        rate: Any = 0.0
+        plateau = self.level(x)
+        for term in self.terms:
+            more_rate, more_plateau = term.low(x)
+            rate, plateau = rate + more_rate, plateau + more_plateau
+        return rate, plateau
+
+    def high(self, x: Values) -> Any:
+        return self.level(x)
+
+
+@dataclass(frozen=True)
+class Doped:
+    """A host and the terms of isolated absorbers in it: polarisations add, and take no volume."""
+
+    host: Spectrum
+    terms: tuple[BoundTerm, ...]
+
+    @cached_property
+    def paths(self) -> frozenset[str]:
+        return paths_of((self.host, *self.terms))
+
+    def at(self, x: Values, omega: Any) -> Any:
+        total = self.host.at(x, omega)
+        for term in self.terms:
+            total = total + term.at(x, omega)
+        return total
+
+    def low(self, x: Values) -> tuple[Any, Any]:
+        rate, plateau = self.host.low(x)
+        for term in self.terms:
+            more_rate, more_plateau = term.low(x)
+            rate, plateau = rate + more_rate, plateau + more_plateau
+        return rate, plateau
+
+    def high(self, x: Values) -> Any:
+        return self.host.high(x)
+
+
+@dataclass(frozen=True)
+class Index:
+    """An index model: ε = n²/μ, with limits only where the material states them or the index is constant."""
+
+    model: IndexModel
+    inputs: Mapping[str, Input | tuple[Input, ...]]
+    permeability: Spectrum | None
+    static: Input | None
+    high_frequency: Input | None
+
+    @cached_property
+    def paths(self) -> frozenset[str]:
+        lists = [given if isinstance(given, tuple) else (given,) for given in self.inputs.values()]
+        stated = [given for given in (self.static, self.high_frequency, self.permeability) if given]
+        return paths_of([*(item for items in lists for item in items), *stated])
+
+    def at(self, x: Values, omega: Any) -> Any:
+        index = self._index(x, omega)
+        square = index * index
+        return square if self.permeability is None else square / self.permeability.at(x, omega)
+
+    def low(self, x: Values) -> tuple[Any, Any]:
+        if self.static is not None:
+            return 0.0, self.static(x)
+        if not self.model.constant:
+            return 0.0, UNKNOWN
+        return 0.0, self._square(x, None if self.permeability is None else self.permeability.low(x)[1])
+
+    def high(self, x: Values) -> Any:
+        if self.high_frequency is not None:
+            return self.high_frequency(x)
+        if not self.model.constant:
+            return UNKNOWN
+        return self._square(x, None if self.permeability is None else self.permeability.high(x))
+
+    def _square(self, x: Values, permeability: Any) -> Any:
+        square = self._index(x, 1.0) ** 2
+        return square if permeability is None else square / permeability
+
+    def _index(self, x: Values, omega: Any) -> Any:
+        numbers = {
+            name: [item(x) for item in given] if isinstance(given, tuple) else given(x)
+            for name, given in self.inputs.items()
+        }
+        return np.asarray(self.model.function(omega, **numbers))
+
+
+@dataclass(frozen=True)
+class Measured:
+    """A measured table: interpolated inside its range, refused outside, without limits unless stated."""
+
+    table: Table
+    static: Input | None
+    high_frequency: Input | None
+
+    @cached_property
+    def paths(self) -> frozenset[str]:
+        return paths_of(given for given in (self.static, self.high_frequency) if given)
+
+    def at(self, x: Values, omega: Any) -> Any:
+        return interpolate(omega, table=self.table)
+
+    def low(self, x: Values) -> tuple[Any, Any]:
+        return 0.0, UNKNOWN if self.static is None else self.static(x)
+
+    def high(self, x: Values) -> Any:
+        return UNKNOWN if self.high_frequency is None else self.high_frequency(x)
+
+
+@dataclass(frozen=True)
+class LocalPlasma:
+    """Plasma frequency of an absorber as its host's field lets it appear.
+
+    Notes
+    -----
+    The virtual cavity (Lorentz field) multiplies ωp² by ((ε′_host(ω₀) + 2)/3)².
+    Valid for: dilute absorbers whose band is narrow against the dispersion of the host.
+    """
+
+    plasma: Input
+    resonance: Input
+    host: Spectrum
+
+    @cached_property
+    def paths(self) -> frozenset[str]:
+        return paths_of((self.plasma, self.resonance, self.host))
+
+    def __call__(self, x: Values) -> Any:
+        around = np.real(self.host.at(x, self.resonance(x)))
+        return self.plasma(x) * (around + 2.0) / 3.0
+
+
+def _added(total: Any, more: Any) -> Any:
+    """Sum, in the memory of the first where it fits."""
+    if np.broadcast_shapes(total.shape, np.shape(more)) == total.shape and total.ndim:
+        total += more
+        return total
+    return total + more

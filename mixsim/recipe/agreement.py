@@ -1,0 +1,108 @@
+"""What must hold between the numbers of a recipe: order of a band, room for every constituent, readings."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Mapping
+
+from mixsim.composition import BASES, Basis, Loading, volume_fractions
+from mixsim.errors import Refusal, nearest
+from mixsim.recipe.faults import Finding
+from mixsim.recipe.leaves import Number
+from mixsim.recipe.schema import Inclusion, Schema
+from mixsim.units import Leaf, kind_of_axis, read, written_unit
+
+_ROUNDING = 1e-12
+
+
+def disagreements(
+    schema: Schema, leaves: Mapping[str, Leaf], ranges: Mapping[str, Number]
+) -> Iterator[Finding]:
+    """Every disagreement between numbers, with its path."""
+    band = schema.band
+    if band is not None and band.from_ is not None and band.to is not None:
+        yield from _in_order(band.from_, band.to, "band")
+    for name, material in schema.materials.items():
+        if material.valid is not None:
+            yield from _in_order(material.valid.from_, material.valid.to, f"materials.{name}.valid")
+    yield from _room(schema)
+    yield from _unknowns(schema, leaves, ranges)
+    yield from _readings(schema)
+
+
+def loading_of(inclusion: Inclusion) -> tuple[Basis, Leaf]:
+    """Basis and amount of an inclusion's loading."""
+    given: Iterator[tuple[Basis, Leaf | None]] = ((basis, getattr(inclusion, basis)) for basis in BASES)
+    return next((basis, amount) for basis, amount in given if amount is not None)
+
+
+def path_or_nearest(path: str, leaves: Mapping[str, Leaf]) -> str | None:
+    """Known path that a misspelt or shortened one most likely means."""
+    ends = [known for known in leaves if known.endswith("." + path)]
+    return ends[0] if len(ends) == 1 else nearest(path, leaves)
+
+
+def _in_order(start: Leaf, end: Leaf, path: str) -> Iterator[Finding]:
+    written = f"from {start.written!r} to {end.written!r}"
+    if start.value == end.value:
+        yield path, Refusal(f"{written} is a single point", "a band has a width; one point goes into values")
+        return
+    unit = written_unit(start)
+    falls = (start.value > end.value) != (kind_of_axis(unit) == kind_of_axis("nm"))
+    if unit == written_unit(end) and falls:
+        yield path, Refusal(f"{written} runs backwards", "from is the smaller number")
+
+
+def _room(schema: Schema) -> Iterator[Finding]:
+    """The host must have room left, unless a measured density says what the volumes are."""
+    weights = sum(i.weight_fraction.value for i in schema.inclusions.values() if i.weight_fraction)
+    if weights > 1.0 + _ROUNDING:
+        yield "inclusions", Refusal(f"weight fractions add up to {weights:.6g}", "the sum is at most 1")
+        return
+    if schema.mixing.density is not None:
+        return
+    host = schema.materials[schema.host.material].density
+    loadings = []
+    for inclusion in schema.inclusions.values():
+        basis, amount = loading_of(inclusion)
+        density = schema.materials[inclusion.material].density
+        loadings.append(Loading(basis, amount.value, density.value if density else None))
+    voids = schema.voids.volume_fraction.value if schema.voids else 0.0
+    fractions = volume_fractions(loadings, host_density=host.value if host else None, voids=voids)
+    filled = 1.0 - float(fractions[0])
+    if filled > 1.0 + _ROUNDING:
+        what = "inclusions and voids" if schema.voids else "inclusions"
+        yield (
+            "inclusions",
+            Refusal(f"volume fractions of {what} add up to {filled:.6g}", "the sum is at most 1"),
+        )
+
+
+def _unknowns(schema: Schema, leaves: Mapping[str, Leaf], ranges: Mapping[str, Number]) -> Iterator[Finding]:
+    for path, limits in schema.unknowns.items():
+        where = f"unknowns.{path}"
+        if path not in leaves:
+            suggestion = path_or_nearest(path, leaves)
+            yield where, Refusal(f"unknown path {path!r}", "a path of a number in the recipe", suggestion)
+            continue
+        try:
+            low, high = (read(limit, leaves[path].dimension) for limit in limits)
+        except Refusal as refusal:
+            yield where, refusal
+            continue
+        allowed = ranges[path]
+        for end in (low, high):
+            if not allowed.holds(end.value):
+                yield where, Refusal(f"{end.written!r} is out of range", f"must be {allowed.said()}")
+        if low.value == high.value:
+            yield where, Refusal(f"range {low.written!r} to {high.written!r} is empty", "the two ends differ")
+
+
+def _readings(schema: Schema) -> Iterator[Finding]:
+    measured = schema.measured
+    if measured is None or measured.static is None or measured.high_frequency is None:
+        return
+    if measured.static.value < measured.high_frequency.value:
+        found = (
+            f"static {measured.static.written!r} is below high_frequency {measured.high_frequency.written!r}"
+        )
+        yield "measured.static", Refusal(found, "a passive medium has its static level at or above the other")

@@ -1,0 +1,248 @@
+"""What must hold between the keys of a recipe: one description of a thing, and all that it needs.
+
+Works on the recipe as parsed, before any number is read, so that its findings stand beside those of
+the schema in one pass.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Mapping
+from typing import Any
+
+from mixsim.composition import BASES
+from mixsim.dispersion import INDEX_MODELS, TERMS
+from mixsim.errors import Refusal, nearest
+from mixsim.mixing import RULES
+from mixsim.recipe import library
+from mixsim.recipe.faults import Finding
+from mixsim.recipe.leaves import join
+
+CONCENTRATIONS = ("number_density", "weight_fraction", "mole_fraction")
+
+
+def contradictions(raw: Mapping[str, Any]) -> Iterator[Finding]:
+    """Every contradiction and gap, with its path."""
+    yield from _band(_table(raw, "band")) if "band" in raw else ()
+    for name, material in _tables(raw, "materials"):
+        yield from _material(name, material)
+    for name, inclusion in _tables(raw, "inclusions"):
+        yield from _inclusion(f"inclusions.{name}", inclusion)
+    for name, dopant in _tables(raw, "dopants"):
+        yield from _dopant(f"dopants.{name}", dopant, raw)
+    yield from _names(raw)
+    yield from _rule(raw)
+    yield from _densities(raw)
+
+
+def _table(raw: Mapping[str, Any], key: str) -> Mapping[str, Any]:
+    value = raw.get(key)
+    return value if isinstance(value, Mapping) else {}
+
+
+def _tables(raw: Mapping[str, Any], key: str) -> Iterator[tuple[str, Mapping[str, Any]]]:
+    for name, value in _table(raw, key).items():
+        if isinstance(value, Mapping):
+            yield name, value
+
+
+def _one_of(path: str, node: Mapping[str, Any], keys: tuple[str, ...], what: str) -> Iterator[Finding]:
+    present = [key for key in keys if key in node]
+    if len(present) > 1:
+        yield (
+            join(path, present[1]),
+            Refusal(f"{what} is given twice, by {' and '.join(present)}", "give one of them"),
+        )
+    elif not present:
+        yield path, Refusal(f"{what} is not given", f"give one of {', '.join(keys)}")
+
+
+def _band(band: Mapping[str, Any]) -> Iterator[Finding]:
+    if "values" in band:
+        for key in ("from", "to", "points", "spacing"):
+            if key in band:
+                yield f"band.{key}", Refusal(f"{key} beside values", "a band gives values, or from and to")
+    else:
+        for key in ("from", "to"):
+            if key not in band:
+                yield "band", Refusal(f"{key} is missing", "a band gives from and to, or values")
+
+
+def _material(name: str, material: Mapping[str, Any]) -> Iterator[Finding]:
+    path = f"materials.{name}"
+    if "based_on" not in material:
+        yield from _one_of(path, material, ("permittivity", "index", "table"), f"the permittivity of {name}")
+    for quantity in ("permittivity", "permeability"):
+        response = material.get(quantity)
+        if isinstance(response, Mapping):
+            yield from _one_of(
+                f"{path}.{quantity}",
+                response,
+                ("infinity", "susceptibility"),
+                "the level above all resonances",
+            )
+            for term, content in _tables(response, "terms"):
+                yield from _term(f"{path}.{quantity}.terms.{term}", content, ())
+    if "permittivity" in material:
+        for key in ("static", "high_frequency"):
+            if key in material:
+                allowed = "it is for index models and tables; terms have exact limits of their own"
+                yield f"{path}.{key}", Refusal(f"{key} beside permittivity", allowed)
+    index = material.get("index")
+    model = INDEX_MODELS.get(str(index.get("model"))) if isinstance(index, Mapping) else None
+    if isinstance(index, Mapping) and model is not None:
+        for key in model.required:
+            if key not in index:
+                yield f"{path}.index", Refusal(f"{key} is missing", f"a {model.name} index needs {key}")
+        if model.name == "sellmeier":
+            both = ("resonance_wavelengths", "resonance_wavelengths_squared")
+            yield from _one_of(f"{path}.index", index, both, "the list of resonances")
+            for key in both:
+                strengths, values = index.get("strengths"), index.get(key)
+                if isinstance(strengths, list) and isinstance(values, list) and len(strengths) != len(values):
+                    found = f"{len(values)} resonances for {len(strengths)} strengths"
+                    yield f"{path}.index.{key}", Refusal(found, "they pair one to one")
+
+
+def _term(path: str, content: Mapping[str, Any], implied: tuple[str, ...]) -> Iterator[Finding]:
+    term = TERMS.get(str(content.get("model")))
+    if term is None:
+        return
+    given = {key for key in content if key in term.parameters}
+    try:
+        term.resolve({*given, *(name for name in implied if not given & {"plasma", "step"})})
+    except Refusal as refusal:
+        yield path, refusal
+    if "resonance" not in given:
+        for key in ("damping",):
+            unit = str(content.get(key, "")).split("±")[0].strip()
+            if unit.endswith(("nm", "µm", "um", "μm", "mm")):
+                allowed = "give a frequency, energy or wavenumber; a wavelength needs a resonance"
+                yield (
+                    f"{path}.{key}",
+                    Refusal(f"width {content[key]!r} in wavelength without a resonance", allowed),
+                )
+
+
+def _inclusion(path: str, inclusion: Mapping[str, Any]) -> Iterator[Finding]:
+    yield from _one_of(path, inclusion, tuple(BASES), "the loading")
+    shape = inclusion.get("shape")
+    if isinstance(shape, Mapping):
+        if shape.get("kind") == "spheroid" and "aspect_ratio" not in shape:
+            yield (
+                f"{path}.shape",
+                Refusal("aspect_ratio is missing", "a spheroid needs symmetry axis over cross axis"),
+            )
+        if shape.get("kind") == "sphere" and "aspect_ratio" in shape:
+            yield (
+                f"{path}.shape.aspect_ratio",
+                Refusal("a sphere with an aspect_ratio", "say kind = 'spheroid'"),
+            )
+    round_grain = not isinstance(shape, Mapping) or shape.get("kind") == "sphere"
+    if inclusion.get("orientation") == "aligned" and round_grain:
+        yield f"{path}.orientation", Refusal("aligned spheres", "only spheroids have an orientation")
+
+
+def _dopant(path: str, dopant: Mapping[str, Any], raw: Mapping[str, Any]) -> Iterator[Finding]:
+    present = [key for key in CONCENTRATIONS if key in dopant]
+    if len(present) > 1:
+        found = f"the concentration is given twice, by {' and '.join(present)}"
+        yield join(path, present[1]), Refusal(found, "give one of them")
+    weighed = {"weight_fraction", "mole_fraction"} & set(present)
+    if weighed and "molar_mass" not in dopant:
+        yield path, Refusal(f"{present[0]} without molar_mass", "give molar_mass of the compound weighed in")
+    for key in ("molar_mass", "ions_per_formula"):
+        if key in dopant and not weighed:
+            yield f"{path}.{key}", Refusal(f"{key} without weight_fraction or mole_fraction", "leave it out")
+    host = _host(raw)
+    where = f"materials.{_host_name(raw)}"
+    if weighed and host is not None and "density" not in host:
+        yield where, Refusal("density is missing", f"{path}.{present[0]} needs the density of the host")
+    if "mole_fraction" in present and host is not None and "molar_mass" not in host:
+        yield (
+            where,
+            Refusal("molar_mass is missing", f"{path}.mole_fraction needs the molar mass of the host"),
+        )
+    used = False
+    for name, content in _tables(dopant, "terms"):
+        if content.get("model") == "lorentz" and not {"plasma", "step", "number_density"} & set(content):
+            if not present:
+                allowed = f"give {', '.join(CONCENTRATIONS)} of the dopant, or plasma or step of the term"
+                yield f"{path}.terms.{name}", Refusal("neither concentration nor plasma frequency", allowed)
+            used = True
+        yield from _term(f"{path}.terms.{name}", content, ("number_density",))
+    if present and not used and isinstance(dopant.get("terms"), Mapping):
+        found = f"{present[0]} is used by none of the terms"
+        yield (
+            join(path, present[0]),
+            Refusal(found, "leave it out, or give a lorentz term its oscillator strength"),
+        )
+
+
+def _names(raw: Mapping[str, Any]) -> Iterator[Finding]:
+    known = (*_table(raw, "materials"), *library.names())
+    uses = [("host.material", _table(raw, "host").get("material"))]
+    uses += [
+        (f"inclusions.{name}.material", node.get("material")) for name, node in _tables(raw, "inclusions")
+    ]
+    uses += [(f"materials.{name}.based_on", node.get("based_on")) for name, node in _tables(raw, "materials")]
+    for path, name in uses:
+        if isinstance(name, str) and name not in known:
+            allowed = f"define [materials.{name}] or name a built-in one (list materials shows them)"
+            yield path, Refusal(f"unknown material {name!r}", allowed, nearest(name, known))
+
+
+def _rule(raw: Mapping[str, Any]) -> Iterator[Finding]:
+    mixing = _table(raw, "mixing")
+    name = mixing.get("rule", "maxwell-garnett")
+    if not isinstance(name, str):
+        return
+    rule = RULES.get(name)
+    if rule is None:
+        yield (
+            "mixing.rule",
+            Refusal(f"unknown rule {name!r}", f"known are {', '.join(RULES)}", nearest(name, RULES)),
+        )
+        return
+    if "density" in mixing and rule.additive_only:
+        free = ", ".join(n for n, r in RULES.items() if not r.additive_only)
+        yield (
+            "mixing.density",
+            Refusal(
+                f"a measured density with the rule {name}",
+                f"only {free} takes partial volumes that do not add up to one",
+            ),
+        )
+    for inclusion, node in _tables(raw, "inclusions"):
+        shape = node.get("shape")
+        if isinstance(shape, Mapping) and shape.get("kind") == "spheroid" and not rule.takes_shapes:
+            able = ", ".join(n for n, r in RULES.items() if r.takes_shapes)
+            yield (
+                f"inclusions.{inclusion}.shape",
+                Refusal(f"spheroids with the rule {name}", f"{able} takes them"),
+            )
+
+
+def _densities(raw: Mapping[str, Any]) -> Iterator[Finding]:
+    by_weight = [
+        f"inclusions.{name}.{key}"
+        for name, node in _tables(raw, "inclusions")
+        for key in ("weight_fraction", "phr")
+        if key in node
+    ]
+    reason = by_weight[0] if by_weight else "mixing.density" if "density" in _table(raw, "mixing") else ""
+    if not reason:
+        return
+    used = [_host_name(raw), *(node.get("material") for _, node in _tables(raw, "inclusions"))]
+    for name in dict.fromkeys(name for name in used if isinstance(name, str)):
+        material = _table(_table(raw, "materials"), name) or library.definition(name)
+        if material and "density" not in material:
+            yield f"materials.{name}", Refusal("density is missing", f"{reason} needs it")
+
+
+def _host_name(raw: Mapping[str, Any]) -> str:
+    return str(_table(raw, "host").get("material", ""))
+
+
+def _host(raw: Mapping[str, Any]) -> Mapping[str, Any] | None:
+    name = _host_name(raw)
+    return _table(_table(raw, "materials"), name) or library.definition(name)

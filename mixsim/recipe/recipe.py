@@ -1,0 +1,195 @@
+"""A recipe: read, completed from the library, checked, and its numbers by path."""
+
+from __future__ import annotations
+
+import hashlib
+from collections.abc import Mapping
+from dataclasses import dataclass
+from functools import cached_property
+from pathlib import Path
+from typing import TYPE_CHECKING, Any
+
+import tomli
+from pydantic import ValidationError
+
+from mixsim.dispersion import Table
+from mixsim.errors import BadInput, Fault, Refusal
+from mixsim.recipe.agreement import disagreements, path_or_nearest
+from mixsim.recipe.completion import complete, tables
+from mixsim.recipe.consistency import contradictions
+from mixsim.recipe.faults import Finding, faults_of, findings_of
+from mixsim.recipe.leaves import Number, ranges, walk
+from mixsim.recipe.schema import Schema
+from mixsim.recipe.settings import COMMAND_LINE, apply, parsed
+from mixsim.units import Leaf, show, written_unit
+
+if TYPE_CHECKING:
+    from mixsim.mixture import Mixture
+
+
+@dataclass(frozen=True)
+class Recipe:
+    """A checked recipe.
+
+    Attributes
+    ----------
+    schema
+        The recipe as validated, library materials included.
+    leaves
+        Every number by its path, value in SI.
+    ranges
+        What each of them may hold.
+    tables
+        Measured spectra by the name of the material that holds them.
+    file
+        Name to show in messages.
+    text
+        The recipe as written.
+    settings
+        What the command line changed, path → value.
+    """
+
+    schema: Schema
+    leaves: Mapping[str, Leaf]
+    ranges: Mapping[str, Number]
+    tables: Mapping[str, Table]
+    file: str
+    text: str
+    settings: Mapping[str, Any]
+
+    @cached_property
+    def digest(self) -> str:
+        """Short hash of the recipe as written and of what was set, to tell one answer's origin."""
+        content = self.text + repr(sorted(self.settings.items()))
+        return hashlib.sha256(content.encode()).hexdigest()[:16]
+
+    def leaf(self, path: str, *, option: str) -> Leaf:
+        """The number at a path that an option names.
+
+        Raises
+        ------
+        BadInput
+            Where there is none, with the nearest path.
+        """
+        if path not in self.leaves:
+            allowed = f"a path of a number in {self.file} (mixsim show {self.file} lists them)"
+            suggestion = path_or_nearest(path, self.leaves)
+            raise BadInput([Fault(COMMAND_LINE, option, f"unknown path {path!r}", allowed, suggestion)])
+        return self.leaves[path]
+
+    def read(self, path: str, written: str | float, *, option: str) -> Leaf:
+        """A number that an option gives for the leaf at a path, held to its dimension and range.
+
+        Raises
+        ------
+        BadInput
+            Where it cannot be used there.
+        """
+        self.leaf(path, option=option)
+        try:
+            return self.ranges[path].leaf(parsed(written))
+        except Refusal as refusal:
+            found = f"{path}: {refusal.found}"
+            fault = Fault(COMMAND_LINE, option, found, refusal.allowed, refusal.suggestion)
+            raise BadInput([fault]) from None
+
+    def show(self, path: str, value: float, std: float | None = None) -> str:
+        """A value of the leaf at a path, in the unit that the recipe uses there."""
+        here = self.leaves[path]
+        return show(value, here.dimension, written_unit(here) or None, std)
+
+    def compile(self) -> Mixture:
+        """The mixture that this recipe describes, as a function of its numbers and a frequency axis."""
+        from mixsim.mixture import compile_recipe
+
+        return compile_recipe(self)
+
+
+def load(path: str | Path, settings: Mapping[str, Any] | None = None) -> Recipe:
+    """Read a recipe from a TOML file.
+
+    Parameters
+    ----------
+    path
+        The file.
+    settings
+        Values to set before it is checked, path → text or number.
+
+    Returns
+    -------
+    recipe
+        The checked recipe.
+
+    Raises
+    ------
+    BadInput
+        With every fault that one pass can see.
+    """
+    file = Path(path)
+    text = text_of(file)
+    return parse(text, file=str(path), folder=file.parent, settings=settings)
+
+
+def text_of(file: Path) -> str:
+    """Text of a recipe file.
+
+    Raises
+    ------
+    BadInput
+        Where it cannot be read, is binary or empty.
+    """
+
+    def fault(found: str, allowed: str) -> BadInput:
+        return BadInput([Fault(str(file), "", found, allowed)])
+
+    try:
+        text = file.read_bytes().decode("utf-8-sig")
+    except FileNotFoundError:
+        raise fault("no such file", "name a recipe (TOML) that can be read") from None
+    except OSError as error:
+        reason = (error.strerror or "it cannot be read").lower()
+        raise fault(reason, "name a recipe (TOML) that can be read") from None
+    except UnicodeDecodeError:
+        raise fault("the file is not UTF-8 text", "a recipe is a TOML file") from None
+    if "\x00" in text:
+        raise fault("the file is binary", "a recipe is a TOML file")
+    if not text.strip():
+        raise fault("the file is empty", "mixsim draft writes a starter recipe")
+    return text
+
+
+def parse(
+    text: str,
+    *,
+    file: str = "recipe",
+    folder: Path | None = None,
+    settings: Mapping[str, Any] | None = None,
+) -> Recipe:
+    """Read a recipe from TOML text; as `load`, with `folder` for the files that it names."""
+    changed = dict(settings or {})
+    try:
+        raw = tomli.loads(text)
+    except tomli.TOMLDecodeError as error:
+        reason = getattr(error, "msg", str(error))
+        fault = Fault(file, "", f"TOML syntax: {reason}", "", line=getattr(error, "lineno", None))
+        raise BadInput([fault]) from None
+
+    findings: list[Finding] = []
+    for path, value in changed.items():
+        findings += apply(raw, path, value)
+    findings += complete(raw)
+    findings += contradictions(raw)
+    schema = None
+    try:
+        schema = Schema.model_validate(raw)
+    except ValidationError as error:
+        findings += findings_of(error, raw)
+    spectra, wrong = tables(raw, folder or Path())
+    findings += wrong
+    if schema is None or findings:
+        raise BadInput(faults_of(findings, file=file, text=text, settings=changed))
+
+    leaves, allowed = dict(walk(schema)), dict(ranges(schema))
+    if wrong := list(disagreements(schema, leaves, allowed)):
+        raise BadInput(faults_of(wrong, file=file, text=text, settings=changed))
+    return Recipe(schema, leaves, allowed, spectra, file, text, changed)

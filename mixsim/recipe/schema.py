@@ -1,0 +1,182 @@
+"""The recipe's schema: which keys there are, and what each holds."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Mapping
+from functools import reduce
+from operator import or_
+from typing import TYPE_CHECKING, Annotated, Any, Literal
+
+from pydantic import BaseModel, ConfigDict, Field, create_model
+
+from mixsim.dispersion import INDEX_MODELS, TERMS, Parameter
+from mixsim.recipe.leaves import Number
+from mixsim.units import Leaf
+
+NAME_PATTERN = r"^[A-Za-z0-9_-]+$"
+Name = Annotated[str, Field(pattern=NAME_PATTERN)]
+
+Susceptibility = Annotated[Leaf, Number("number", minimum=-1.0, exclusive=True)]
+Positive = Annotated[Leaf, Number("number", minimum=0.0, exclusive=True)]
+Parts = Annotated[Leaf, Number("number", minimum=0.0)]
+Fraction = Annotated[Leaf, Number("fraction", minimum=0.0, maximum=1.0)]
+Spectral = Annotated[Leaf, Number("spectral", minimum=0.0, exclusive=True)]
+Length = Annotated[Leaf, Number("length", minimum=0.0, exclusive=True)]
+Density = Annotated[Leaf, Number("density", minimum=0.0, exclusive=True)]
+MolarMass = Annotated[Leaf, Number("molar mass", minimum=0.0, exclusive=True)]
+NumberDensity = Annotated[Leaf, Number("number density", minimum=0.0)]
+
+
+class Section(BaseModel):
+    """One table of a recipe."""
+
+    model_config = ConfigDict(extra="forbid", frozen=True, populate_by_name=True, protected_namespaces=())
+
+
+def _model_section(name: str, parameters: Mapping[str, Parameter], summary: str) -> type[Section]:
+    """Table of one registered term or index model, made from its registry entry."""
+    fields: dict[str, Any] = {"model": (Literal[name], Field(description=summary))}
+    for key, parameter in parameters.items():
+        minimum = -math.inf if parameter.minimum is None else parameter.minimum
+        number = Number(parameter.dimension, minimum=minimum, exclusive=parameter.exclusive)
+        kind: Any = Annotated[Leaf, number]
+        if parameter.is_list:
+            kind = Annotated[list[kind], Field(min_length=1)]
+        fields[key] = (kind | None, Field(default=None, description=parameter.meaning))
+    return create_model("".join(part.title() for part in name.split("-")), __base__=Section, **fields)
+
+
+TERM_SECTIONS = {n: _model_section(n, t.parameters, t.summary) for n, t in TERMS.items()}
+INDEX_SECTIONS = {n: _model_section(n, m.parameters, m.summary) for n, m in INDEX_MODELS.items()}
+if TYPE_CHECKING:
+    Term = Any
+    Index = Any
+else:
+    Term = Annotated[reduce(or_, TERM_SECTIONS.values()), Field(discriminator="model")]
+    Index = Annotated[reduce(or_, INDEX_SECTIONS.values()), Field(discriminator="model")]
+
+
+class Band(Section):
+    """Where to evaluate; the unit as written decides the axis shown."""
+
+    from_: Spectral | None = Field(default=None, alias="from")
+    to: Spectral | None = None
+    points: Annotated[int, Field(ge=2, le=10_000_000, strict=True)] | None = None
+    spacing: Literal["linear", "log"] | None = None
+    values: Annotated[list[Spectral], Field(min_length=1)] | None = None
+
+
+class Host(Section):
+    """The matrix, which takes what the other fractions leave."""
+
+    material: Name
+
+
+class Shape(Section):
+    """Shape of the grains of one inclusion."""
+
+    kind: Literal["sphere", "spheroid"]
+    aspect_ratio: Positive | None = Field(default=None, description="symmetry axis over cross axis")
+
+
+class Inclusion(Section):
+    """One kind of grain in the host; the basis of its loading is in the key."""
+
+    material: Name
+    volume_fraction: Fraction | None = Field(default=None, description="of the whole mixture, voids included")
+    volume_fraction_of_solids: Fraction | None = Field(default=None, description="voids excluded")
+    weight_fraction: Fraction | None = Field(default=None, description="of the solids")
+    phr: Parts | None = Field(default=None, description="parts by weight per hundred parts of host")
+    shape: Shape = Shape(kind="sphere")
+    orientation: Literal["random", "aligned"] | None = None
+    diameter: Length | None = Field(
+        default=None, description="equivalent-volume diameter; the quasi-static limit is checked against it"
+    )
+    contact: Literal["insulated", "touching"] | None = Field(
+        default=None, description="what the maker knows about conductive grains"
+    )
+
+
+class Dopant(Section):
+    """Isolated absorbers in the host; their polarisations add and they take no volume."""
+
+    number_density: NumberDensity | None = None
+    weight_fraction: Fraction | None = Field(default=None, description="of the doped host")
+    mole_fraction: Fraction | None = Field(default=None, description="of the doped host")
+    molar_mass: MolarMass | None = None
+    ions_per_formula: Positive | None = None
+    local_field: Literal["none", "virtual-cavity"] = "none"
+    terms: Annotated[dict[Name, Term], Field(min_length=1)]
+
+
+class Voids(Section):
+    """Spheres of vacuum."""
+
+    volume_fraction: Fraction
+
+
+class Mixing(Section):
+    """The rule that makes one medium of many."""
+
+    rule: str = "maxwell-garnett"
+    density: Density | None = Field(
+        default=None, description="measured density of the mixture; replaces additive volumes"
+    )
+
+
+class Response(Section):
+    """ε or μ of a material: level above all resonances, and terms."""
+
+    infinity: Positive | None = Field(default=None, description="level above all resonances")
+    susceptibility: Susceptibility | None = Field(default=None, description="that level less one")
+    terms: dict[Name, Term] = {}
+
+
+class Valid(Section):
+    """Band in which a material's description holds."""
+
+    from_: Spectral = Field(alias="from")
+    to: Spectral
+
+
+class Material(Section):
+    """What one constituent is made of."""
+
+    title: str = ""
+    source: str = ""
+    kind: Literal["published", "memory", "practice", "invented"] | None = None
+    based_on: Name | None = None
+    valid: Valid | None = None
+    density: Density | None = None
+    molar_mass: MolarMass | None = None
+    permittivity: Response | None = None
+    permeability: Response | None = None
+    index: Index | None = None
+    table: str | None = None
+    static: Positive | None = Field(
+        default=None, description="stated static permittivity of an index or table"
+    )
+    high_frequency: Positive | None = None
+
+
+class Measured(Section):
+    """What was read on a sample."""
+
+    static: Positive | None = Field(default=None, description="ε′ on the low-frequency plateau")
+    high_frequency: Positive | None = Field(default=None, description="ε′ above all resonances named")
+
+
+class Schema(Section):
+    """A whole recipe."""
+
+    title: str = ""
+    band: Band | None = None
+    host: Host
+    inclusions: dict[Name, Inclusion] = {}
+    dopants: dict[Name, Dopant] = {}
+    voids: Voids | None = None
+    mixing: Mixing = Mixing()
+    materials: dict[Name, Material] = {}
+    measured: Measured | None = None
+    unknowns: dict[str, Annotated[list[str | float], Field(min_length=2, max_length=2)]] = {}
