@@ -1,0 +1,206 @@
+"""Cautions beside a prediction or a sweep: validity, doubt, passivity."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Mapping
+
+import numpy as np
+
+from mixsim.analysis.band import Axis
+from mixsim.analysis.caution import Caution
+from mixsim.analysis.rules import applicable_rules, conducts
+from mixsim.analysis.suspicion import suspicions
+from mixsim.mixture import HOST, VOIDS, Composition, Limits, Mixture, Response
+from mixsim.observables import complex_index
+from mixsim.recipe import Recipe
+from mixsim.units import SPEED_OF_LIGHT, show
+
+SIZE_PARAMETER = 0.3  # πdn/λ: scattering and retardation enter at its square, here a tenth
+RANDOM_PACKING = 0.64  # of equal hard spheres, common practice
+TOUCHING = 0.16  # volume fraction at which random hard spheres percolate, common practice
+SPREAD = 0.2  # share by which other rules may differ before it is said
+PASSIVE = 1e-9  # share of |ε| below which a negative loss is rounding
+
+
+def cautions(
+    recipe: Recipe,
+    mixture: Mixture,
+    axis: Axis,
+    response: Response,
+    limits: Limits,
+    composition: Composition,
+    constituents: Mapping[str, Response],
+) -> tuple[Caution, ...]:
+    """Every caution about one prediction, or about the worst corner of a sweep."""
+    found = [
+        *suspicions(recipe),
+        *_ranges(recipe, mixture, axis),
+        *_sizes(recipe, axis, constituents),
+        *_crowding(recipe, mixture, composition),
+        *_no_limit(mixture, limits),
+        *_not_passive(axis, response, constituents),
+        *_rule_spread(recipe, mixture, axis, response),
+    ]
+    return tuple(dict.fromkeys(found))
+
+
+def _ranges(recipe: Recipe, mixture: Mixture, axis: Axis) -> Iterator[Caution]:
+    low, high = float(axis.omega.min()), float(axis.omega.max())
+    for name in dict.fromkeys(phase.material for phase in mixture.phases if phase.name != VOIDS):
+        valid = recipe.schema.materials[name].valid
+        if valid is None:
+            continue
+        ends = sorted((valid.from_.value, valid.to.value))
+        slack = 1e-9
+        if low < ends[0] * (1 - slack) or high > ends[1] * (1 + slack):
+            yield Caution(
+                "out-of-range",
+                f"materials.{name}",
+                f"{name} is described from {valid.from_.written} to {valid.to.written}; the band "
+                f"{_span(axis)} leaves that",
+            )
+
+
+def _span(axis: Axis) -> str:
+    first, last = (show(float(axis.omega[i]), "spectral", axis.unit) for i in (0, -1))
+    return f"from {first} to {last}" if len(axis.omega) > 1 else f"at {first}"
+
+
+def _sizes(recipe: Recipe, axis: Axis, constituents: Mapping[str, Response]) -> Iterator[Caution]:
+    host = constituents[HOST]
+    around = complex_index(axis.omega, host.permittivity, host.permeability).real
+    for name, inclusion in recipe.schema.inclusions.items():
+        if inclusion.diameter is None:
+            continue
+        size = inclusion.diameter.value
+        parameter = np.pi * size * around * axis.omega / (2 * np.pi * SPEED_OF_LIGHT)
+        worst = int(np.argmax(parameter))
+        where = show(float(axis.omega[worst]), "spectral", axis.unit)
+        path = f"inclusions.{name}.diameter"
+        if parameter[worst] > SIZE_PARAMETER:
+            yield Caution(
+                "quasi-static",
+                path,
+                f"grains of {inclusion.diameter.written} reach a size parameter πdn/λ of "
+                f"{parameter[worst]:.2g} at {where}: scattering and retardation, which the rule leaves out, "
+                f"matter above {SIZE_PARAMETER:g}",
+            )
+        grain = constituents[name]
+        extinction = complex_index(axis.omega, grain.permittivity, grain.permeability).imag
+        with np.errstate(divide="ignore"):
+            ratio = size * axis.omega * extinction / SPEED_OF_LIGHT
+        worst = int(np.argmax(ratio))
+        if ratio[worst] > 1.0:
+            depth = show(size / float(ratio[worst]), "length")
+            where = show(float(axis.omega[worst]), "spectral", axis.unit)
+            yield Caution(
+                "skin-depth",
+                path,
+                f"grains of {inclusion.diameter.written} are thicker than the skin depth {depth} at {where}: "
+                f"the field does not fill them as the rule assumes",
+            )
+
+
+def _crowding(recipe: Recipe, mixture: Mixture, composition: Composition) -> Iterator[Caution]:
+    """Loading against packing, percolation and what is said of contact."""
+    fractions = {g.name: float(np.max(composition.volume_fractions[g.name])) for g in mixture.inclusions}
+    total = sum(fractions.values())
+    if total > RANDOM_PACKING:
+        yield Caution(
+            "packing",
+            "inclusions",
+            f"a loading of {show(total, 'fraction', '%')} lies above {RANDOM_PACKING:.0%}, the random close "
+            f"packing of equal spheres: it takes a mix of sizes or pressing",
+        )
+    rule, threshold = mixture.rule, mixture.rule.percolation
+    conducting = {grain.name for grain in mixture.inclusions if conducts(mixture, grain.name)}
+    if not conducting or conducts(mixture, HOST):
+        return
+    filled = sum(fractions[name] for name in conducting)
+    what, percent = " and ".join(sorted(conducting)), show(filled, "fraction", "%")
+    contacts = {name: recipe.schema.inclusions[name].contact for name in sorted(conducting)}
+    if threshold is not None and filled > 0.75 * threshold:
+        yield Caution(
+            "percolation",
+            "mixing.rule",
+            f"{percent} of conducting {what} is near or above the threshold {threshold:.3g} of {rule.name}, "
+            f"where small changes of loading change everything; real grains percolate from {TOUCHING:g} on",
+        )
+    for name, contact in contacts.items():
+        path = f"inclusions.{name}.contact"
+        if contact == "touching" and threshold is None:
+            yield Caution(
+                "contact", path, f"{name} is said to touch, while {rule.name} keeps its grains apart"
+            )
+        elif contact == "insulated" and threshold is not None and filled > threshold:
+            yield Caution(
+                "contact", path, f"{name} is said to be insulated, while {rule.name} lets it conduct here"
+            )
+        elif contact is None and threshold is None and filled > TOUCHING:
+            yield Caution(
+                "contact",
+                path,
+                f"{percent} of conducting {what}: random grains touch from about {TOUCHING:.0%} on, and "
+                f"{rule.name} keeps them apart; say contact = 'insulated' or 'touching'",
+            )
+
+
+def _no_limit(mixture: Mixture, limits: Limits) -> Iterator[Caution]:
+    x = mixture.defaults
+    lacking: dict[str, list[str]] = {}
+    for phase in mixture.phases:
+        levels = {"static": phase.permittivity.low(x)[1], "high_frequency": phase.permittivity.high(x)}
+        words = [word for word, level in levels.items() if np.isnan(level)]
+        if words:
+            lacking[phase.material] = words
+    for name, words in lacking.items():
+        yield Caution(
+            "no-limit",
+            f"materials.{name}",
+            f"{name} is known over a band only, so the mixture has no {' and no '.join(words)} limit; "
+            f"state {' and '.join(words)} of the material where known",
+        )
+    if np.any(limits.conductivity > 0.0):
+        yield Caution(
+            "no-limit",
+            "",
+            "the mixture conducts, so ε has no static limit: conductivity and level at dc stand instead",
+        )
+
+
+def _not_passive(axis: Axis, response: Response, constituents: Mapping[str, Response]) -> Iterator[Caution]:
+    for name, part in {"the mixture": response, **constituents}.items():
+        for symbol, value in (("ε″", part.permittivity), ("μ″", part.permeability)):
+            gain = value.imag < -PASSIVE * np.abs(value)
+            if np.any(gain):
+                first = int(np.flatnonzero(gain.reshape(-1, gain.shape[-1]).any(axis=0))[0])
+                where = show(float(axis.omega[first]), "spectral", axis.unit)
+                yield Caution(
+                    "not-passive",
+                    "",
+                    f"{symbol} of {name} is negative, first at {where}: gain that no passive medium has"
+                    + ("; grains of different shapes in one host can do that" if part is response else ""),
+                )
+
+
+def _rule_spread(recipe: Recipe, mixture: Mixture, axis: Axis, response: Response) -> Iterator[Caution]:
+    """How far the other applicable rules lie, at the numbers of the recipe."""
+    if not mixture.inclusions and mixture.voids is None:
+        return
+    if response.permittivity.ndim > 1 + mixture.aligned:
+        return
+    for name in applicable_rules(recipe, mixture):
+        other = mixture.with_rule(name).response({}, axis.omega).permittivity
+        share = np.abs(other - response.permittivity) / np.abs(response.permittivity)
+        worst = int(np.argmax(share.reshape(-1, share.shape[-1]).max(axis=0)))
+        if (most := float(share.max())) > SPREAD:
+            where = show(float(axis.omega[worst]), "spectral", axis.unit)
+            yield Caution(
+                "rule-spread",
+                "mixing.rule",
+                f"{name} differs from {mixture.rule.name} by up to {_share(most)} of |ε|, most at {where}",
+            )
+
+
+def _share(part: float) -> str:
+    return f"{part:.0%}" if part < 2.0 else f"{part:.2g} times"
