@@ -6,7 +6,9 @@ from mixsim.analysis.auditing import Audit, audit
 from mixsim.analysis.band import Axis, Varied, axis_of, varied
 from mixsim.analysis.caution import Caution
 from mixsim.analysis.inversion import Estimate, Inversion, Reading, Unknown
+from mixsim.analysis.invert import invert
 from mixsim.analysis.prediction import Prediction, predict, sweep
+from mixsim.analysis.readings import freed
 
 __all__ = [
     "Audit",
@@ -20,6 +22,8 @@ __all__ = [
     "Varied",
     "audit",
     "axis_of",
+    "freed",
+    "invert",
     "predict",
     "sweep",
     "varied",

@@ -1,0 +1,96 @@
+"""The readings as a function of the unknowns, each scaled to 0…1 over its range."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from mixsim.analysis.inversion import Reading, Unknown
+from mixsim.mixture import HOST, Mixture
+
+Floats = NDArray[np.float64]
+_WIDE = 50.0  # ratio of the ends from which a range is gone through by ratio
+
+
+class ReadingModel:
+    """What static and high-frequency readings the mixture gives for some values of the unknowns.
+
+    Parameters
+    ----------
+    mixture
+        The evaluator.
+    unknowns
+        Leaves and their ranges.
+    readings
+        Which limits are read.
+    """
+
+    def __init__(self, mixture: Mixture, unknowns: Sequence[Unknown], readings: Sequence[Reading]) -> None:
+        self.mixture, self.unknowns, self.readings = mixture, tuple(unknowns), tuple(readings)
+        self._log = [u.low > 0.0 and u.high / u.low > _WIDE for u in unknowns]
+
+    def values(self, t: Floats) -> Floats:
+        """Values of the unknowns [SI] at scaled places, shape (..., unknowns)."""
+        columns = [
+            u.low * (u.high / u.low) ** t[..., i] if log else u.low + (u.high - u.low) * t[..., i]
+            for i, (u, log) in enumerate(zip(self.unknowns, self._log, strict=True))
+        ]
+        return np.stack(columns, axis=-1)
+
+    def places(self, values: Floats) -> Floats:
+        """Scaled places of some values [SI], shape (..., unknowns)."""
+        columns = [
+            np.log(values[..., i] / u.low) / np.log(u.high / u.low)
+            if log
+            else (values[..., i] - u.low) / (u.high - u.low)
+            for i, (u, log) in enumerate(zip(self.unknowns, self._log, strict=True))
+        ]
+        return np.stack(columns, axis=-1)
+
+    def slopes(self, t: Floats) -> Floats:
+        """Derivatives of the values by their scaled places, shape (..., unknowns)."""
+        values = self.values(t)
+        columns = [
+            values[..., i] * np.log(u.high / u.low) if log else np.full(t.shape[:-1], u.high - u.low)
+            for i, (u, log) in enumerate(zip(self.unknowns, self._log, strict=True))
+        ]
+        return np.stack(columns, axis=-1)
+
+    def __call__(self, t: Floats) -> Floats:
+        """Readings at scaled places, shape (..., readings); NaN where there is no limit or no room."""
+        return self.at(self.values(np.asarray(t, dtype=float)))
+
+    def at(self, values: Floats) -> Floats:
+        """Readings at values [SI], shape (..., readings)."""
+        given = {u.path: values[..., i] for i, u in enumerate(self.unknowns)}
+        limits = self.mixture.limits(given)
+        levels = [np.real(getattr(limits, reading.kind)) for reading in self.readings]
+        stacked = np.stack(levels, axis=-1)
+        if self.mixture.density is None:
+            room = self.mixture.composition(given).volume_fractions[HOST]
+            stacked[room < -1e-12] = np.nan
+        return stacked
+
+    def phase_levels(self, t: Floats, kind: str) -> dict[str, Floats]:
+        """Level of each phase on its own at scaled places; infinite where it conducts, by name."""
+        values = self.values(t)
+        x: dict[str, Any] = dict(self.mixture.defaults)
+        x |= {u.path: values[..., i, np.newaxis] for i, u in enumerate(self.unknowns)}
+        levels = {}
+        for phase in self.mixture.phases:
+            if kind == "static":
+                rate, level = phase.permittivity.low(x)
+                level = np.where(np.asarray(rate) > 0.0, np.inf, np.real(level))
+            else:
+                level = np.real(phase.permittivity.high(x))
+            levels[phase.name] = np.broadcast_to(level, (*t.shape[:-1], 1))[..., 0]
+        return levels
+
+
+def grid(unknowns: int, points: int) -> Floats:
+    """Scaled places on a regular grid, shape (points, …, unknowns)."""
+    axis = np.linspace(0.0, 1.0, points)
+    return np.stack(np.meshgrid(*[axis] * unknowns, indexing="ij"), axis=-1)
