@@ -146,7 +146,7 @@ def predict(recipe: Recipe) -> Prediction:
     ...     host.material = "polyethylene"
     ... ''')
     >>> print(f"{mixsim.predict(recipe).permittivity[0].real:.2f}")
-    2.26
+    2.30
     """
     return _evaluated(recipe, ())
 
