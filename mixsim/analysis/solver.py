@@ -40,25 +40,28 @@ def least_squares(model: Model, target: Floats, weight: Floats, starts: Floats) 
         difference = (model(t) - target) * weight
         return np.where(np.isfinite(difference), difference, 1e9)
 
+    def slope(t: Floats) -> Floats:
+        return np.nan_to_num(jacobian(model, t) * weight[:, np.newaxis])
+
+    chosen = starts[:_STARTS]
+    near, _ = gauss_newton(model, np.broadcast_to(target, (len(chosen), len(target))), weight, chosen)
     fits: list[tuple[Floats, float]] = []
-    for start in starts[:_STARTS]:
+    for start in _apart([*near, *chosen[:1]]):
         inside = np.clip(start, 1e-9, 1.0 - 1e-9)
-        fit = bounded(
-            residual,
-            inside,
-            bounds=(0.0, 1.0),
-            jac="3-point",
-            xtol=1e-15,
-            ftol=1e-15,
-            gtol=1e-15,
-            max_nfev=200,
-        )
+        tight = {"xtol": 1e-15, "ftol": 1e-15, "gtol": 1e-15, "max_nfev": 100}
+        fit = bounded(residual, inside, bounds=(0.0, 1.0), jac=slope, **tight)
         fits.append((np.asarray(fit.x), 2.0 * float(fit.cost)))
     fits.sort(key=lambda item: item[1])
-    distinct: list[tuple[Floats, float]] = []
-    for place, cost in fits:
-        if all(np.max(np.abs(place - known)) > _SAME for known, _ in distinct):
-            distinct.append((place, cost))
+    kept = _apart([place for place, _ in fits])
+    return [(place, next(cost for known, cost in fits if known is place)) for place in kept]
+
+
+def _apart(places: list[Floats]) -> list[Floats]:
+    """Places without those that stand by an earlier one."""
+    distinct: list[Floats] = []
+    for place in places:
+        if all(np.max(np.abs(place - known)) > _SAME for known in distinct):
+            distinct.append(place)
     return distinct
 
 
@@ -146,7 +149,7 @@ def covariance(jac: Floats, std: Floats) -> Floats | None:
 def gauss_newton(
     model: Model, targets: Floats, weight: Floats, start: Floats
 ) -> tuple[Floats, NDArray[np.bool_]]:
-    """Best fit to each of many sets of readings at once, from one start.
+    """Best fit to each of many sets of readings at once.
 
     Parameters
     ----------
@@ -157,14 +160,14 @@ def gauss_newton(
     weight
         One over the standard uncertainty of each reading, shape (R,).
     start
-        Scaled place, shape (U,).
+        Scaled place, shape (U,), or one for each set, shape (M, U).
 
     Returns
     -------
     places, inside
         Shape (M, U), held to 0…1; and whether the fit needed no holding.
     """
-    t = np.broadcast_to(start, (len(targets), len(start))).copy()
+    t = np.broadcast_to(start, (len(targets), start.shape[-1])).copy()
     held: NDArray[np.bool_] = np.zeros(len(t), dtype=bool)
     for _ in range(12):
         jac = jacobian(model, t) * weight[:, np.newaxis]
@@ -174,5 +177,8 @@ def gauss_newton(
         step[sound] = np.einsum("mur,mr->mu", np.linalg.pinv(jac[sound]), residual[sound])
         wanted = t + np.clip(step, -0.3, 0.3)
         t = np.clip(wanted, 0.0, 1.0)
+        done = bool(np.max(np.abs(step)) < 1e-12)
         held = np.asarray((np.abs(wanted - t) > 1e-12).any(axis=-1) | ~sound)
+        if done:
+            break
     return t, ~held

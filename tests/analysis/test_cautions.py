@@ -1,0 +1,115 @@
+"""Each caution is said where it is due and not where it is not."""
+
+from __future__ import annotations
+
+import numpy as np
+import pytest
+
+import mixsim
+from mixsim.analysis import varied
+
+OXIDE = """
+host.material = "matrix"
+inclusions.grain.material = "grain"
+inclusions.grain.volume_fraction = "{loading}"
+{extra}
+materials.matrix.permittivity.infinity = 2.25
+materials.grain.permittivity.infinity = 4.0
+materials.grain.permittivity.terms.free = {{ model = "drude", plasma = "1.5 eV", damping = "0.1 eV" }}
+{more}
+"""
+INSULATED = 'inclusions.grain.contact = "insulated"\n'
+VISIBLE = 'band = { from = "400 nm", to = "800 nm", points = 41 }\n'
+
+
+TWO_SHAPES = """
+host.material = "matrix"
+inclusions.ball = { material = "weak", volume_fraction = "34 %" }
+inclusions.rod.material = "strong"
+inclusions.rod.volume_fraction = "61 %"
+inclusions.rod.shape = { kind = "spheroid", aspect_ratio = 80.0 }
+materials.matrix.permittivity.infinity = 2.0
+materials.weak.index = { model = "constant", n = 0.0028, k = 2.2297 }
+materials.strong.index = { model = "constant", n = 0.0408, k = 7.978 }
+band.values = ["1 µm"]
+"""
+
+
+def kinds(text: str) -> list[str]:
+    return [caution.kind for caution in mixsim.predict(mixsim.parse(text)).warnings]
+
+
+def oxide(loading: str = "1 %", extra: str = INSULATED, more: str = VISIBLE) -> str:
+    return OXIDE.format(loading=loading, extra=extra, more=more)
+
+
+def test_nothing_is_said_of_a_sound_recipe() -> None:
+    assert kinds(oxide(extra=INSULATED + 'inclusions.grain.diameter = "15 nm"')) == []
+
+
+@pytest.mark.parametrize(
+    ("text", "kind"),
+    [
+        (oxide(extra=INSULATED + 'inclusions.grain.diameter = "90 nm"'), "quasi-static"),
+        (
+            oxide(extra=INSULATED + 'inclusions.grain.diameter = "2 µm"', more='band.values = ["20 µm"]\n'),
+            "skin-depth",
+        ),
+        (oxide("70 %"), "packing"),
+        (oxide("20 %", extra=""), "contact"),
+        (oxide("5 %", extra='inclusions.grain.contact = "touching"'), "contact"),
+        (oxide("40 %", more=VISIBLE + 'mixing.rule = "bruggeman"\n'), "contact"),
+        (oxide("28 %", extra="", more=VISIBLE + 'mixing.rule = "bruggeman"\n'), "percolation"),
+        (oxide("40 %", extra="", more=VISIBLE + 'mixing.rule = "bruggeman"\n'), "no-limit"),
+        (oxide("10 %", extra="", more='band.values = ["0.51 eV"]\n'), "rule-spread"),
+        ('host.material = "fused-silica"\nband.values = ["9 µm"]\n', "out-of-range"),
+        ('host.material = "borosilicate-crown"\nband.values = ["600 nm"]\n', "no-limit"),
+        (TWO_SHAPES, "not-passive"),
+    ],
+)
+def test_said_where_due(text: str, kind: str) -> None:
+    assert kind in kinds(text)
+
+
+DYE = """
+host.material = "glass"
+materials.glass.permittivity.infinity = 2.25
+dopants.dye.terms.a = {{ model = "lorentz", step = 0.001, resonance = "2.1 eV", damping = "0.1 eV" }}
+dopants.dye.terms.b = {{ model = "lorentz", step = 0.001, resonance = "{resonance}", damping = "0.1 eV" }}
+band = {{ from = "400 nm", to = "800 nm", points = 5 }}
+"""
+
+
+def test_wavenumbers_among_visible_light_are_asked_about() -> None:
+    found = mixsim.predict(mixsim.parse(DYE.format(resonance="590 cm^-1"))).warnings
+    (caution,) = found
+    assert (caution.kind, caution.path) == ("unit-suspect", "dopants.dye.terms.b.resonance")
+    assert "'590 nm'" in caution.message
+    assert "16949.2 nm" in caution.message
+    for sound in ("590 nm", "16949 cm^-1", "2.4 eV"):
+        assert kinds(DYE.format(resonance=sound)) == []
+
+
+def test_an_infrared_band_beside_an_infrared_band_is_not_asked_about() -> None:
+    text = DYE.format(resonance="590 cm^-1").replace('"2.1 eV"', '"700 cm^-1"')
+    assert kinds(text.replace('"400 nm"', '"400 cm^-1"').replace('"800 nm"', '"900 cm^-1"')) == []
+
+
+def test_sweep_is_judged_at_its_worst() -> None:
+    recipe = mixsim.parse(oxide())
+    swept = mixsim.sweep(recipe, [varied(recipe, "inclusions.grain.volume_fraction", "1 %", "70 %", 5)])
+    assert "packing" in [caution.kind for caution in swept.warnings]
+    assert np.all(np.isfinite(swept.permittivity))
+
+
+def test_audit_computes_nothing_and_asks_about_units(tmp_path: object) -> None:
+    file = tmp_path / "dye.toml"  # type: ignore[operator]
+    file.write_text(DYE.format(resonance="590 cm^-1"))
+    report = mixsim.audit(file)
+    assert report.passed
+    assert [caution.kind for caution in report.warnings] == ["unit-suspect"]
+    file.write_text(DYE.format(resonance="590 kg").replace("lorentz", "lorenz"))
+    report = mixsim.audit(file)
+    assert not report.passed
+    assert len(report.faults) == 2
+    assert report.to_dict()["faults"][0]["line"] == 4
