@@ -6,7 +6,7 @@ from mixsim.analysis.auditing import Audit, audit
 from mixsim.analysis.band import Axis, Varied, axis_of, varied
 from mixsim.analysis.caution import Caution
 from mixsim.analysis.inversion import Estimate, Inversion, Reading, Unknown
-from mixsim.analysis.invert import invert
+from mixsim.analysis.inverting import invert
 from mixsim.analysis.prediction import Prediction, predict, sweep
 from mixsim.analysis.readings import freed
 

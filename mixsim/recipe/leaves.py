@@ -37,6 +37,11 @@ class Number:
     maximum: float = math.inf
     exclusive: bool = False
 
+    @property
+    def bounded(self) -> bool:
+        """Whether anything is refused for its size."""
+        return math.isfinite(self.minimum) or math.isfinite(self.maximum)
+
     def holds(self, value: float) -> bool:
         """Whether an SI value lies in the range."""
         above = value > self.minimum if self.exclusive else value >= self.minimum

@@ -1,0 +1,7 @@
+"""The command line: parse, call the library, present."""
+
+from __future__ import annotations
+
+from mixsim.cli.app import app, main
+
+__all__ = ["app", "main"]

@@ -1,0 +1,61 @@
+"""The program: its commands and its own options."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from typing import Annotated
+
+import typer
+
+import mixsim
+from mixsim.cli import questions, reference
+from mixsim.cli.status import Command, Program
+
+app = typer.Typer(
+    name="mixsim",
+    cls=Program,
+    add_completion=False,
+    rich_markup_mode=None,
+    pretty_exceptions_enable=False,
+    help="Permittivity and permeability of dielectric mixtures from one recipe: predict, sweep, invert.",
+    epilog="\b\nExample:\n  mixsim draft nanoparticle-film --out recipe.toml",
+)
+
+# each with the example that its help shows
+_COMMANDS: dict[str, tuple[Callable[..., int], str]] = {
+    "draft": (reference.draft, "draft filled-resin --out recipe.toml"),
+    "predict": (questions.predict, "predict recipe.toml --out film.png --out film.csv"),
+    "sweep": (questions.sweep, "sweep recipe.toml --vary inclusions.oxide.volume_fraction 2% 20% 10"),
+    "invert": (
+        questions.invert,
+        "invert recipe.toml --static '3.20 ± 0.01' --free inclusions.oxide.volume_fraction 0% 40%",
+    ),
+    "audit": (questions.audit, "audit recipe.toml"),
+    "list": (reference.list_, "list rules"),
+    "show": (reference.show, "show bruggeman"),
+    "schema": (reference.schema, "schema --out recipe.schema.json"),
+}
+for _name, (_command, _example) in _COMMANDS.items():
+    app.command(_name, cls=Command, epilog=f"\b\nExample:\n  mixsim {_example}")(_command)
+
+
+def _version(wanted: bool) -> None:
+    if wanted:
+        print(f"mixsim {mixsim.__version__}")
+        raise typer.Exit
+
+
+@app.callback(invoke_without_command=True)
+def _program(
+    context: typer.Context,
+    version: Annotated[
+        bool, typer.Option("--version", callback=_version, is_eager=True, help="Show the version and exit.")
+    ] = False,
+) -> None:
+    if context.invoked_subcommand is None:
+        print(context.get_help())
+
+
+def main() -> None:
+    """Run the program."""
+    app()

@@ -1,0 +1,53 @@
+"""Options that several commands share, and what they mean."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from pathlib import Path
+from typing import Annotated
+
+import typer
+
+from mixsim.cli.status import SEPARATOR
+from mixsim.errors import BadInput, Fault
+from mixsim.recipe import COMMAND_LINE, Recipe, load, settings_of
+
+RecipeFile = Annotated[Path, typer.Argument(metavar="RECIPE", help="The recipe, a TOML file.")]
+Set = Annotated[
+    list[str] | None,
+    typer.Option("--set", metavar="PATH=VALUE", help="Change a key for this run; may be repeated."),
+]
+RuleName = Annotated[str, typer.Option("--rule", metavar="NAME", help="Use this mixing rule.")]
+Json = Annotated[bool, typer.Option("--json", help="Put one JSON document on standard output.")]
+Out = Annotated[
+    list[str] | None,
+    typer.Option(
+        "--out",
+        metavar="FILE",
+        help="Write the answer to a file: .csv .json .npz .png .svg .pdf; may be repeated.",
+    ),
+]
+Strict = Annotated[bool, typer.Option("--strict", help="Take cautions as errors.")]
+
+
+def recipe_from(file: Path, settings: Sequence[str] | None, rule: str) -> Recipe:
+    """The recipe with what the command line changes."""
+    changed = settings_of(settings or ())
+    if rule:
+        changed["mixing.rule"] = rule
+    return load(file, changed)
+
+
+def words(option: str, text: str, names: str) -> list[str]:
+    """The words of one option that takes several.
+
+    Raises
+    ------
+    BadInput
+        Where there are too few.
+    """
+    found = text.split(SEPARATOR)
+    if len(found) != len(names.split()) or not all(found):
+        shown = " ".join(found) or "nothing"
+        raise BadInput([Fault(COMMAND_LINE, option, f"{shown!r}", f"{option} takes {names}")])
+    return found

@@ -1,0 +1,184 @@
+"""Commands that ask a recipe: predict, sweep, invert, audit."""
+
+from __future__ import annotations
+
+import sys
+from collections.abc import Sequence
+from typing import TYPE_CHECKING, Annotated
+
+import typer
+
+from mixsim.cli.options import Json, Out, RecipeFile, RuleName, Set, Strict, recipe_from, words
+from mixsim.cli.status import ANSWERED, NO, UNDECIDED
+from mixsim.errors import BadInput, Fault, Refusal
+from mixsim.recipe import COMMAND_LINE, settings_of
+from mixsim.units import Leaf, read
+
+if TYPE_CHECKING:
+    from mixsim.analysis import Audit, Caution, Inversion, Prediction
+
+
+def predict(
+    recipe: RecipeFile,
+    settings: Set = None,
+    rule: RuleName = "",
+    json: Json = False,
+    out: Out = None,
+    strict: Strict = False,
+) -> int:
+    """Permittivity and permeability of the mixture over the band of its recipe."""
+    from mixsim.analysis import predict as ask
+
+    _check(out)
+    answer = ask(recipe_from(recipe, settings, rule))
+    _deliver(answer, answer.recipe.file, json=json, out=out, strict=strict)
+    return ANSWERED
+
+
+def sweep(
+    recipe: RecipeFile,
+    vary: Annotated[
+        list[str] | None,
+        typer.Option(
+            "--vary", metavar="PATH FROM TO POINTS", help="Vary a number, ends included; repeated, a grid."
+        ),
+    ] = None,
+    log: Annotated[bool, typer.Option("--log", help="Space the values by a constant ratio.")] = False,
+    settings: Set = None,
+    rule: RuleName = "",
+    json: Json = False,
+    out: Out = None,
+    strict: Strict = False,
+) -> int:
+    """The same for every combination of some numbers of the recipe."""
+    from mixsim.analysis import sweep as ask
+    from mixsim.analysis import varied
+
+    _check(out)
+    loaded = recipe_from(recipe, settings, rule)
+    axes = []
+    for text in vary or ():
+        path, start, stop, points = words("--vary", text, "PATH FROM TO POINTS")
+        axes.append(varied(loaded, path, start, stop, _count(points), log=log))
+    answer = ask(loaded, axes)
+    _deliver(answer, loaded.file, json=json, out=out, strict=strict)
+    return ANSWERED
+
+
+def invert(
+    recipe: RecipeFile,
+    static: Annotated[
+        str, typer.Option("--static", metavar="TEXT", help="Low-frequency reading, such as '2.70 ± 0.01'.")
+    ] = "",
+    high_frequency: Annotated[
+        str, typer.Option("--high-frequency", metavar="TEXT", help="Reading above all bands.")
+    ] = "",
+    free: Annotated[
+        list[str] | None,
+        typer.Option(
+            "--free", metavar="PATH LOW HIGH", help="Find this number in a range; replaces [unknowns]."
+        ),
+    ] = None,
+    seed: Annotated[int, typer.Option("--seed", min=0, help="Of the Monte Carlo.")] = 0,
+    settings: Set = None,
+    rule: RuleName = "",
+    json: Json = False,
+    out: Out = None,
+    strict: Strict = False,
+) -> int:
+    """What went in, from the static and high-frequency permittivity of a sample.
+
+    Exit status 1: no value gives the reading; 3: the readings cannot tell.
+    """
+    from mixsim.analysis import freed
+    from mixsim.analysis import invert as ask
+
+    _check(out)
+    loaded = recipe_from(recipe, settings, rule)
+    unknowns = [freed(loaded, *words("--free", text, "PATH LOW HIGH")) for text in free or ()]
+    answer = ask(
+        loaded,
+        static=_reading("--static", static),
+        high_frequency=_reading("--high-frequency", high_frequency),
+        free=unknowns,
+        seed=seed,
+    )
+    _deliver(answer, loaded.file, json=json, out=out, strict=strict)
+    return {"answered": ANSWERED, "impossible": NO, "undecided": UNDECIDED}[answer.verdict]
+
+
+def audit(
+    recipe: RecipeFile,
+    settings: Set = None,
+    rule: RuleName = "",
+    json: Json = False,
+    strict: Strict = False,
+) -> int:
+    """Everything that is wrong with a recipe, nothing computed.
+
+    Exit status 1: it cannot be used.
+    """
+    from mixsim.analysis import audit as ask
+
+    changed = settings_of(settings or ()) | ({"mixing.rule": rule} if rule else {})
+    answer = ask(recipe, changed)
+    _print(answer, json=json)
+    return ANSWERED if answer.passed and not (strict and answer.warnings) else NO
+
+
+def _count(text: str) -> int:
+    if not text.isdecimal():
+        allowed = "a whole number, at least 2"
+        raise BadInput([Fault(COMMAND_LINE, "--vary", f"{text!r} points", allowed)])
+    return int(text)
+
+
+def _reading(option: str, text: str) -> Leaf | None:
+    if not text:
+        return None
+    try:
+        return read(text, "number")
+    except Refusal as refusal:
+        fault = Fault(COMMAND_LINE, option, refusal.found, refusal.allowed, refusal.suggestion)
+        raise BadInput([fault]) from None
+
+
+def _check(files: Sequence[str] | None) -> None:
+    """Refuse files that could not be written, before anything is computed."""
+    if files:
+        from mixsim.present.files import check
+
+        for file in files:
+            check(file)
+
+
+def _deliver(
+    answer: Prediction | Inversion, file: str, *, json: bool, out: Sequence[str] | None, strict: bool
+) -> None:
+    """Write the files, then print; or, under `strict`, refuse an answer with cautions."""
+    if strict and answer.warnings:
+        raise BadInput([_as_fault(caution, file) for caution in answer.warnings])
+    if out:
+        from mixsim.present.files import write
+
+        for name in out:
+            write(answer, name)
+            print(f"mixsim: wrote {name}", file=sys.stderr)
+    _print(answer, json=json)
+
+
+def _print(answer: Prediction | Inversion | Audit, *, json: bool) -> None:
+    if json:
+        from mixsim.present.json_text import json_text
+
+        sys.stdout.write(json_text(answer))
+    else:
+        from mixsim.present.tables import print_answer
+
+        print_answer(answer)
+
+
+def _as_fault(caution: Caution, file: str) -> Fault:
+    return Fault(
+        file, caution.path, f"caution, {caution.kind}: {caution.message}", "--strict takes no cautions"
+    )

@@ -1,0 +1,134 @@
+"""Commands that need no recipe: draft, list, show, schema."""
+
+from __future__ import annotations
+
+import sys
+from collections.abc import Iterator, Sequence
+from pathlib import Path
+from typing import Annotated, Any
+
+import typer
+
+from mixsim.cli.status import ANSWERED
+from mixsim.errors import BadInput, Fault, nearest
+from mixsim.recipe import COMMAND_LINE
+
+Rows = Iterator[Sequence[str]]
+KINDS = ("rules", "models", "materials", "quantities")
+
+
+def draft(
+    kind: Annotated[str, typer.Argument(metavar="KIND", help="Kind of recipe; without it, lists them.")] = "",
+    out: Annotated[str, typer.Option("--out", metavar="FILE", help="Write it to a new file (.toml).")] = "",
+) -> int:
+    """A commented starter recipe of a kind."""
+    from mixsim.recipe import drafts
+
+    if not kind:
+        from mixsim.present.tables import print_table
+
+        print_table(["kind", "for"], [(name, drafts.purpose(name)) for name in drafts.names()])
+        return ANSWERED
+    if kind not in drafts.names():
+        allowed = f"one of {', '.join(drafts.names())}"
+        fault = Fault(COMMAND_LINE, "draft", f"unknown kind {kind!r}", allowed, nearest(kind, drafts.names()))
+        raise BadInput([fault])
+    if not out:
+        sys.stdout.write(drafts.text(kind))
+        return ANSWERED
+    from mixsim.present.atomic import new_text
+
+    new_text(Path(out), drafts.text(kind), suffix=".toml")
+    print(f"mixsim: wrote {out}", file=sys.stderr)
+    return ANSWERED
+
+
+def list_(
+    kind: Annotated[str, typer.Argument(metavar="KIND", help="rules, models, materials or quantities.")],
+) -> int:
+    """What there is: rules, models, materials or quantities."""
+    from mixsim.present.tables import print_table
+
+    if kind not in KINDS:
+        fault = Fault(COMMAND_LINE, "list", repr(kind), f"one of {', '.join(KINDS)}", nearest(kind, KINDS))
+        raise BadInput([fault])
+    columns = {"rules": ("rule", "what it does"), "models": ("model", "what it describes")}
+    columns |= {"materials": ("material", "what it is"), "quantities": ("quantity", "what it is")}
+    print_table(columns[kind], _listed(kind))
+    return ANSWERED
+
+
+def show(
+    name: Annotated[
+        str,
+        typer.Argument(
+            metavar="NAME", help="A rule, model, material or quantity; or a recipe, for its numbers."
+        ),
+    ],
+) -> int:
+    """One of them in full; or every number of a recipe with its path."""
+    if name.endswith(".toml") or Path(name).is_file():
+        return _show_recipe(name)
+    from mixsim.present import entries
+
+    if not entries.print_entry(name):
+        known = [entry for kind in KINDS for entry, _ in _listed(kind)]
+        allowed = "a rule, model, material or quantity (mixsim list shows them), or a recipe"
+        raise BadInput([Fault(COMMAND_LINE, "show", f"unknown name {name!r}", allowed, nearest(name, known))])
+    return ANSWERED
+
+
+def schema(
+    out: Annotated[str, typer.Option("--out", metavar="FILE", help="Write it to a file (.json).")] = "",
+) -> int:
+    """JSON Schema of a recipe, for editors."""
+    import json
+
+    from mixsim.recipe.schema import Schema
+
+    document: dict[str, Any] = {"$schema": "https://json-schema.org/draft/2020-12/schema"}
+    document |= Schema.model_json_schema(by_alias=True) | {"title": "mixsim recipe"}
+    text = json.dumps(document, indent=2, ensure_ascii=False) + "\n"
+    if out:
+        from mixsim.present.atomic import whole_text
+
+        whole_text(Path(out), text, suffix=".json")
+        print(f"mixsim: wrote {out}", file=sys.stderr)
+    else:
+        sys.stdout.write(text)
+    return ANSWERED
+
+
+def _listed(kind: str) -> Rows:
+    if kind == "rules":
+        from mixsim.mixing import RULES
+
+        yield from ((rule.name, rule.summary) for rule in RULES.values())
+    elif kind == "models":
+        from mixsim.dispersion import INDEX_MODELS, TERMS
+
+        yield from ((term.name, f"term: {term.summary}") for term in TERMS.values())
+        yield from ((model.name, f"index: {model.summary}") for model in INDEX_MODELS.values())
+    elif kind == "materials":
+        from mixsim.recipe import library
+
+        yield from ((name, str(content["title"])) for name, content in library.definitions())
+    else:
+        from mixsim.observables import QUANTITIES
+
+        for quantity in QUANTITIES.values():
+            unit = f" [{quantity.unit}]" if quantity.unit else ""
+            yield quantity.name, f"{quantity.summary}{unit}"
+
+
+def _show_recipe(name: str) -> int:
+    from mixsim.present.tables import print_table
+    from mixsim.recipe import load
+
+    recipe = load(name)
+    rows = []
+    for path, leaf in recipe.leaves.items():
+        allowed = recipe.ranges[path].said() if recipe.ranges[path].bounded else ""
+        rows.append((path, leaf.written, allowed))
+    print_table(["path", "as written", "must be"], rows)
+    return ANSWERED

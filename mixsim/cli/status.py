@@ -1,0 +1,82 @@
+"""How every command ends: exit status, and one message for each thing that is wrong."""
+
+from __future__ import annotations
+
+import os
+import sys
+import traceback
+from typing import Any
+
+import typer
+from typer.core import TyperCommand, TyperGroup
+
+from mixsim.errors import BadInput, Refusal
+
+ANSWERED, NO, BAD_INPUT, UNDECIDED, INTERNAL, INTERRUPTED = 0, 1, 2, 3, 70, 130
+TRACEBACK = "MIXSIM_TRACEBACK"
+SEPARATOR = "\x1f"  # between the words of one option that takes several
+_WORDS = {"--vary": 4, "--free": 3}
+# the parser's own error, of which only this child is public
+_USAGE_ERROR: type[Exception] = typer.BadParameter.__mro__[1]
+
+
+class Command(TyperCommand):
+    """A command whose options may take several words each and be repeated."""
+
+    def parse_args(self, ctx: Any, args: list[str]) -> list[str]:
+        """Join the words of each such option into one value, which may then begin with a minus sign."""
+        words = list(args)
+        joined: list[str] = []
+        while words:
+            word = words.pop(0)
+            joined.append(word)
+            if count := _WORDS.get(word):
+                taken, words = words[:count], words[count:]
+                joined.append(SEPARATOR.join(taken))
+        return super().parse_args(ctx, joined)
+
+
+class Program(TyperGroup):
+    """The program: turns whatever happens into an exit status and a message without a traceback."""
+
+    def main(self, *args: Any, **more: Any) -> Any:
+        """Run, and exit."""
+        more["standalone_mode"] = False
+        try:
+            code = super().main(*args, **more)
+            sys.stdout.flush()
+        except BadInput as error:
+            code = _complain(*(str(fault) for fault in error.faults))
+        except Refusal as refusal:
+            code = _complain(f"command line: {refusal}")
+        except _USAGE_ERROR as error:
+            code = _complain(f"command line: {_usage(error)}")
+        except (KeyboardInterrupt, typer.Abort):
+            _complain("interrupted")
+            code = INTERRUPTED
+        except BrokenPipeError:
+            # the reader of our output left: nothing more to say, and nothing to flush at exit
+            os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+            code = ANSWERED
+        except Exception as error:
+            if os.environ.get(TRACEBACK):
+                traceback.print_exc()
+            _complain(
+                f"internal fault, please report it: {type(error).__name__}: {error} "
+                f"({TRACEBACK}=1 shows where)"
+            )
+            code = INTERNAL
+        sys.exit(code if isinstance(code, int) else ANSWERED)
+
+
+def _complain(*lines: str) -> int:
+    for line in lines:
+        print(f"mixsim: {line}", file=sys.stderr)
+    return BAD_INPUT
+
+
+def _usage(error: Any) -> str:
+    """The message of the parser in one line, in our spelling."""
+    text = " ".join(str(error.format_message()).split()).rstrip(".")
+    command = error.ctx.command_path if getattr(error, "ctx", None) else "mixsim"
+    return f"{text[:1].lower()}{text[1:]} ({command} --help shows what it takes)"

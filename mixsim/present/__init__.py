@@ -1,0 +1,1 @@
+"""Answers made visible: tables for a terminal, plots, files."""

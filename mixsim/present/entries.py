@@ -1,0 +1,136 @@
+"""What the registers and the library hold, one entry in full."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Mapping
+from typing import Any
+
+from rich.console import Console
+from rich.text import Text
+
+from mixsim.dispersion import INDEX_MODELS, TERMS, IndexModel, Parameter, Term
+from mixsim.mixing import RULES, Rule
+from mixsim.observables import QUANTITIES, Quantity
+from mixsim.present.tables import plain_table
+from mixsim.recipe import library
+from mixsim.units import accepted_units, dimension_named
+
+
+def print_entry(name: str) -> bool:
+    """Print every entry of this name; False where there is none."""
+    makers: list[tuple[Mapping[str, Any], Any]] = [
+        (RULES, _rule),
+        (TERMS, _term),
+        (INDEX_MODELS, _index),
+        (QUANTITIES, _quantity),
+    ]
+    found = [make(register[name]) for register, make in makers if name in register]
+    if (content := library.definition(name)) is not None:
+        found.append(_material(name, content))
+    console = Console(highlight=False)
+    for number, parts in enumerate(found):
+        for part in ([Text("")] if number else []) + list(parts):
+            console.print(part)
+    return bool(found)
+
+
+def _head(name: str, kind: str, facts: Iterable[tuple[str, str]]) -> list[Any]:
+    lines = [Text(f"{name} ({kind})", style="bold")]
+    return lines + [Text(f"{key}: {value}") for key, value in facts if value]
+
+
+def _rule(rule: Rule) -> list[Any]:
+    threshold = "" if rule.percolation is None else f"{rule.percolation:.4g} by volume, for spheres"
+    return _head(
+        rule.name,
+        "mixing rule",
+        [
+            ("for", rule.summary),
+            ("equation", rule.equation),
+            ("assumes", rule.assumptions),
+            ("dilute limit", rule.dilute_limit),
+            ("valid for", rule.valid_for),
+            ("shapes", _shapes(rule)),
+            ("a conducting phase percolates from", threshold),
+            ("volumes", "must add up to one" if rule.additive_only else "may come from a measured density"),
+            ("source", rule.source),
+        ],
+    )
+
+
+def _shapes(rule: Rule) -> str:
+    if not rule.takes_shapes:
+        return "spheres"
+    return f"spheres and spheroids, random{' or aligned' if rule.takes_aligned else ''}"
+
+
+def _term(term: Term) -> list[Any]:
+    ways = []
+    for canonical, routes in term.canonical.items():
+        given = ", or ".join(" with ".join((route.key, *route.also)) for route in routes)
+        ways.append((f"{canonical} is given by", given))
+    head = _head(
+        term.name,
+        "term of permittivity or permeability",
+        [("for", term.summary), ("equation", term.equation), *ways, ("source", term.source)],
+    )
+    return [*head, Text(""), *_parameters(term.parameters.values())]
+
+
+def _index(model: IndexModel) -> list[Any]:
+    limits = "n² both as ω → 0 and as ω → ∞" if model.constant else "none; the material may state them"
+    head = _head(
+        model.name,
+        "index model",
+        [
+            ("for", model.summary),
+            ("equation", model.equation),
+            ("limits", limits),
+            ("exactly one of", ", ".join(model.one_of)),
+            ("source", model.source),
+        ],
+    )
+    return [*head, Text(""), *_parameters(model.parameters.values())]
+
+
+def _parameters(parameters: Iterable[Parameter]) -> list[Any]:
+    rows, taking = [], dict[str, list[str]]()
+    for p in parameters:
+        default = "" if p.default is None else f"{p.default:g} if left out"
+        meaning = f"{p.meaning}{' (a list)' if p.is_list else ''}"
+        rows.append((p.name, meaning, dimension_named(p.dimension).example, default))
+        if units := ", ".join(accepted_units(p.dimension)):
+            taking.setdefault(units, []).append(p.name)
+    table = plain_table(("parameter", "meaning", "for example", "default"), rows)
+    return [table, Text("")] + [Text(f"{', '.join(names)}: {units}") for units, names in taking.items()]
+
+
+def _quantity(quantity: Quantity) -> list[Any]:
+    facts = [("is", quantity.summary), ("symbol", quantity.symbol), ("unit", quantity.unit or "none")]
+    return _head(quantity.name, "quantity", facts)
+
+
+def _material(name: str, content: Mapping[str, Any]) -> list[Any]:
+    valid = content.get("valid")
+    span = f"{valid['from']} to {valid['to']}" if valid else ""
+    head = _head(
+        name,
+        "material of the library",
+        [
+            ("is", content["title"]),
+            ("kind of evidence", content["kind"]),
+            ("source", " ".join(content["source"].split())),
+            ("holds", span),
+        ],
+    )
+    skip = ("title", "kind", "source", "valid")
+    rows = [(path, value) for path, value in _flat(content, "") if path.split(".")[0] not in skip]
+    return [*head, Text(""), plain_table(("key", "value"), rows)]
+
+
+def _flat(node: Any, path: str) -> Iterable[tuple[str, str]]:
+    if isinstance(node, Mapping):
+        for key, value in node.items():
+            yield from _flat(value, f"{path}.{key}" if path else key)
+    else:
+        yield path, ", ".join(map(str, node)) if isinstance(node, list) else str(node)

@@ -1,0 +1,77 @@
+"""Answers as files, by suffix: written whole or not at all."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+from mixsim.analysis import Inversion, Prediction
+from mixsim.errors import Refusal
+from mixsim.present.atomic import check_place, refuse, write_whole
+from mixsim.present.json_text import json_text
+
+PLOTS = (".png", ".svg", ".pdf")
+SUFFIXES = (".csv", ".json", ".npz", *PLOTS)
+
+
+def check(file: str | Path) -> None:
+    """Refuse a file that could not be written, before anything is computed.
+
+    Raises
+    ------
+    BadInput
+        Where its suffix is unknown, or its folder is missing or not writable.
+    """
+    check_place(Path(file), SUFFIXES)
+
+
+def write(answer: Prediction | Inversion, file: str | Path) -> None:
+    """Write an answer to a file in the format that its suffix says.
+
+    Parameters
+    ----------
+    answer
+        A prediction, a sweep or an inversion.
+    file
+        .csv .json .npz for numbers; .png .svg .pdf for the plot. An existing file is replaced whole.
+
+    Raises
+    ------
+    BadInput
+        Where the file cannot be written, or the answer has no such picture.
+    """
+    place = Path(file)
+    check(place)
+    try:
+        write_whole(place, lambda beside: _write(answer, beside))
+    except Refusal as refusal:
+        raise refuse(place, refusal.found, refusal.allowed) from None
+
+
+def _write(answer: Prediction | Inversion, file: Path) -> None:
+    suffix = file.suffix.lower()
+    if suffix == ".json":
+        file.write_text(json_text(answer), encoding="utf-8")
+    elif suffix == ".csv":
+        from mixsim.present.comma_separated import write_csv
+
+        write_csv(answer, file)
+    elif suffix == ".npz":
+        from mixsim.present.archive import write_npz
+
+        write_npz(answer, file)
+    else:
+        _plot(answer, file, suffix)
+
+
+def _plot(answer: Prediction | Inversion, file: Path, suffix: str) -> None:
+    import matplotlib
+
+    from mixsim.present.plots import figure
+    from mixsim.present.plots.style import RESOLUTION, SETTINGS
+
+    # no dates: the same answer gives the same file
+    metadata = {".png": {"Software": "mixsim"}, ".svg": {"Creator": "mixsim", "Date": None}}.get(
+        suffix, {"Creator": "mixsim", "Producer": "mixsim", "CreationDate": None}
+    )
+    with matplotlib.rc_context(SETTINGS):
+        figure(answer).savefig(file, format=suffix[1:], dpi=RESOLUTION, metadata=metadata)
