@@ -6,7 +6,7 @@ from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
-from mixsim.analysis import Inversion
+from mixsim.analysis import Inversion, Unknown
 from mixsim.analysis.reading_model import ReadingModel, grid
 from mixsim.present.plots.style import INK, MUTED, STRONG, path_label
 from mixsim.units import to_unit, written_unit
@@ -15,6 +15,7 @@ if TYPE_CHECKING:
     from matplotlib.axes import Axes
     from matplotlib.figure import Figure
 
+WINDOW = 6.0  # standard uncertainties on either side of a sharp estimate
 NAMES = {"static": "static", "high_frequency": "high-frequency"}
 
 
@@ -71,7 +72,8 @@ def one_unknown(axes: Axes, answer: Inversion, model: ReadingModel) -> Axes:
 
 def two_unknowns(axes: Axes, answer: Inversion, model: ReadingModel) -> Axes:
     """Where each reading alone would be met, with its ±; and the estimate with its ellipses."""
-    first, second = answer.unknowns
+    model = ReadingModel(model.mixture, _window(answer), answer.readings)
+    first, second = model.unknowns
     places = grid(2, 161)
     with np.errstate(all="ignore"):
         levels = model(places)
@@ -98,6 +100,19 @@ def two_unknowns(axes: Axes, answer: Inversion, model: ReadingModel) -> Axes:
     axes.set_xlabel(path_label(first.path, _unit(answer, first.path)))
     axes.set_ylabel(path_label(second.path, _unit(answer, second.path)))
     return axes
+
+
+def _window(answer: Inversion) -> list[Unknown]:
+    """The ranges, or what of them lies around an estimate that is much sharper."""
+    window = []
+    for unknown in answer.unknowns:
+        estimate = answer.estimates[unknown.path]
+        low, high = unknown.low, unknown.high
+        if estimate.value is not None and estimate.std is not None and answer.identifiable:
+            low = max(low, estimate.value - WINDOW * estimate.std)
+            high = min(high, estimate.value + WINDOW * estimate.std)
+        window.append(Unknown(unknown.path, low, high))
+    return window
 
 
 def _estimate(axes: Axes, answer: Inversion) -> None:

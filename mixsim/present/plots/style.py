@@ -59,9 +59,32 @@ def path_label(path: str, unit: str) -> str:
     return f"{words} / {_UNITS.get(unit, unit)}" if unit else words
 
 
+def log_axis(axes: Axes) -> None:
+    """Give an axes a logarithmic abscissa whose numbers are written out."""
+    from matplotlib.ticker import LogLocator, NullFormatter
+
+    axes.set_xscale("log")
+    low, high = axes.get_xlim()
+    steps = (1.0, 2.0, 5.0) if high < 300.0 * low else (1.0,)
+    axes.xaxis.set_major_locator(LogLocator(subs=steps))
+    axes.xaxis.set_major_formatter("{x:g}")
+    axes.xaxis.set_minor_formatter(NullFormatter())
+
+
+def quantity_at(value: float, unit: str) -> str:
+    """A number in its unit, for a label.
+
+    Examples
+    --------
+    >>> quantity_at(894.4272, "cm^-1")
+    '894.43 cm⁻¹'
+    """
+    return f"{value:.5g} {_UNITS.get(unit, unit)}"
+
+
 def spectral_axis(axes: Axes, unit: str, spacing: str) -> Axes:
     """Give an axes its spectral axis."""
     if spacing == "log":
-        axes.set_xscale("log")
+        log_axis(axes)
     axes.set_xlabel(axis_label(unit))
     return axes

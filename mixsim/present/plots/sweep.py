@@ -8,8 +8,7 @@ import numpy as np
 
 from mixsim.analysis import Prediction
 from mixsim.errors import Refusal
-from mixsim.present.plots.style import INK, MUTED, STRONG, path_label, spectral_axis
-from mixsim.units import show
+from mixsim.present.plots.style import INK, MUTED, STRONG, log_axis, path_label, quantity_at, spectral_axis
 
 if TYPE_CHECKING:
     from matplotlib.axes import Axes
@@ -81,7 +80,8 @@ def levels(axes: Axes, answer: Prediction) -> Axes:
         if np.isfinite(level).any():
             axes.plot(varied.shown, level, color=colour, ls=dashes, lw=1.8, label=name)
     axes.set_ylabel("ε′, limits")
-    axes.legend(loc="best", handlelength=1.8)
+    axes.margins(y=0.22)
+    axes.legend(loc="upper left", handlelength=1.8, borderaxespad=0.1)
     return axes
 
 
@@ -92,7 +92,7 @@ def peaks(axes: Axes, answer: Prediction) -> Axes:
     axes.set_ylabel("highest ε″")
     axes.set_xlabel(path_label(varied.path, varied.unit))
     if varied.spacing == "log":
-        axes.set_xscale("log")
+        log_axis(axes)
     return axes
 
 
@@ -100,7 +100,7 @@ def _against_value(figure: Figure, answer: Prediction) -> None:
     """At one frequency: ε′ and ε″ against the varied value."""
     varied = answer.vary[0]
     above, below = figure.subplots(2, 1, sharex=True)
-    at = show(float(answer.omega[0]), "spectral", answer.axis.unit)
+    at = quantity_at(float(answer.axis.shown[0]), answer.axis.unit)
     above.plot(varied.shown, answer.permittivity[:, 0].real, color=STRONG[0], lw=1.8, label=f"at {at}")
     for kind, name, dashes in (
         ("static", "static", (0, (5, 2))),
@@ -115,7 +115,7 @@ def _against_value(figure: Figure, answer: Prediction) -> None:
     below.set_ylabel("ε″")
     below.set_xlabel(path_label(varied.path, varied.unit))
     if varied.spacing == "log":
-        below.set_xscale("log")
+        log_axis(below)
     below.margins(x=0.01)
 
 
@@ -123,7 +123,7 @@ def _maps(figure: Figure, answer: Prediction) -> None:
     """Two numbers: ε′ and ε″ in the middle of the band."""
     first, second = answer.vary
     place = len(answer.omega) // 2
-    at = show(float(answer.omega[place]), "spectral", answer.axis.unit)
+    at = quantity_at(float(answer.axis.shown[place]), answer.axis.unit)
     grid: Any = figure.subplots(1, 2, sharey=True)
     for axes, symbol, values in (
         (grid[0], "ε′", answer.permittivity[..., place].real),
@@ -142,6 +142,6 @@ def _maps(figure: Figure, answer: Prediction) -> None:
         bar.outline.set_visible(False)
         axes.set_xlabel(path_label(first.path, first.unit))
         if first.spacing == "log":
-            axes.set_xscale("log")
+            log_axis(axes)
             axes.set_yscale("log")
     grid[0].set_ylabel(path_label(second.path, second.unit))
