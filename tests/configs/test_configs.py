@@ -6,9 +6,9 @@ from pathlib import Path
 
 import numpy as np
 import pytest
-from mixsim.mixture import Mixture
 
 import mixsim
+from mixsim.mixture import Mixture
 from mixsim.units import SPEED_OF_LIGHT
 
 FOLDER = Path(__file__).parents[2] / "configs"

@@ -9,8 +9,9 @@ from typing import Any
 
 import pytest
 import tomli
-from mixsim.cli import app
 from typer.testing import CliRunner
+
+from mixsim.cli import app
 
 FOLDER = Path(__file__).parents[2] / "examples"
 JOBS = sorted(path.parent for path in FOLDER.glob("*/README.md"))

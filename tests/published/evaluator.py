@@ -6,9 +6,9 @@ from collections.abc import Mapping
 from typing import Any
 
 import numpy as np
-from mixsim.mixture import Mixture
 from numpy.typing import ArrayLike
 
+from mixsim.mixture import Mixture
 from mixsim.recipe import parse
 from mixsim.units import SPEED_OF_LIGHT
 

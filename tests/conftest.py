@@ -1,4 +1,4 @@
-"""Random draws are not timed: on a busy machine a slow draw is no fault of the formula."""
+"""Random draws are not timed: the machine that runs them may be busy."""
 
 from __future__ import annotations
 
