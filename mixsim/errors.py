@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import difflib
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 
@@ -72,6 +71,8 @@ def nearest(word: str, known: Iterable[str]) -> str | None:
     >>> nearest("bruggemann", ["bruggeman", "looyenga"])
     'bruggeman'
     """
+    import difflib  # needed only where something is misspelt
+
     lowered = {candidate.lower(): candidate for candidate in known}
     close = difflib.get_close_matches(word.lower(), lowered, n=1, cutoff=0.6)
     return lowered[close[0]] if close else None

@@ -1,14 +1,37 @@
-"""Questions to the one evaluator: predict, sweep, invert, audit."""
+"""Questions to the one evaluator: predict, sweep, invert, audit. Each is loaded when it is first asked."""
 
 from __future__ import annotations
 
-from mixsim.analysis.auditing import Audit, audit
-from mixsim.analysis.band import Axis, Varied, axis_of, varied
-from mixsim.analysis.caution import Caution
-from mixsim.analysis.inversion import Estimate, Inversion, Reading, Unknown
-from mixsim.analysis.inverting import invert
-from mixsim.analysis.prediction import Prediction, predict, sweep
-from mixsim.analysis.readings import freed
+from importlib import import_module
+from typing import TYPE_CHECKING, Any
+
+if TYPE_CHECKING:
+    from mixsim.analysis.auditing import Audit, audit
+    from mixsim.analysis.band import Axis, Varied, axis_of, varied
+    from mixsim.analysis.caution import Caution
+    from mixsim.analysis.inversion import Estimate, Inversion, Reading, Unknown
+    from mixsim.analysis.inverting import invert
+    from mixsim.analysis.prediction import Prediction, predict, sweep
+    from mixsim.analysis.readings import freed
+
+_HOMES = {
+    "Audit": "auditing",
+    "Axis": "band",
+    "Caution": "caution",
+    "Estimate": "inversion",
+    "Inversion": "inversion",
+    "Prediction": "prediction",
+    "Reading": "inversion",
+    "Unknown": "inversion",
+    "Varied": "band",
+    "audit": "auditing",
+    "axis_of": "band",
+    "freed": "readings",
+    "invert": "inverting",
+    "predict": "prediction",
+    "sweep": "prediction",
+    "varied": "band",
+}
 
 __all__ = [
     "Audit",
@@ -28,3 +51,9 @@ __all__ = [
     "sweep",
     "varied",
 ]
+
+
+def __getattr__(name: str) -> Any:
+    if name not in _HOMES:
+        raise AttributeError(f"module 'mixsim.analysis' has no attribute {name!r}")
+    return getattr(import_module(f"mixsim.analysis.{_HOMES[name]}"), name)

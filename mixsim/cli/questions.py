@@ -31,7 +31,7 @@ def predict(
 
     _check(out)
     answer = ask(recipe_from(recipe, settings, rule))
-    _deliver(answer, answer.recipe.file, json=json, out=out, strict=strict)
+    _deliver(answer, "prediction", json=json, out=out, strict=strict)
     return ANSWERED
 
 
@@ -61,7 +61,7 @@ def sweep(
         path, start, stop, points = words("--vary", text, "PATH FROM TO POINTS")
         axes.append(varied(loaded, path, start, stop, _count(points), log=log))
     answer = ask(loaded, axes)
-    _deliver(answer, loaded.file, json=json, out=out, strict=strict)
+    _deliver(answer, "sweep", json=json, out=out, strict=strict)
     return ANSWERED
 
 
@@ -103,7 +103,7 @@ def invert(
         free=unknowns,
         seed=seed,
     )
-    _deliver(answer, loaded.file, json=json, out=out, strict=strict)
+    _deliver(answer, "inversion", json=json, out=out, strict=strict)
     return {"answered": ANSWERED, "impossible": NO, "undecided": UNDECIDED}[answer.verdict]
 
 
@@ -122,7 +122,7 @@ def audit(
 
     changed = settings_of(settings or ()) | ({"mixing.rule": rule} if rule else {})
     answer = ask(recipe, changed)
-    _print(answer, json=json)
+    _print(answer, "audit", json=json)
     return ANSWERED if answer.passed and not (strict and answer.warnings) else NO
 
 
@@ -153,29 +153,30 @@ def _check(files: Sequence[str] | None) -> None:
 
 
 def _deliver(
-    answer: Prediction | Inversion, file: str, *, json: bool, out: Sequence[str] | None, strict: bool
+    answer: Prediction | Inversion, table: str, *, json: bool, out: Sequence[str] | None, strict: bool
 ) -> None:
     """Write the files, then print; or, under `strict`, refuse an answer with cautions."""
     if strict and answer.warnings:
-        raise BadInput([_as_fault(caution, file) for caution in answer.warnings])
+        raise BadInput([_as_fault(caution, answer.recipe.file) for caution in answer.warnings])
     if out:
         from mixsim.present.files import write
 
         for name in out:
             write(answer, name)
             print(f"mixsim: wrote {name}", file=sys.stderr)
-    _print(answer, json=json)
+    _print(answer, table, json=json)
 
 
-def _print(answer: Prediction | Inversion | Audit, *, json: bool) -> None:
+def _print(answer: Prediction | Inversion | Audit, table: str, *, json: bool) -> None:
+    """Print one JSON document, or the table of that name in `mixsim.present.tables`."""
     if json:
         from mixsim.present.json_text import json_text
 
         sys.stdout.write(json_text(answer))
     else:
-        from mixsim.present.tables import print_answer
+        from mixsim.present import tables
 
-        print_answer(answer)
+        print(getattr(tables, table)(answer))
 
 
 def _as_fault(caution: Caution, file: str) -> Fault:

@@ -25,9 +25,9 @@ def draft(
     from mixsim.recipe import drafts
 
     if not kind:
-        from mixsim.present.tables import print_table
+        from mixsim.present.columns import described
 
-        print_table(["kind", "for"], [(name, drafts.purpose(name)) for name in drafts.names()])
+        print(described(["kind", "for"], [(name, drafts.purpose(name)) for name in drafts.names()]))
         return ANSWERED
     if kind not in drafts.names():
         allowed = f"one of {', '.join(drafts.names())}"
@@ -47,14 +47,14 @@ def list_(
     kind: Annotated[str, typer.Argument(metavar="KIND", help="rules, models, materials or quantities.")],
 ) -> int:
     """What there is: rules, models, materials or quantities."""
-    from mixsim.present.tables import print_table
+    from mixsim.present.columns import described
 
     if kind not in KINDS:
         fault = Fault(COMMAND_LINE, "list", repr(kind), f"one of {', '.join(KINDS)}", nearest(kind, KINDS))
         raise BadInput([fault])
     columns = {"rules": ("rule", "what it does"), "models": ("model", "what it describes")}
     columns |= {"materials": ("material", "what it is"), "quantities": ("quantity", "what it is")}
-    print_table(columns[kind], _listed(kind))
+    print(described(columns[kind], _listed(kind)))
     return ANSWERED
 
 
@@ -71,10 +71,12 @@ def show(
         return _show_recipe(name)
     from mixsim.present import entries
 
-    if not entries.print_entry(name):
+    text = entries.entry(name)
+    if text is None:
         known = [entry for kind in KINDS for entry, _ in _listed(kind)]
         allowed = "a rule, model, material or quantity (mixsim list shows them), or a recipe"
         raise BadInput([Fault(COMMAND_LINE, "show", f"unknown name {name!r}", allowed, nearest(name, known))])
+    print(text)
     return ANSWERED
 
 
@@ -122,7 +124,7 @@ def _listed(kind: str) -> Rows:
 
 
 def _show_recipe(name: str) -> int:
-    from mixsim.present.tables import print_table
+    from mixsim.present.columns import described
     from mixsim.recipe import load
 
     recipe = load(name)
@@ -130,5 +132,5 @@ def _show_recipe(name: str) -> int:
     for path, leaf in recipe.leaves.items():
         allowed = recipe.ranges[path].said() if recipe.ranges[path].bounded else ""
         rows.append((path, leaf.written, allowed))
-    print_table(["path", "as written", "must be"], rows)
+    print(described(["path", "as written", "must be"], rows))
     return ANSWERED

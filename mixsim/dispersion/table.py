@@ -46,10 +46,10 @@ COLUMN_SETS = (
 )
 _COLUMNS = tuple(dict.fromkeys(name for names in COLUMN_SETS for name in names))
 _UNITS = {kind: [u for u in accepted_units("spectral") if kind_of_axis(u) == kind] for kind in AXES.values()}
-_HEADING = re.compile(r"(?P<name>[^\[\]]*?)\s*(?:\[\s*(?P<unit>[^\]]*?)\s*\])?")
-_NUMBER = re.compile(r"[+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?")
-_STATED = re.compile(r"#\s*convention\b", re.IGNORECASE)
-_CONVENTION = re.compile(r"#\s*convention\s*[:=]?\s*exp\s*\(([+-])[ij](?:w|ω|omega)t\)", re.IGNORECASE)
+_HEADING = r"(?P<name>[^\[\]]*?)\s*(?:\[\s*(?P<unit>[^\]]*?)\s*\])?"
+_NUMBER = r"[+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?"
+_STATED = r"(?i)#\s*convention\b"
+_CONVENTION = r"(?i)#\s*convention\s*[:=]?\s*exp\s*\(([+-])[ij](?:w|ω|omega)t\)"
 _SIGNS = "'# convention: exp(-iwt)' (lossy k above 0) or '# convention: exp(+iwt)' (lossy k below 0)"
 _SLACK = 1e-12  # the end of a band, written in nm or eV, comes back from rad/s with its last digits changed
 _POINT = "decimals take a point (1.47, not 1,47)"
@@ -228,9 +228,9 @@ def _sign(lines: Sequence[tuple[int, str]], header: Row) -> int:
     stated: dict[int, int] = {}
     for number, line in lines:
         text = line.strip()
-        if not _STATED.match(text):
+        if not re.match(_STATED, text):
             continue
-        found = _CONVENTION.fullmatch(re.sub(r"\s+", "", text.replace("\N{MINUS SIGN}", "-")))
+        found = re.fullmatch(_CONVENTION, re.sub(r"\s+", "", text.replace("\N{MINUS SIGN}", "-")))
         if found is None:
             raise Refusal(f"line {number}: convention {text!r} is not understood", f"write {_SIGNS}")
         stated[1 if found[1] == "-" else -1] = number
@@ -259,7 +259,7 @@ def _cells(lines: Sequence[tuple[int, str]]) -> list[Row]:
 
 def _header(number: int, cells: Sequence[str]) -> tuple[str, tuple[str, ...]]:
     """Unit of the axis, and names of the other columns."""
-    if all(_NUMBER.fullmatch(cell) for cell in cells):
+    if all(re.fullmatch(_NUMBER, cell) for cell in cells):
         raise Refusal(f"line {number}: no header row above the numbers", "such as 'wavelength [nm], n, k'")
     names, units = zip(*(_heading(number, cell) for cell in cells), strict=True)
     if names[0] not in AXES:
@@ -285,7 +285,7 @@ def _header(number: int, cells: Sequence[str]) -> tuple[str, tuple[str, ...]]:
 
 
 def _heading(number: int, cell: str) -> tuple[str, str]:
-    heading = _HEADING.fullmatch(cell)
+    heading = re.fullmatch(_HEADING, cell)
     if heading is None:
         raise Refusal(
             f"line {number}: heading {cell!r}", "a name and its unit in brackets: 'wavelength [nm]'"
@@ -319,7 +319,7 @@ def _numbers(number: int, cells: Sequence[str], headings: Sequence[str]) -> list
             f"one cell a column; {_POINT}",
         )
     for cell in cells:
-        if _NUMBER.fullmatch(cell):
+        if re.fullmatch(_NUMBER, cell):
             continue
         if re.fullmatch(r"[+-]?[0-9]*,[0-9]+(?:[eE][+-]?[0-9]+)?", cell):
             raise Refusal(f"line {number}: {cell!r} has a decimal comma", _POINT, cell.replace(",", "."))

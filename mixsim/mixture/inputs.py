@@ -22,7 +22,7 @@ class Input(Protocol):
         """Its value."""
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Fixed:
     """A number that no leaf holds, such as a default."""
 
@@ -33,7 +33,7 @@ class Fixed:
         return self.value
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Leafed:
     """The leaf at a path."""
 
@@ -47,7 +47,7 @@ class Leafed:
         return x[self.path]
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Derived:
     """A pure function of other inputs, by their keywords."""
 

@@ -23,7 +23,7 @@ from mixsim.units import VACUUM_PERMITTIVITY
 HOST, VOIDS = "host", "voids"
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Constituent:
     """One phase of the mixture.
 
@@ -56,7 +56,7 @@ class Constituent:
     aligned: bool = False
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Mixture:
     """The mixture that a recipe describes, as a function of its numbers and a frequency axis.
 

@@ -11,7 +11,7 @@ from numpy.typing import NDArray
 Array = NDArray[Any]
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Response:
     """Permittivity and permeability over frequency.
 
@@ -26,7 +26,7 @@ class Response:
     permeability: Array
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Limits:
     """Exact limits of the model; NaN where there is none.
 
@@ -54,7 +54,7 @@ class Limits:
     high_frequency_permeability: Array
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Composition:
     """What stands in a volume of the mixture.
 

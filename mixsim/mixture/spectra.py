@@ -37,7 +37,7 @@ class Spectrum(Protocol):
         """Limit as ω → ∞."""
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Constant:
     """The same at every frequency: vacuum, or a material without magnetism."""
 
@@ -57,7 +57,7 @@ class Constant:
 VACUUM = Constant()
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class BoundTerm:
     """A registered term and where it takes each canonical parameter from."""
 
@@ -81,7 +81,7 @@ class BoundTerm:
         return {name: given(x) for name, given in self.inputs.items()}
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class TermSum:
     """A level above all resonances, and terms: their polarisations add."""
 
@@ -114,7 +114,7 @@ class TermSum:
         return self.level(x)
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Doped:
     """A host and the terms of isolated absorbers in it: polarisations add, and take no volume."""
 
@@ -142,7 +142,7 @@ class Doped:
         return self.host.high(x)
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Index:
     """An index model: ε = n²/μ, with limits only where the material states them or the index is constant."""
 
@@ -189,7 +189,7 @@ class Index:
         return np.asarray(self.model.function(omega, **numbers))
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Measured:
     """A measured table: interpolated inside its range, refused outside, without limits unless stated."""
 
@@ -211,7 +211,7 @@ class Measured:
         return UNKNOWN if self.high_frequency is None else self.high_frequency(x)
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class LocalPlasma:
     """Plasma frequency of an absorber as its host's field lets it appear.
 

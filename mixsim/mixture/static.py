@@ -15,7 +15,7 @@ _HIGH = 1e45  # stands for σ/ω of the best finite conductor as ω → 0, again
 _CONDUCTS = 1e15  # what only a conducting mixture exceeds: even at a percolation threshold it is √_HIGH
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class LowFrequency:
     """Behaviour of a mixture as ω → 0: i·rate/ω + plateau.
 

@@ -5,19 +5,16 @@ from __future__ import annotations
 from collections.abc import Iterable, Mapping
 from typing import Any
 
-from rich.console import Console
-from rich.text import Text
-
 from mixsim.dispersion import INDEX_MODELS, TERMS, IndexModel, Parameter, Term
 from mixsim.mixing import RULES, Rule
 from mixsim.observables import QUANTITIES, Quantity
-from mixsim.present.tables import plain_table
+from mixsim.present.columns import described, paragraph, table
 from mixsim.recipe import library
 from mixsim.units import accepted_units, dimension_named
 
 
-def print_entry(name: str) -> bool:
-    """Print every entry of this name; False where there is none."""
+def entry(name: str) -> str | None:
+    """Every entry of this name; None where there is none."""
     makers: list[tuple[Mapping[str, Any], Any]] = [
         (RULES, _rule),
         (TERMS, _term),
@@ -27,19 +24,14 @@ def print_entry(name: str) -> bool:
     found = [make(register[name]) for register, make in makers if name in register]
     if (content := library.definition(name)) is not None:
         found.append(_material(name, content))
-    console = Console(highlight=False)
-    for number, parts in enumerate(found):
-        for part in ([Text("")] if number else []) + list(parts):
-            console.print(part)
-    return bool(found)
+    return "\n\n".join(found) or None
 
 
-def _head(name: str, kind: str, facts: Iterable[tuple[str, str]]) -> list[Any]:
-    lines = [Text(f"{name} ({kind})", style="bold")]
-    return lines + [Text(f"{key}: {value}") for key, value in facts if value]
+def _head(name: str, kind: str, facts: Iterable[tuple[str, str]]) -> str:
+    return "\n".join([f"{name} ({kind})", *(paragraph(f"{key}: {value}") for key, value in facts if value)])
 
 
-def _rule(rule: Rule) -> list[Any]:
+def _rule(rule: Rule) -> str:
     threshold = "" if rule.percolation is None else f"{rule.percolation:.4g} by volume, for spheres"
     return _head(
         rule.name,
@@ -64,7 +56,7 @@ def _shapes(rule: Rule) -> str:
     return f"spheres and spheroids, random{' or aligned' if rule.takes_aligned else ''}"
 
 
-def _term(term: Term) -> list[Any]:
+def _term(term: Term) -> str:
     ways = []
     for canonical, routes in term.canonical.items():
         given = ", or ".join(" with ".join((route.key, *route.also)) for route in routes)
@@ -74,10 +66,10 @@ def _term(term: Term) -> list[Any]:
         "term of permittivity or permeability",
         [("for", term.summary), ("equation", term.equation), *ways, ("source", term.source)],
     )
-    return [*head, Text(""), *_parameters(term.parameters.values())]
+    return f"{head}\n\n{_parameters(term.parameters.values())}"
 
 
-def _index(model: IndexModel) -> list[Any]:
+def _index(model: IndexModel) -> str:
     limits = "n² both as ω → 0 and as ω → ∞" if model.constant else "none; the material may state them"
     head = _head(
         model.name,
@@ -90,27 +82,28 @@ def _index(model: IndexModel) -> list[Any]:
             ("source", model.source),
         ],
     )
-    return [*head, Text(""), *_parameters(model.parameters.values())]
+    return f"{head}\n\n{_parameters(model.parameters.values())}"
 
 
-def _parameters(parameters: Iterable[Parameter]) -> list[Any]:
+def _parameters(parameters: Iterable[Parameter]) -> str:
     rows, taking = [], dict[str, list[str]]()
     for p in parameters:
         default = "" if p.default is None else f"{p.default:g} if left out"
         meaning = f"{p.meaning}{' (a list)' if p.is_list else ''}"
         rows.append((p.name, meaning, dimension_named(p.dimension).example, default))
-        if units := ", ".join(accepted_units(p.dimension)):
-            taking.setdefault(units, []).append(p.name)
-    table = plain_table(("parameter", "meaning", "for example", "default"), rows)
-    return [table, Text("")] + [Text(f"{', '.join(names)}: {units}") for units, names in taking.items()]
+        if accepted := ", ".join(accepted_units(p.dimension)):
+            taking.setdefault(accepted, []).append(p.name)
+    shown = table(("parameter", "meaning", "for example", "default"), rows, left=4)
+    units = [paragraph(f"{', '.join(names)}: {units}") for units, names in taking.items()]
+    return "\n".join([shown, "", *units])
 
 
-def _quantity(quantity: Quantity) -> list[Any]:
+def _quantity(quantity: Quantity) -> str:
     facts = [("is", quantity.summary), ("symbol", quantity.symbol), ("unit", quantity.unit or "none")]
     return _head(quantity.name, "quantity", facts)
 
 
-def _material(name: str, content: Mapping[str, Any]) -> list[Any]:
+def _material(name: str, content: Mapping[str, Any]) -> str:
     valid = content.get("valid")
     span = f"{valid['from']} to {valid['to']}" if valid else ""
     head = _head(
@@ -125,7 +118,7 @@ def _material(name: str, content: Mapping[str, Any]) -> list[Any]:
     )
     skip = ("title", "kind", "source", "valid")
     rows = [(path, value) for path, value in _flat(content, "") if path.split(".")[0] not in skip]
-    return [*head, Text(""), plain_table(("key", "value"), rows)]
+    return f"{head}\n\n{described(('key', 'value'), rows)}"
 
 
 def _flat(node: Any, path: str) -> Iterable[tuple[str, str]]:

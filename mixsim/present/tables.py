@@ -1,184 +1,140 @@
-"""Answers as tables for a terminal, 80 columns wide where nobody says more."""
+"""Answers as text for a terminal, 80 columns wide where nobody says more."""
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Sequence
-from typing import Any
+from collections.abc import Sequence
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
-from rich.console import Console, Group
-from rich.table import Table
-from rich.text import Text
 
-from mixsim.analysis import Audit, Caution, Inversion, Prediction
-from mixsim.analysis.inversion import Estimate
+from mixsim.present.columns import paragraph, table
 from mixsim.units import kind_of_axis, show
 
+if TYPE_CHECKING:
+    from mixsim.analysis import Audit, Caution, Estimate, Inversion, Prediction
+
 ROWS = 9  # of a spectrum
-MOST_ROWS = 40  # of a sweep or a curve
+MOST_ROWS = 40  # of a sweep
 NONE = "–"
+VERDICTS = {
+    "answered": "answered",
+    "impossible": "impossible: no value in the ranges gives this reading",
+    "undecided": "undecided: the readings cannot tell",
+}
 
 
-def print_answer(answer: Prediction | Inversion | Audit) -> None:
-    """Print an answer to standard output."""
-    if isinstance(answer, Inversion):
-        shown = inversion(answer)
-    elif isinstance(answer, Audit):
-        shown = audit(answer)
-    else:
-        shown = sweep(answer) if answer.vary else prediction(answer)
-    Console(highlight=False, soft_wrap=False).print(shown)
-
-
-def print_table(columns: Sequence[str], rows: Iterable[Sequence[str]]) -> None:
-    """Print a plain table to standard output."""
-    Console(highlight=False).print(plain_table(columns, rows))
-
-
-def plain_table(columns: Sequence[str], rows: Iterable[Sequence[str]]) -> Table:
-    """A table of text, each column to the left."""
-    table = Table(box=None, pad_edge=False, padding=(0, 2, 0, 0), header_style="dim")
-    for position, name in enumerate(columns):
-        table.add_column(Text(name), overflow="fold", no_wrap=position == 0)
-    for row in rows:
-        table.add_row(*[Text(cell) for cell in row])
-    return table
-
-
-def prediction(answer: Prediction) -> Group:
+def prediction(answer: Prediction) -> str:
     """A prediction: composition, limits, a choice of the spectrum, cautions."""
-    return Group(
-        *_head(answer),
-        *_composition(answer),
-        *_limits(answer),
-        _spectrum(answer),
-        *_cautions(answer.warnings),
-    )
+    parts = [_head(answer), _composition(answer), _limits(answer), _spectrum(answer)]
+    return "\n\n".join([*parts, *_cautions(answer.warnings)])
 
 
-def sweep(answer: Prediction) -> Group:
+def sweep(answer: Prediction) -> str:
     """A sweep: one row for each combination of the varied values."""
     place = len(answer.omega) // 2
     at = show(float(answer.omega[place]), "spectral", answer.axis.unit)
-    table = _table(*[_stacked(item.path, item.unit) for item in answer.vary], labels=0)
-    headings = ["static", "high-\nfrequency", f"ε′ at\n{at}", f"ε″ at\n{at}", "highest\nε″"]
-    for heading in (*headings, f"at\n[{answer.axis.unit}]"):
-        table.add_column(Text(heading), justify="right")
+    headings = [_stacked(item.path, item.unit) for item in answer.vary]
+    headings += ["static", "high-\nfrequency", f"ε′ at\n{at}", f"ε″ at\n{at}"]
+    headings += ["highest\nε″", f"at\n[{answer.axis.unit}]"]
     shape = tuple(len(item.values) for item in answer.vary)
     count = int(np.prod(shape))
+    rows = []
     for index in _chosen(count, MOST_ROWS):
         here = np.unravel_index(index, shape)
         spectrum = _first_axis(answer.permittivity[here])
         peak = int(np.argmax(spectrum.imag))
-        table.add_row(
-            *[f"{item.shown[i]:.6g}" for item, i in zip(answer.vary, here, strict=True)],
-            _number(_first(answer.limits.static[here])),
-            _number(_first(answer.limits.high_frequency[here])),
-            _number(spectrum[place].real),
-            _number(spectrum[place].imag),
-            _number(spectrum[peak].imag),
-            f"{answer.axis.shown[peak]:.5g}",
-        )
-    more = []
+        numbers = [
+            _first(answer.limits.static[here]),
+            _first(answer.limits.high_frequency[here]),
+            spectrum[place].real,
+            spectrum[place].imag,
+            spectrum[peak].imag,
+        ]
+        varied = [f"{item.shown[i]:.6g}" for item, i in zip(answer.vary, here, strict=True)]
+        rows.append([*varied, *map(_number, numbers), f"{answer.axis.shown[peak]:.5g}"])
+    parts = [_head(answer), table(headings, rows, left=0)]
     if count > MOST_ROWS:
-        more = [Text(f"\n{MOST_ROWS} of {count} rows; --out sweep.csv writes them all")]
-    return Group(*_head(answer), Text(""), table, *more, *_cautions(answer.warnings))
+        parts.append(f"{MOST_ROWS} of {count} rows; --out sweep.csv writes them all")
+    return "\n\n".join([*parts, *_cautions(answer.warnings)])
 
 
-def inversion(answer: Inversion) -> Group:
+def inversion(answer: Inversion) -> str:
     """An inversion: estimates, their doubt, other rules, or why there is no answer."""
     recipe = answer.recipe
     readings = ", ".join(f"{r.kind.replace('_', '-')} {r.written}" for r in answer.readings)
-    parts: list[Any] = [
-        Text(recipe.schema.title or recipe.file, style="bold"),
-        Text(f"read: {readings} · {answer.rule} · {answer.method}\n"),
-    ]
-    verdicts = {
-        "answered": "answered",
-        "impossible": "impossible: no value in the ranges gives this reading",
-        "undecided": "undecided: the readings cannot tell",
-    }
-    parts.append(Text(verdicts[answer.verdict], style="bold"))
-    parts += [Text(f"  {reason}") for reason in answer.reasons]
+    head = f"read: {readings} · {answer.rule} · {answer.method}"
+    parts = ["\n".join([recipe.schema.title or recipe.file, paragraph(head)])]
+    parts.append("\n".join([VERDICTS[answer.verdict], *(paragraph(r, indent="  ") for r in answer.reasons)]))
     if answer.verdict != "impossible":
-        for estimate in answer.estimates.values():
-            parts += [Text(f"\n{estimate.path}"), Text(f"  {_estimate(answer, estimate)}", style="bold")]
+        parts += [f"{path}\n  {_estimate(answer, found)}" for path, found in answer.estimates.items()]
+    said = []
     if answer.correlation is not None and len(answer.estimates) > 1:
-        parts.append(Text(f"\ncorrelation of the two {answer.correlation[0, 1]:+.2f}"))
+        said.append(f"correlation of the two {answer.correlation[0, 1]:+.2f}")
     if (check := answer.monte_carlo) is not None:
         word = "confirms" if check.agrees else "does not confirm"
-        parts.append(Text(f"a Monte Carlo of {check.draws} draws (seed {check.seed}) {word} the ±"))
-    if answer.residuals and any(abs(r.measured - r.predicted) > 1e-9 for r in answer.residuals):
-        table = _table("reading", "measured", "predicted", "off by")
-        for r in answer.residuals:
-            off = NONE if r.standardised is None else f"{r.standardised:+.2f} standard uncertainties"
-            table.add_row(
-                r.kind.replace("_", "-"), _number(r.measured, digits=6), _number(r.predicted, digits=6), off
-            )
-        parts += [Text(""), table]
+        said.append(f"a Monte Carlo of {check.draws} draws (seed {check.seed}) {word} the ±")
+    parts += ["\n".join(said)] if said else []
+    parts += _residuals(answer)
     if answer.family is not None:
-        parts += [Text("\npairs that fit"), _family(answer)]
+        parts.append(f"pairs that fit\n{_family(answer)}")
     if len(answer.by_rule) > 1 and any(found.values for found in answer.by_rule):
-        parts += [Text("\nunder each rule that could apply"), _by_rule(answer)]
-    return Group(*parts, *_cautions(answer.warnings))
+        parts.append(f"under each rule that could apply\n{_by_rule(answer)}")
+    return "\n\n".join([*parts, *_cautions(answer.warnings)])
 
 
-def audit(answer: Audit) -> Group:
+def audit(answer: Audit) -> str:
     """An audit: every fault, then every caution."""
     count = len(answer.faults)
     if answer.passed:
         head = f"{answer.file}: sound, {answer.numbers} numbers, library materials included"
     else:
         head = f"{answer.file}: {count} fault{'s' if count > 1 else ''}"
-    faults = [Text(f"  {fault}") for fault in answer.faults]
-    return Group(Text(head, style="bold"), *faults, *_cautions(answer.warnings))
+    faults = [paragraph(str(fault), indent="  ") for fault in answer.faults]
+    return "\n\n".join(["\n".join([head, *faults]), *_cautions(answer.warnings)])
 
 
-def _head(answer: Prediction) -> list[Any]:
+def _head(answer: Prediction) -> str:
     title = answer.recipe.schema.title or answer.recipe.file
-    return [Text(title, style="bold"), Text(f"rule {answer.rule} · time dependence exp(−iωt), loss positive")]
+    return f"{title}\nrule {answer.rule} · time dependence exp(−iωt), loss positive"
 
 
-def _composition(answer: Prediction) -> list[Any]:
+def _composition(answer: Prediction) -> str:
     composition = answer.composition
-    table = _table("", "material", "volume", "weight", labels=2)
     materials = {"host": answer.recipe.schema.host.material}
     materials |= {name: inclusion.material for name, inclusion in answer.recipe.schema.inclusions.items()}
+    rows = []
     for name, volume in composition.volume_fractions.items():
         weights = composition.weight_fractions
         weight = NONE if weights is None else f"{100 * float(weights[name]):.4g} %"
-        table.add_row(name, materials.get(name, "vacuum"), f"{100 * float(volume):.4g} %", weight)
-    parts: list[Any] = [Text(""), table]
+        rows.append([name, materials.get(name, "vacuum"), f"{100 * float(volume):.4g} %", weight])
+    lines = [table(["", "material", "volume", "weight"], rows, left=2)]
     if composition.density is not None:
-        parts.append(Text(f"density {show(float(composition.density), 'density', 'g/cm^3')}"))
+        lines.append(f"density {show(float(composition.density), 'density', 'g/cm^3')}")
     for name, density in composition.number_densities.items():
-        number = show(float(density), "number density", "cm^-3")
-        parts.append(Text(f"dopant {name}: {number} of host"))
-    return parts
+        lines.append(f"dopant {name}: {show(float(density), 'number density', 'cm^-3')} of host")
+    return "\n".join(lines)
 
 
-def _limits(answer: Prediction) -> list[Any]:
-    limits, table = answer.limits, Table.grid(padding=(0, 2))
-    conducts = bool(np.any(limits.conductivity > 0.0))
-    rows = [("static permittivity", limits.static), ("high-frequency permittivity", limits.high_frequency)]
+def _limits(answer: Prediction) -> str:
+    limits = answer.limits
+    rows = [
+        ["static permittivity", _axes(limits.static)],
+        ["high-frequency permittivity", _axes(limits.high_frequency)],
+    ]
     if answer.magnetic:
-        rows += [
-            ("static permeability", limits.static_permeability),
-            ("high-frequency permeability", limits.high_frequency_permeability),
-        ]
-    for name, value in rows:
-        table.add_row(name, _axes(value))
-    if conducts:
-        table.add_row("conductivity at dc", f"{_axes(limits.conductivity)} S/m")
-        table.add_row("level beside it", _axes(limits.plateau))
-    return [Text(""), table, Text("")]
+        rows.append(["static permeability", _axes(limits.static_permeability)])
+        rows.append(["high-frequency permeability", _axes(limits.high_frequency_permeability)])
+    if np.any(limits.conductivity > 0.0):
+        rows.append(["conductivity at dc", f"{_axes(limits.conductivity)} S/m"])
+        rows.append(["level beside it", _axes(limits.plateau)])
+    return table(["", ""], rows, left=2)
 
 
-def _spectrum(answer: Prediction) -> Table:
+def _spectrum(answer: Prediction) -> str:
     """Some rows of the spectrum, and the highest loss."""
     e, m = answer.permittivity, answer.permeability
     columns: list[tuple[str, Any]] = []
-    if answer.response.permittivity.ndim == 2:
+    if e.ndim == 2:
         for label, axis in (("⊥", 0), ("∥", 2)):
             n = answer.quantity("index")[axis]
             columns += [(f"ε′ {label}", e[axis].real), (f"ε″ {label}", e[axis].imag), (f"n {label}", n)]
@@ -189,19 +145,21 @@ def _spectrum(answer: Prediction) -> Table:
         columns += [("n", answer.quantity("index")), ("k", answer.quantity("extinction"))]
         if not answer.magnetic:
             columns.append(("tan δ", answer.quantity("loss_tangent")))
-        columns.append(("α [1/cm]", answer.quantity("absorption_coefficient") / 100.0))
-    heading = f"{kind_of_axis(answer.axis.unit).removeprefix('vacuum ')} [{answer.axis.unit}]"
-    table = _table(heading, *[name for name, _ in columns], labels=0)
-    table.add_column("", justify="left")
+        columns.append(("α\n[1/cm]", answer.quantity("absorption_coefficient") / 100.0))
+    kind = kind_of_axis(answer.axis.unit).removeprefix("vacuum ")
+    headings = [f"{kind}\n[{answer.axis.unit}]", *[name for name, _ in columns], ""]
     loss = _first_axis(e).imag
     peak = int(np.argmax(loss))
     chosen = set(_chosen(len(answer.omega), ROWS))
-    if loss[peak] > 0.0:
+    marked = loss[peak] > 0.0 and len(answer.omega) > 1
+    if marked:
         chosen.add(peak)
+    rows = []
     for i in sorted(chosen):
-        mark = "← top ε″" if i == peak and loss[peak] > 0.0 and len(answer.omega) > 1 else ""
-        table.add_row(f"{answer.axis.shown[i]:.5g}", *[_number(values[i]) for _, values in columns], mark)
-    return table
+        mark = "← highest ε″" if marked and i == peak else ""
+        rows.append([f"{answer.axis.shown[i]:.5g}", *[_number(values[i]) for _, values in columns], mark])
+    size = max(len(row[-1]) for row in rows)
+    return table(headings, [[*row[:-1], row[-1].ljust(size)] for row in rows], left=0)
 
 
 def _estimate(answer: Inversion, estimate: Estimate) -> str:
@@ -228,40 +186,45 @@ def _round(text: str) -> str:
     return f"{float(number):.4g} {unit}".rstrip()
 
 
-def _family(answer: Inversion) -> Table:
+def _residuals(answer: Inversion) -> list[str]:
+    """Readings that the answer does not meet."""
+    if all(abs(r.measured - r.predicted) <= 1e-9 for r in answer.residuals):
+        return []
+    rows = []
+    for r in answer.residuals:
+        off = NONE if r.standardised is None else f"{r.standardised:+.2f} standard uncertainties"
+        numbers = (_number(r.measured, digits=6), _number(r.predicted, digits=6))
+        rows.append([r.kind.replace("_", "-"), *numbers, off])
+    return [table(["reading", "measured", "predicted", "off by"], rows)]
+
+
+def _family(answer: Inversion) -> str:
     assert answer.family is not None
-    table = _table(*answer.family)
     values = list(answer.family.values())
+    rows = []
     for i in _chosen(len(values[0]), ROWS):
-        shown = zip(answer.family, values, strict=True)
-        table.add_row(*[_round(answer.recipe.show(path, float(column[i]))) for path, column in shown])
-    return table
+        pairs = zip(answer.family, values, strict=True)
+        rows.append([_round(answer.recipe.show(path, float(column[i]))) for path, column in pairs])
+    return table([_stacked(path, "") for path in answer.family], rows, left=0)
 
 
-def _by_rule(answer: Inversion) -> Table:
-    table = _table("rule", *[_short(path) for path in answer.estimates])
+def _by_rule(answer: Inversion) -> str:
+    rows = []
     for found in answer.by_rule:
         if found.values is None:
-            table.add_row(found.rule, *["no answer"] * len(answer.estimates))
+            rows.append([found.rule, *["no answer"] * len(answer.estimates)])
         else:
             shown = [_round(answer.recipe.show(path, value)) for path, value in found.values.items()]
-            table.add_row(found.rule, *shown)
-    return table
+            rows.append([found.rule, *shown])
+    return table(["rule", *[".".join(path.split(".")[-2:]) for path in answer.estimates]], rows)
 
 
-def _cautions(warnings: Sequence[Caution]) -> list[Any]:
+def _cautions(warnings: Sequence[Caution]) -> list[str]:
     lines = []
     for caution in warnings:
         place = f"{caution.path}: " if caution.path else ""
-        lines.append(Text(f"\ncaution, {caution.kind}: {place}{caution.message}"))
+        lines.append(paragraph(f"caution, {caution.kind}: {place}{caution.message}"))
     return lines
-
-
-def _table(*columns: str, labels: int = 1) -> Table:
-    table = Table(box=None, pad_edge=False, padding=(0, 2, 0, 0), header_style="dim")
-    for position, name in enumerate(columns):
-        table.add_column(Text(name), justify="left" if position < labels else "right", no_wrap=labels == 0)
-    return table
 
 
 def _chosen(count: int, rows: int) -> list[int]:
@@ -292,11 +255,6 @@ def _number(value: Any, *, digits: int = 4) -> str:
             return f"{value.real:.{digits}g} + {value.imag:.{digits}g}i"
         value = value.real
     return NONE if np.isnan(value) else f"{float(value):.{digits}g}"
-
-
-def _short(path: str) -> str:
-    """The last two words of a path."""
-    return ".".join(path.split(".")[-2:])
 
 
 def _stacked(path: str, unit: str) -> str:

@@ -5,11 +5,10 @@ from __future__ import annotations
 import re
 from collections.abc import Mapping
 
-_HEADER = re.compile(r"^\s*(\[\[?)\s*([^\]]+?)\s*\]\]?\s*(?:#.*)?$")
-_KEY = re.compile(
-    r"""^\s*((?:"[^"]*"|'[^']*'|[A-Za-z0-9_-]+)(?:\s*\.\s*(?:"[^"]*"|'[^']*'|[A-Za-z0-9_-]+))*)\s*="""
-)
-_PART = re.compile(r""""([^"]*)"|'([^']*)'|([A-Za-z0-9_-]+)""")
+# kept as text: compiled when something is wrong, not at every start
+_HEADER = r"^\s*(\[\[?)\s*([^\]]+?)\s*\]\]?\s*(?:#.*)?$"
+_KEY = r"""^\s*((?:"[^"]*"|'[^']*'|[A-Za-z0-9_-]+)(?:\s*\.\s*(?:"[^"]*"|'[^']*'|[A-Za-z0-9_-]+))*)\s*="""
+_PART = r""""([^"]*)"|'([^']*)'|([A-Za-z0-9_-]+)"""
 
 
 def lines_of(text: str) -> Mapping[str, int]:
@@ -18,14 +17,14 @@ def lines_of(text: str) -> Mapping[str, int]:
     table: tuple[str, ...] = ()
     entries: dict[str, int] = {}
     for number, line in enumerate(text.splitlines(), start=1):
-        if header := _HEADER.match(line):
+        if header := re.match(_HEADER, line):
             table = _parts(header[2])
             if header[1] == "[[":
                 name = ".".join(table)
                 entries[name] = entries.get(name, -1) + 1
                 table = (*table, str(entries[name]))
             found.setdefault(".".join(table), number)
-        elif key := _KEY.match(line):
+        elif key := re.match(_KEY, line):
             found.setdefault(".".join((*table, *_parts(key[1]))), number)
     return found
 
@@ -41,4 +40,4 @@ def line_of(path: str, lines: Mapping[str, int]) -> int | None:
 
 
 def _parts(key: str) -> tuple[str, ...]:
-    return tuple(next(part for part in match if part) for match in _PART.findall(key))
+    return tuple(next(part for part in match if part) for match in re.findall(_PART, key))

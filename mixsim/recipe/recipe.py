@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import hashlib
 from collections.abc import Mapping
 from dataclasses import dataclass
 from functools import cached_property
@@ -60,6 +59,8 @@ class Recipe:
     @cached_property
     def digest(self) -> str:
         """Short hash of the recipe as written and of what was set, to tell one answer's origin."""
+        import hashlib
+
         content = self.text + repr(sorted(self.settings.items()))
         return hashlib.sha256(content.encode()).hexdigest()[:16]
 

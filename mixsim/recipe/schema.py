@@ -1,6 +1,7 @@
-"""The recipe's schema: which keys there are, and what each holds."""
+"""The recipe's schema: which keys there are, and what each holds.
 
-from __future__ import annotations
+Annotations are real here, not text: a model of text is evaluated piece by piece, which costs at start-up.
+"""
 
 import math
 from collections.abc import Mapping
@@ -31,7 +32,10 @@ NumberDensity = Annotated[Leaf, Number("number density", minimum=0.0)]
 class Section(BaseModel):
     """One table of a recipe."""
 
-    model_config = ConfigDict(extra="forbid", frozen=True, populate_by_name=True, protected_namespaces=())
+    # deferred: only the whole recipe is ever validated, so its parts need no validators of their own
+    model_config = ConfigDict(
+        extra="forbid", frozen=True, populate_by_name=True, protected_namespaces=(), defer_build=True
+    )
 
 
 def _model_section(name: str, parameters: Mapping[str, Parameter], summary: str) -> type[Section]:
