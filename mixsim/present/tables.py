@@ -32,7 +32,7 @@ def prediction(answer: Prediction) -> str:
 def sweep(answer: Prediction) -> str:
     """A sweep: one row for each combination of the varied values."""
     place = len(answer.omega) // 2
-    at = show(float(answer.omega[place]), "spectral", answer.axis.unit)
+    at = f"{answer.axis.shown[place]:.5g} {answer.axis.unit}"
     headings = [_stacked(item.path, item.unit) for item in answer.vary]
     headings += ["static", "high-\nfrequency", f"ε′ at\n{at}", f"ε″ at\n{at}"]
     headings += ["highest\nε″", f"at\n[{answer.axis.unit}]"]
