@@ -70,10 +70,20 @@ def nearest(word: str, known: Iterable[str]) -> str | None:
     --------
     >>> nearest("bruggemann", ["bruggeman", "looyenga"])
     'bruggeman'
+    >>> nearest("logarithmic", ["linear", "log"])
+    'log'
     """
     import difflib  # needed only where something is misspelt
 
     lowered = {candidate.lower(): candidate for candidate in known}
+    start = word.lower()
+    begun = [
+        known
+        for known in lowered
+        if min(len(known), len(start)) > 2 and (start.startswith(known) or known.startswith(start))
+    ]
+    if len(begun) == 1:
+        return lowered[begun[0]]
     close = difflib.get_close_matches(word.lower(), lowered, n=1, cutoff=0.6)
     return lowered[close[0]] if close else None
 

@@ -124,6 +124,9 @@ def _term(path: str, content: Mapping[str, Any], implied: tuple[str, ...]) -> It
 
 
 def _inclusion(path: str, inclusion: Mapping[str, Any]) -> Iterator[Finding]:
+    name = path.split(".")[-1]
+    if name in ("host", "voids"):
+        yield path, Refusal(f"an inclusion called {name!r}", "answers call a phase so; choose another name")
     yield from _one_of(path, inclusion, tuple(BASES), "the loading")
     shape = inclusion.get("shape")
     if isinstance(shape, Mapping):
@@ -147,9 +150,10 @@ def _dopant(path: str, dopant: Mapping[str, Any], raw: Mapping[str, Any]) -> Ite
     if len(present) > 1:
         found = f"the concentration is given twice, by {' and '.join(present)}"
         yield join(path, present[1]), Refusal(found, "give one of them")
-    weighed = {"weight_fraction", "mole_fraction"} & set(present)
+        return
+    weighed = [key for key in present if key != "number_density"]
     if weighed and "molar_mass" not in dopant:
-        yield path, Refusal(f"{present[0]} without molar_mass", "give molar_mass of the compound weighed in")
+        yield path, Refusal(f"{weighed[0]} without molar_mass", "give molar_mass of the compound weighed in")
     for key in ("molar_mass", "ions_per_formula"):
         if key in dopant and not weighed:
             yield f"{path}.{key}", Refusal(f"{key} without weight_fraction or mole_fraction", "leave it out")
@@ -176,6 +180,9 @@ def _dopant(path: str, dopant: Mapping[str, Any], raw: Mapping[str, Any]) -> Ite
             join(path, present[0]),
             Refusal(found, "leave it out, or give a lorentz term its oscillator strength"),
         )
+    if not used and dopant.get("local_field") == "virtual-cavity":
+        allowed = "it acts on strengths that come from the concentration; plasma and step are felt already"
+        yield f"{path}.local_field", Refusal("virtual-cavity has nothing to act on", allowed)
 
 
 def _names(raw: Mapping[str, Any]) -> Iterator[Finding]:

@@ -23,7 +23,8 @@ def lines_of(text: str) -> Mapping[str, int]:
                 name = ".".join(table)
                 entries[name] = entries.get(name, -1) + 1
                 table = (*table, str(entries[name]))
-            found.setdefault(".".join(table), number)
+            for length in range(1, len(table) + 1):
+                found.setdefault(".".join(table[:length]), number)
         elif key := re.match(_KEY, line):
             found.setdefault(".".join((*table, *_parts(key[1]))), number)
     return found

@@ -53,12 +53,22 @@ def _model_section(name: str, parameters: Mapping[str, Parameter], summary: str)
 
 TERM_SECTIONS = {n: _model_section(n, t.parameters, t.summary) for n, t in TERMS.items()}
 INDEX_SECTIONS = {n: _model_section(n, m.parameters, m.summary) for n, m in INDEX_MODELS.items()}
+
+
+class OrChanges:
+    """Lets an editor take a table without its model: what changes in an inherited one."""
+
+    def __get_pydantic_json_schema__(self, schema: Any, handler: Any) -> dict[str, Any]:
+        changes = {"type": "object", "not": {"required": ["model"]}, "description": "of an inherited one"}
+        return {"anyOf": [handler(schema), changes]}
+
+
 if TYPE_CHECKING:
     Term = Any
     Index = Any
 else:
-    Term = Annotated[reduce(or_, TERM_SECTIONS.values()), Field(discriminator="model")]
-    Index = Annotated[reduce(or_, INDEX_SECTIONS.values()), Field(discriminator="model")]
+    Term = Annotated[reduce(or_, TERM_SECTIONS.values()), Field(discriminator="model"), OrChanges()]
+    Index = Annotated[reduce(or_, INDEX_SECTIONS.values()), Field(discriminator="model"), OrChanges()]
 
 
 class Band(Section):

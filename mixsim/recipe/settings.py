@@ -8,6 +8,7 @@ from typing import Any
 import tomli
 
 from mixsim.errors import BadInput, Fault, Refusal
+from mixsim.recipe import library
 from mixsim.recipe.faults import Finding
 
 COMMAND_LINE = "command line"
@@ -40,7 +41,7 @@ def _setting(text: str) -> tuple[str, str]:
 def apply(raw: dict[str, Any], path: str, value: Any) -> list[Finding]:
     """Put a value at a path of the recipe as parsed from TOML.
 
-    A number of a library material is set in a definition of the same name that is based on it.
+    A number of a library material is set in a copy of it, which stands in the recipe from then on.
 
     Returns
     -------
@@ -49,7 +50,7 @@ def apply(raw: dict[str, Any], path: str, value: Any) -> list[Finding]:
     """
     parts = path.split(".")
     if parts[0] == "materials" and len(parts) > 2 and parts[1] not in raw.get("materials", {}):
-        raw.setdefault("materials", {})[parts[1]] = {"based_on": parts[1]}
+        raw.setdefault("materials", {})[parts[1]] = library.definition(parts[1]) or {}
     node: Any = raw
     for position, part in enumerate(parts[:-1]):
         if isinstance(node, list):

@@ -362,7 +362,7 @@ def wrong_unit(spelling: str, dimension: Dimension, written: str | None = None) 
 
 
 def _suggest(spelling: str, dimension: Dimension) -> str | None:
-    """Unit that differs in case alone or by a forgotten ^-1, else the nearest spelling."""
+    """Unit that differs in case, in the order of letters or by a forgotten ^-1, else the nearest spelling."""
     key = _canonical(spelling)
     known = dict(_spellings(dimension))
     if dimension.name == "rate":
@@ -370,6 +370,9 @@ def _suggest(spelling: str, dimension: Dimension) -> str | None:
     for other, unit in known.items():
         if other.lower() == key.lower():
             return unit.symbol
+    turned = [unit.symbol for other, unit in known.items() if sorted(other) == sorted(key)]
+    if len(turned) == 1:
+        return turned[0]
     if f"{key}-1" in known:
         return known[f"{key}-1"].symbol
     close = nearest(key, known)
