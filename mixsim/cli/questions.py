@@ -14,6 +14,8 @@ from mixsim.errors import BadInput, Fault, Refusal
 from mixsim.recipe import COMMAND_LINE, settings_of
 from mixsim.units import Leaf, read
 
+POINTS = "POINTS is a whole number, at least 2"
+
 if TYPE_CHECKING:
     from mixsim.analysis import Audit, Caution, Inversion, Prediction
 
@@ -59,7 +61,7 @@ def sweep(
     axes = []
     for text in vary or ():
         path, start, stop, points = words("--vary", text, "PATH FROM TO POINTS")
-        axes.append(varied(loaded, path, start, stop, _count(points), log=log))
+        axes.append(varied(loaded, path, start, stop, _whole("--vary", points, POINTS), log=log))
     answer = ask(loaded, axes)
     _deliver(answer, "sweep", json=json, out=out, strict=strict)
     return ANSWERED
@@ -79,7 +81,7 @@ def invert(
             "--free", metavar="PATH LOW HIGH", help="Find this number in a range; replaces [unknowns]."
         ),
     ] = None,
-    seed: Annotated[int, typer.Option("--seed", min=0, help="Of the Monte Carlo.")] = 0,
+    seed: Annotated[str, typer.Option("--seed", metavar="NUMBER", help="Of the Monte Carlo.")] = "0",
     settings: Set = None,
     rule: RuleName = "",
     json: Json = False,
@@ -101,7 +103,7 @@ def invert(
         static=_reading("--static", static),
         high_frequency=_reading("--high-frequency", high_frequency),
         free=unknowns,
-        seed=seed,
+        seed=_whole("--seed", seed, "a whole number, 0 or above"),
     )
     _deliver(answer, "inversion", json=json, out=out, strict=strict)
     return {"answered": ANSWERED, "impossible": NO, "undecided": UNDECIDED}[answer.verdict]
@@ -126,10 +128,9 @@ def audit(
     return ANSWERED if answer.passed and not (strict and answer.warnings) else NO
 
 
-def _count(text: str) -> int:
+def _whole(option: str, text: str, allowed: str) -> int:
     if not text.isdecimal():
-        allowed = "a whole number, at least 2"
-        raise BadInput([Fault(COMMAND_LINE, "--vary", f"{text!r} points", allowed)])
+        raise BadInput([Fault(COMMAND_LINE, option, repr(text), allowed)])
     return int(text)
 
 
