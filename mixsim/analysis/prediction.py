@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
-from functools import cached_property
 from typing import Any
 
 import numpy as np
@@ -45,6 +44,8 @@ class Prediction:
         Host and inclusions on their own, at the numbers of the recipe, by name.
     warnings
         Cautions.
+    magnetic
+        Whether any constituent has a permeability other than one.
     vary
         Leaves that vary, one leading axis each; none in a plain prediction.
     """
@@ -57,6 +58,7 @@ class Prediction:
     composition: Composition
     constituents: Mapping[str, Response]
     warnings: tuple[Caution, ...]
+    magnetic: bool
     vary: tuple[Varied, ...] = ()
 
     @property
@@ -73,11 +75,6 @@ class Prediction:
     def permeability(self) -> Any:
         """Relative permeability [-]."""
         return self.response.permeability
-
-    @cached_property
-    def magnetic(self) -> bool:
-        """Whether any constituent has a permeability other than one."""
-        return bool(np.any(self.response.permeability != 1.0))
 
     def quantity(self, name: str) -> Any:
         """A quantity of `mixsim.observables.QUANTITIES` by its name, in SI."""
@@ -200,9 +197,8 @@ def _evaluated(recipe: Recipe, vary: tuple[Varied, ...]) -> Prediction:
         raise BadInput([fault]) from None
     limits = mixture.limits(values)
     said = cautions(recipe, mixture, axis, response, limits, composition, constituents)
-    return Prediction(
-        recipe, mixture.rule.name, axis, response, limits, composition, constituents, said, vary
-    )
+    rule, magnetic = mixture.rule.name, mixture.magnetic
+    return Prediction(recipe, rule, axis, response, limits, composition, constituents, said, magnetic, vary)
 
 
 def _room(mixture: Mixture, composition: Composition, vary: tuple[Varied, ...]) -> None:

@@ -98,7 +98,8 @@ class Mixture:
         Returns
         -------
         response
-            Both of shape batch + (N,), or batch + (3, N) where grains are aligned.
+            Both of shape batch + (N,), or batch + (3, N) where grains are aligned. A permeability of one
+            takes no memory and cannot be written to.
 
         Raises
         ------
@@ -117,8 +118,8 @@ class Mixture:
         axes = self._axes(values)
         shape = (*axes.shape, axis.size)
         permittivity = np.empty(shape, dtype=complex)
-        magnetic = any(phase.permeability is not VACUUM for phase in self.phases)
-        permeability = np.empty(shape, dtype=complex) if magnetic else np.ones(shape, dtype=complex)
+        magnetic = self.magnetic
+        permeability = np.empty(shape, dtype=complex) if magnetic else np.broadcast_to(1.0 + 0.0j, shape)
         for window, rows in blocks(axes.shape, axis.size):
             here = axis[window]
             electric_fixed = self._fixed("permittivity", axes, here)
@@ -160,18 +161,21 @@ class Mixture:
             spread = np.broadcast_to(np.asarray(limit), (*axes.shape, 1))
             return spread[..., 0].copy()
 
-        electric, magnetic = ([getattr(p, q) for p in self.phases] for q in ("permittivity", "permeability"))
+        electric = [phase.permittivity for phase in self.phases]
         low = low_frequency(mix, *zip(*(phase.low(x) for phase in electric), strict=True))
-        low_magnetic = low_frequency(mix, *zip(*(phase.low(x) for phase in magnetic), strict=True))
+        static_permeability: Any = 1.0 + 0.0j
+        high_permeability: Any = 1.0 + 0.0j
+        if self.magnetic:
+            magnetic = [phase.permeability for phase in self.phases]
+            static_permeability = low_frequency(mix, *zip(*(m.low(x) for m in magnetic), strict=True)).static
+            high_permeability = np.asarray(mix([m.high(x) for m in magnetic]), dtype=complex)
         return Limits(
             static=full(low.static),
             high_frequency=full(np.asarray(mix([phase.high(x) for phase in electric]), dtype=complex)),
             conductivity=full(low.rate * VACUUM_PERMITTIVITY),
             plateau=full(low.plateau),
-            static_permeability=full(low_magnetic.static),
-            high_frequency_permeability=full(
-                np.asarray(mix([phase.high(x) for phase in magnetic]), dtype=complex)
-            ),
+            static_permeability=full(static_permeability),
+            high_frequency_permeability=full(high_permeability),
         )
 
     def composition(self, values: Mapping[str, ArrayLike]) -> Composition:
@@ -251,6 +255,11 @@ class Mixture:
         """Constituents in the order in which the rule is given them, host first."""
         voids = Constituent(VOIDS, "vacuum", VACUUM, VACUUM)
         return (self.host, *self.inclusions, *([] if self.voids is None else [voids]))
+
+    @property
+    def magnetic(self) -> bool:
+        """Whether any constituent has a permeability other than one."""
+        return any(phase.permeability is not VACUUM for phase in self.phases)
 
     @property
     def aligned(self) -> bool:
