@@ -39,6 +39,13 @@ class Command(TyperCommand):
 class Program(TyperGroup):
     """The program: turns whatever happens into an exit status and a message without a traceback."""
 
+    def invoke(self, ctx: Any) -> Any:
+        """Run the command that was asked for."""
+        try:
+            return super().invoke(ctx)
+        except BrokenPipeError:
+            raise _ReaderLeftError from None  # the parser would end the process with a status of its own
+
     def main(self, *args: Any, **more: Any) -> Any:
         """Run, and exit."""
         more["standalone_mode"] = False
@@ -54,8 +61,8 @@ class Program(TyperGroup):
         except (KeyboardInterrupt, typer.Abort):
             _complain("interrupted")
             code = INTERRUPTED
-        except BrokenPipeError:
-            # the reader of our output left: nothing more to say, and nothing to flush at exit
+        except (_ReaderLeftError, BrokenPipeError):
+            # nothing more to say, and nothing to flush at exit
             os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
             code = ANSWERED
         except Exception as error:
@@ -67,6 +74,10 @@ class Program(TyperGroup):
             )
             code = INTERNAL
         sys.exit(code if isinstance(code, int) else ANSWERED)
+
+
+class _ReaderLeftError(Exception):
+    """Whoever read our output has left, as `head` does."""
 
 
 def _complain(*lines: str) -> int:
