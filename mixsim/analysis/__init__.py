@@ -9,25 +9,25 @@ if TYPE_CHECKING:
     from mixsim.analysis.auditing import Audit, audit
     from mixsim.analysis.band import Axis, Varied, axis_of, varied
     from mixsim.analysis.caution import Caution
-    from mixsim.analysis.inversion import Estimate, Inversion, Reading, Unknown
-    from mixsim.analysis.inverting import invert
+    from mixsim.analysis.inversion.answer import Estimate, Inversion, Reading, Unknown
+    from mixsim.analysis.inversion.asked import freed
+    from mixsim.analysis.inversion.inverting import invert
     from mixsim.analysis.prediction import Prediction, predict, sweep
-    from mixsim.analysis.readings import freed
 
 _HOMES = {
     "Audit": "auditing",
     "Axis": "band",
     "Caution": "caution",
-    "Estimate": "inversion",
-    "Inversion": "inversion",
+    "Estimate": "inversion.answer",
+    "Inversion": "inversion.answer",
     "Prediction": "prediction",
-    "Reading": "inversion",
-    "Unknown": "inversion",
+    "Reading": "inversion.answer",
+    "Unknown": "inversion.answer",
     "Varied": "band",
     "audit": "auditing",
     "axis_of": "band",
-    "freed": "readings",
-    "invert": "inverting",
+    "freed": "inversion.asked",
+    "invert": "inversion.inverting",
     "predict": "prediction",
     "sweep": "prediction",
     "varied": "band",

@@ -30,9 +30,13 @@ def check_place(file: Path, suffixes: tuple[str, ...]) -> None:
         raise refuse(
             file, found, f"one of {' '.join(suffixes)}", nearest(suffix, suffixes) if suffix else None
         )
-    if file.is_dir():
+    try:
+        taken, folder = file.is_dir(), file.parent.is_dir()
+    except OSError as error:  # a name too long, a folder that may not be looked into
+        raise refuse(file, _why(error), "choose another place") from None
+    if taken:
         raise refuse(file, "it is a folder", "name a file")
-    if not file.parent.is_dir():
+    if not folder:
         raise refuse(file, f"there is no folder {str(file.parent)!r}", "make it first")
     if not os.access(file.parent, os.W_OK):
         raise refuse(file, f"the folder {str(file.parent)!r} cannot be written to", "choose another one")
@@ -54,9 +58,10 @@ def write_whole(file: Path, write: Callable[[Path], None]) -> None:
         Where the place cannot be written to. Whatever goes wrong, the old file stays as it was.
     """
     try:
-        handle, name = tempfile.mkstemp(dir=file.parent, prefix=f".{file.stem}-", suffix=file.suffix)
-    except OSError as error:
-        raise refuse(file, (error.strerror or "cannot be written").lower(), "choose another place") from None
+        place = file.resolve()  # a link stays one, and the file that it names is replaced
+        handle, name = tempfile.mkstemp(dir=place.parent, prefix=".mixsim-", suffix=file.suffix)
+    except (OSError, RuntimeError) as error:  # RuntimeError: links in a circle
+        raise refuse(file, _why(error), "choose another place") from None
     os.close(handle)
     beside = Path(name)
     try:
@@ -64,9 +69,9 @@ def write_whole(file: Path, write: Callable[[Path], None]) -> None:
         mask = os.umask(0)
         os.umask(mask)
         beside.chmod(0o666 & ~mask)
-        beside.replace(file)
+        beside.replace(place)
     except OSError as error:
-        raise refuse(file, (error.strerror or "cannot be written").lower(), "choose another place") from None
+        raise refuse(file, _why(error), "choose another place") from None
     finally:
         beside.unlink(missing_ok=True)
 
@@ -83,6 +88,11 @@ def new_text(file: Path, text: str, *, suffix: str) -> None:
     if file.exists():
         raise refuse(file, "the file is there already", "name a new one; a recipe is never overwritten")
     whole_text(file, text, suffix=suffix)
+
+
+def _why(error: Exception) -> str:
+    """What the system says, in small letters."""
+    return (getattr(error, "strerror", None) or "cannot be written").lower()
 
 
 def _write_text(file: Path, text: str) -> None:

@@ -1,4 +1,8 @@
-"""Answers as comma-separated text: header with quantity and unit, full precision, empty where nothing is."""
+"""Answers as comma-separated text: header with quantity and unit, full precision, empty where nothing is.
+
+The axis and the permittivity carry the names that `mixsim.dispersion.read_table` knows: the first three
+columns of a prediction, with the comments above, are a measured table as a material takes one.
+"""
 
 from __future__ import annotations
 
@@ -11,23 +15,26 @@ import numpy as np
 
 from mixsim.analysis import Inversion, Prediction
 from mixsim.analysis.plain import provenance
+from mixsim.analysis.prediction import CONVENTION
+from mixsim.dispersion.table import AXES
 from mixsim.units import kind_of_axis
 
 _QUANTITIES = (
-    ("n", "index"),
-    ("k", "extinction"),
-    ("loss tangent", "loss_tangent"),
-    ("absorption [1/m]", "absorption_coefficient"),
-    ("conductivity [S/m]", "conductivity"),
+    ("n", "", "index"),
+    ("k", "", "extinction"),
+    ("loss_tangent", "", "loss_tangent"),
+    ("absorption", " [1/m]", "absorption_coefficient"),
+    ("conductivity", " [S/m]", "conductivity"),
 )
-_CHUNK = 4096  # rows turned into text at a time
+_CHUNK = 16384  # rows turned into text at a time
 
 
 def write_csv(answer: Prediction | Inversion, file: Path) -> None:
     """Write the rows of an answer: one for each frequency (and varied value), or one for each unknown."""
     with file.open("w", encoding="utf-8", newline="") as stream:
         for line in _comments(answer):
-            stream.write(f"# {line}\n")
+            # one line each, whatever line breaks a title holds
+            stream.write(f"# {' '.join(line.split())}\n")
         writer = csv.writer(stream, lineterminator="\n")
         if isinstance(answer, Inversion):
             writer.writerows(_inversion(answer))
@@ -37,22 +44,22 @@ def write_csv(answer: Prediction | Inversion, file: Path) -> None:
 
 
 def _comments(answer: Prediction | Inversion) -> Iterator[str]:
-    recipe = answer.recipe
+    recipe, origin = answer.recipe, provenance(answer.recipe)
     if recipe.schema.title:
-        yield recipe.schema.title
-    origin = provenance(recipe)
+        yield f"title: {recipe.schema.title}"
     yield f"mixsim {origin['version']}, recipe {origin['recipe']}, rule {answer.rule}"
     if isinstance(answer, Inversion):
         yield f"{answer.verdict}, {answer.method}"
-        yield from answer.reasons
+        yield from (f"because: {reason}" for reason in answer.reasons)
     else:
-        yield "convention: exp(-iwt)"
+        yield f"convention: {CONVENTION}"
     yield from (f"caution, {caution.kind}: {caution.message}" for caution in answer.warnings)
 
 
 def _prediction(answer: Prediction) -> Iterator[list[Sequence[Any]]]:
     """The header, then rows in chunks; the frequency runs fastest."""
-    axis = kind_of_axis(answer.axis.unit).removeprefix("vacuum ")
+    kind = kind_of_axis(answer.axis.unit)
+    axis = next(name for name, meant in AXES.items() if meant == kind)
     header = [f"{item.path}{f' [{item.unit}]' if item.unit else ''}" for item in answer.vary]
     header.append(f"{axis} [{answer.axis.unit}]")
     columns = []
@@ -60,35 +67,46 @@ def _prediction(answer: Prediction) -> Iterator[list[Sequence[Any]]]:
         header.append(name)
         columns.append(values.reshape(-1, len(answer.omega)))
     yield [header]
-    varied = np.meshgrid(*[item.shown for item in answer.vary], indexing="ij")
+    # these repeat in every block: turned into text once
+    frequencies = [repr(value) for value in answer.axis.shown.tolist()]
+    grid = np.meshgrid(*[_texts(item.shown) for item in answer.vary], indexing="ij")
+    varied = [values.reshape(-1).tolist() for values in grid]
     rows, count = columns[0].shape
     step = max(1, _CHUNK // count)
     for start in range(0, rows, step):
         here = slice(start, min(start + step, rows))
         size = here.stop - here.start
-        parts = [np.repeat(values.reshape(-1)[here], count) for values in varied]
-        parts.append(np.tile(answer.axis.shown, size))
-        parts += [column[here].reshape(-1) for column in columns]
-        table = np.stack(parts, axis=-1)
-        text = table.tolist()
-        if not np.isfinite(table).all():
-            text = [[cell if np.isfinite(cell) else "" for cell in row] for row in text]
-        yield text
+        parts = [[text for text in texts[here] for _ in range(count)] for texts in varied]
+        parts.append(frequencies * size)
+        parts += [_cells(column[here].reshape(-1)) for column in columns]
+        yield list(zip(*parts, strict=True))
+
+
+def _texts(values: Any) -> Any:
+    return np.array([repr(value) for value in values.tolist()], dtype=object)
+
+
+def _cells(values: Any) -> list[Any]:
+    """Numbers of a column; empty where there is none."""
+    cells: list[Any] = values.tolist()
+    if np.isfinite(values).all():
+        return cells
+    return [cell if there else "" for cell, there in zip(cells, np.isfinite(values).tolist(), strict=True)]
 
 
 def _columns(answer: Prediction) -> Iterator[tuple[str, Any]]:
     """Every column over frequency, one for each principal axis where there are three."""
     e, m = answer.permittivity, answer.permeability
-    parts = [("permittivity real", e.real), ("permittivity imag", e.imag)]
+    parts = [("permittivity_real", "", e.real), ("permittivity_imag", "", e.imag)]
     if answer.magnetic:
-        parts += [("permeability real", m.real), ("permeability imag", m.imag)]
-    parts += [(label, answer.quantity(name)) for label, name in _QUANTITIES]
+        parts += [("permeability_real", "", m.real), ("permeability_imag", "", m.imag)]
+    parts += [(name, unit, answer.quantity(quantity)) for name, unit, quantity in _QUANTITIES]
     if e.ndim == len(answer.vary) + 1:
-        yield from parts
+        yield from ((name + unit, values) for name, unit, values in parts)
         return
-    for label, values in parts:
+    for name, unit, values in parts:
         for axis in range(3):
-            yield f"axis {axis + 1} {label}", np.ascontiguousarray(values[..., axis, :])
+            yield f"{name} axis {axis + 1}{unit}", np.ascontiguousarray(values[..., axis, :])
 
 
 def _inversion(answer: Inversion) -> Iterator[Sequence[Any]]:

@@ -64,14 +64,13 @@ def _write(answer: Prediction | Inversion, file: Path) -> None:
 
 
 def _plot(answer: Prediction | Inversion, file: Path, suffix: str) -> None:
-    import matplotlib
-
     from mixsim.present.plots import figure
-    from mixsim.present.plots.style import RESOLUTION, SETTINGS
+    from mixsim.present.plots.style import RESOLUTION, settings
 
     # no dates: the same answer gives the same file
     metadata = {".png": {"Software": "mixsim"}, ".svg": {"Creator": "mixsim", "Date": None}}.get(
         suffix, {"Creator": "mixsim", "Producer": "mixsim", "CreationDate": None}
     )
-    with matplotlib.rc_context(SETTINGS):
-        figure(answer).savefig(file, format=suffix[1:], dpi=RESOLUTION, metadata=metadata)
+    drawn = figure(answer)
+    with settings():
+        drawn.savefig(file, format=suffix[1:], dpi=RESOLUTION, metadata=metadata)

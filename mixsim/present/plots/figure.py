@@ -26,21 +26,22 @@ def figure(answer: Prediction | Inversion) -> Figure:
     Raises
     ------
     Refusal
-        Where a sweep has more than two varied numbers.
+        Where a sweep has more than two varied numbers, or principal axes.
     """
-    import matplotlib
     from matplotlib.figure import Figure
+    from matplotlib.layout_engine import ConstrainedLayoutEngine
 
     from mixsim.present.plots import inversion, prediction, sweep
-    from mixsim.present.plots.style import HEIGHT, SETTINGS, WIDTH
+    from mixsim.present.plots.style import HEIGHT, WIDTH, settings
 
-    with matplotlib.rc_context(SETTINGS):
-        drawn = Figure(figsize=(WIDTH, HEIGHT), layout="constrained")
+    with settings():
+        drawn = Figure(figsize=(WIDTH, HEIGHT), layout=ConstrainedLayoutEngine(w_pad=0.07, wspace=0.03))
         if isinstance(answer, Inversion):
             inversion.draw(drawn, answer)
         elif answer.vary:
             sweep.draw(drawn, answer)
         else:
             prediction.draw(drawn, answer)
+        drawn.align_ylabels()
         drawn.draw_without_rendering()  # lay it out while the settings hold
     return drawn

@@ -8,7 +8,7 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
-from mixsim.analysis.inversion import Reading, Unknown
+from mixsim.analysis.inversion.answer import Reading, Unknown
 from mixsim.mixture import HOST, Mixture
 
 Floats = NDArray[np.float64]

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from mixsim.analysis.inversion import Reading, Unknown
+from mixsim.analysis.inversion.answer import Reading, Unknown
 from mixsim.errors import BadInput, Fault
 from mixsim.recipe import COMMAND_LINE, Recipe
 from mixsim.units import Leaf, read
