@@ -6,7 +6,7 @@ from dataclasses import dataclass
 from typing import Any
 
 import numpy as np
-from numpy.typing import NDArray
+from numpy.typing import ArrayLike, NDArray
 
 from mixsim.errors import BadInput, Fault
 from mixsim.recipe import COMMAND_LINE, Recipe
@@ -138,6 +138,37 @@ def varied(
     shown = spaced(ends[0], ends[1], points, log=log)
     values: Any = from_unit(shown, unit, first.dimension) if unit else shown
     return Varied(path, np.asarray(values), unit, shown, "log" if log else "linear")
+
+
+def through(recipe: Recipe, path: str, values: ArrayLike) -> Varied:
+    """Given values for one leaf, held to its range.
+
+    Parameters
+    ----------
+    recipe
+        The recipe.
+    path
+        Of the leaf.
+    values
+        In SI.
+
+    Raises
+    ------
+    BadInput
+        Where the path is unknown or a value lies outside the range of the leaf.
+    """
+    here, numbers = recipe.leaf(path, option="vary"), np.asarray(values, dtype=float)
+    allowed = recipe.ranges[path]
+    if numbers.ndim != 1 or not numbers.size:
+        found = f"{path}: values of shape {numbers.shape}"
+        raise BadInput([Fault(recipe.file, "vary", found, "one list of numbers for each path")])
+    for value in numbers.tolist():
+        if not allowed.holds(value):
+            found = f"{path}: {value:g} is out of range"
+            raise BadInput([Fault(recipe.file, "vary", found, f"must be {allowed.said()}")])
+    unit = written_unit(here)
+    shown = np.asarray(to_unit(numbers, unit, here.dimension)) if unit else numbers
+    return Varied(path, numbers, unit, shown)
 
 
 def spaced(start: float, stop: float, points: int, *, log: bool) -> Floats:

@@ -7,8 +7,9 @@ from dataclasses import dataclass
 from typing import Any
 
 import numpy as np
+from numpy.typing import ArrayLike
 
-from mixsim.analysis.band import Axis, Varied, axis_of
+from mixsim.analysis.band import Axis, Varied, axis_of, through
 from mixsim.analysis.caution import Caution
 from mixsim.analysis.cautions import cautions
 from mixsim.analysis.plain import complex_parts, plain, provenance
@@ -148,7 +149,7 @@ def predict(recipe: Recipe) -> Prediction:
     return _evaluated(recipe, ())
 
 
-def sweep(recipe: Recipe, vary: Sequence[Varied]) -> Prediction:
+def sweep(recipe: Recipe, vary: Sequence[Varied] | Mapping[str, ArrayLike]) -> Prediction:
     """Response of the mixture over its band, for every combination of some leaves' values.
 
     Parameters
@@ -156,7 +157,8 @@ def sweep(recipe: Recipe, vary: Sequence[Varied]) -> Prediction:
     recipe
         A checked recipe, with a band.
     vary
-        Leaves and their values, as `mixsim.analysis.varied` makes them; each adds a leading axis.
+        Leaves and their values: path → numbers in SI, or as `mixsim.analysis.varied` makes them from text.
+        Each adds a leading axis.
 
     Returns
     -------
@@ -167,7 +169,21 @@ def sweep(recipe: Recipe, vary: Sequence[Varied]) -> Prediction:
     ------
     BadInput
         Where a value lies outside its range, the host has no room left, or the grid is too large.
+
+    Examples
+    --------
+    >>> import mixsim
+    >>> recipe = mixsim.parse('''
+    ...     band.values = ["10 GHz"]
+    ...     host.material = "polyethylene"
+    ...     inclusions.filler = { material = "alumina", volume_fraction = "20 %" }
+    ... ''')
+    >>> swept = mixsim.sweep(recipe, {"inclusions.filler.volume_fraction": [0.0, 0.1, 0.2]})
+    >>> print(swept.limits.static.real.round(2))
+    [2.3  2.67 3.1 ]
     """
+    if isinstance(vary, Mapping):
+        vary = [through(recipe, path, values) for path, values in vary.items()]
     paths = [item.path for item in vary]
     if not paths:
         raise BadInput([Fault(COMMAND_LINE, "--vary", "nothing varies", "give --vary PATH FROM TO POINTS")])

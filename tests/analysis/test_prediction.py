@@ -109,6 +109,16 @@ def test_sweep_is_a_grid_of_predictions() -> None:
     json.dumps(held, allow_nan=False)
 
 
+def test_sweep_of_given_values() -> None:
+    recipe = film('values = ["1 eV"]')
+    swept = mixsim.sweep(recipe, {LOADING: [0.2, 0.05], PLASMA: np.array([1e15])})
+    assert swept.permittivity.shape == (2, 1, 1)
+    assert swept.vary[0].shown.tolist() == [20.0, 5.0]
+    for values, found in (([0.1, 1.2], "1.2 is out of range"), (0.1, "shape"), ([], "shape")):
+        with pytest.raises(mixsim.BadInput, match=found):
+            mixsim.sweep(recipe, {LOADING: values})
+
+
 def test_values_are_spaced_in_the_unit_written() -> None:
     recipe = film('values = ["1 eV"]')
     linear = varied(recipe, PLASMA, "400 nm", "800 nm", 5)
