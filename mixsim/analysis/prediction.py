@@ -180,7 +180,7 @@ def sweep(recipe: Recipe, vary: Sequence[Varied] | Mapping[str, ArrayLike]) -> P
     ... ''')
     >>> swept = mixsim.sweep(recipe, {"inclusions.filler.volume_fraction": [0.0, 0.1, 0.2]})
     >>> print(swept.limits.static.real.round(2))
-    [2.3  2.67 3.1 ]
+    [2.3  2.68 3.1 ]
     """
     if isinstance(vary, Mapping):
         vary = [through(recipe, path, values) for path, values in vary.items()]

@@ -11,8 +11,8 @@ from hypothesis import strategies as st
 
 import mixsim
 from mixsim.analysis import Inversion, Unknown, freed
-from mixsim.analysis.inversion.closed_form import closed_form
 from mixsim.analysis.inversion.answer import Reading
+from mixsim.analysis.inversion.closed_form import closed_form
 from mixsim.units import Leaf, read
 
 MATRIX = """
