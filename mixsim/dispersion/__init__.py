@@ -4,8 +4,9 @@ from __future__ import annotations
 
 from mixsim.dispersion.descriptions import width_from_wavelength
 from mixsim.dispersion.index import INDEX_MODELS, IndexModel
-from mixsim.dispersion.registry import TERMS, Parameter, Route, Term
+from mixsim.dispersion.registry import Parameter, Route, Term
 from mixsim.dispersion.table import Table, interpolate, read_table
+from mixsim.dispersion.terms import TERMS
 
 __all__ = [
     "INDEX_MODELS",

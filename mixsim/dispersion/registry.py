@@ -1,7 +1,4 @@
-"""The register of terms: name → pure function, its parameters, and the words that may give them.
-
-A new term is one function with its `_low` in `terms`, its test and one entry of `TERMS`.
-"""
+"""What a register says of a term: its pure function, its parameters, and the words that may give them."""
 
 from __future__ import annotations
 
@@ -9,7 +6,6 @@ from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass
 from typing import Any
 
-from mixsim.dispersion import descriptions, terms
 from mixsim.errors import Refusal, nearest
 
 
@@ -115,7 +111,8 @@ class Term:
 
         Examples
         --------
-        >>> routes = TERMS["lorentz"].resolve({"step", "resonance", "damping"})
+        >>> from mixsim.dispersion import TERMS
+    >>> routes = TERMS["lorentz"].resolve({"step", "resonance", "damping"})
         >>> routes["plasma"].key, routes["plasma"].function.__name__
         ('step', 'plasma_from_step')
         """
@@ -176,100 +173,3 @@ def not_negative(name: str, dimension: str, meaning: str, default: float | None 
 def by_name(*parameters: Parameter) -> Mapping[str, Parameter]:
     """Parameters by their names."""
     return {parameter.name: parameter for parameter in parameters}
-
-
-TERMS: Mapping[str, Term] = {
-    term.name: term
-    for term in (
-        Term(
-            name="lorentz",
-            function=terms.lorentz,
-            low=terms.lorentz_low,
-            canonical={
-                "plasma": (
-                    Route("plasma", descriptions.plasma_scaled, also=("strength",)),
-                    Route("step", descriptions.plasma_from_step, also=("resonance",)),
-                    Route("number_density", descriptions.plasma_from_number_density, also=("strength",)),
-                ),
-                "resonance": (Route("resonance"),),
-                "damping": (Route("damping"),),
-            },
-            parameters=by_name(
-                not_negative("plasma", "spectral", "plasma frequency"),
-                not_negative(
-                    "strength",
-                    "number",
-                    "multiplies plasma²; with number_density, the oscillator strength",
-                    default=1.0,
-                ),
-                not_negative("step", "number", "static contribution"),
-                not_negative("number_density", "number density", "oscillators per volume"),
-                positive("resonance", "spectral", "resonance frequency"),
-                not_negative("damping", "rate", "full width at half maximum"),
-            ),
-            summary="bound oscillators: an absorption band and the step that it leaves below it",
-            equation="ωp² / (ω₀² − ω² − iΓω)",
-            source="H. A. Lorentz, The Theory of Electrons, 1909",
-        ),
-        Term(
-            name="drude",
-            function=terms.drude,
-            low=terms.drude_low,
-            canonical={
-                "plasma": (
-                    Route("plasma", descriptions.plasma_scaled, also=("strength",)),
-                    Route("carrier_density", descriptions.plasma_from_carriers, also=("effective_mass",)),
-                    Route("conductivity", descriptions.plasma_from_conductivity, also=("collision_time",)),
-                ),
-                "damping": (
-                    Route("damping"),
-                    Route("mobility", descriptions.damping_from_mobility, also=("effective_mass",)),
-                    Route("collision_time", descriptions.damping_from_collision_time),
-                ),
-            },
-            parameters=by_name(
-                not_negative("plasma", "spectral", "plasma frequency, unscreened"),
-                not_negative("strength", "number", "multiplies plasma²", default=1.0),
-                not_negative("carrier_density", "number density", "free carriers per volume"),
-                positive("effective_mass", "electron masses", "effective mass in electron masses"),
-                not_negative("conductivity", "conductivity", "dc conductivity"),
-                not_negative("damping", "rate", "collision rate"),
-                positive("mobility", "mobility", "mobility of the carriers"),
-                positive("collision_time", "time", "time between collisions"),
-            ),
-            summary="free carriers with one collision rate",
-            equation="−ωp² / (ω² + iγω)",
-            source="P. Drude, Ann. Phys. 306, 566 (1900)",
-        ),
-        Term(
-            name="debye",
-            function=terms.debye,
-            low=terms.debye_low,
-            canonical={
-                "step": (Route("step"),),
-                "relaxation_time": (
-                    Route("relaxation_time"),
-                    Route("relaxation_frequency", descriptions.relaxation_time_from_frequency),
-                ),
-            },
-            parameters=by_name(
-                not_negative("step", "number", "static contribution"),
-                positive("relaxation_time", "time", "relaxation time"),
-                positive("relaxation_frequency", "spectral", "relaxation frequency, 1/(2πτ)"),
-            ),
-            summary="relaxation of dipoles with one relaxation time",
-            equation="Δ / (1 − iωτ)",
-            source="P. Debye, Polar Molecules, 1929",
-        ),
-        Term(
-            name="conduction",
-            function=terms.conduction,
-            low=terms.conduction_low,
-            canonical={"conductivity": (Route("conductivity"),)},
-            parameters=by_name(not_negative("conductivity", "conductivity", "dc conductivity")),
-            summary="conduction of charge, below the collision rate of the carriers",
-            equation="iσ / (ε₀ω)",
-            source="Ampère–Maxwell law",
-        ),
-    )
-}

@@ -12,7 +12,9 @@ import pytest
 from scipy.integrate import quad
 
 from mixsim.dispersion import TERMS
-from mixsim.dispersion.terms import conduction, debye, drude, drude_low, lorentz, lorentz_low
+from mixsim.dispersion.terms.conduction import conduction
+from mixsim.dispersion.terms.oscillators import drude, drude_low, lorentz, lorentz_low
+from mixsim.dispersion.terms.relaxation import debye
 from mixsim.units import VACUUM_PERMITTIVITY
 
 MP = mpmath.MPContext()  # of our own: the number of digits is global in the shared one
