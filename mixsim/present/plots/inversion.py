@@ -181,7 +181,7 @@ def _estimate(axes: Axes, answer: Inversion) -> None:
     shape = np.linalg.cholesky(answer.correlation + 1e-12 * np.eye(2))
     for size, name in ((1.0, "1 and 2 standard uncertainties"), (2.0, None)):
         around = centre[:, np.newaxis] + np.array(stds, dtype=float)[:, np.newaxis] * size * (
-            np.stack([np.cos(turn), np.sin(turn)])
+            shape @ np.stack([np.cos(turn), np.sin(turn)])
         )
         ends = [_shown(answer, path, row) for path, row in zip(paths, around, strict=True)]
         axes.plot(*ends, color=INK, lw=1.0, label=name)
