@@ -94,27 +94,27 @@ class Term:
     def resolve(self, given: Iterable[str]) -> Mapping[str, Route]:
         """The way in which each canonical parameter is given.
 
-        Parameters
-        ----------
-        given
-            Names of the parameters that are given.
+            Parameters
+            ----------
+            given
+                Names of the parameters that are given.
 
-        Returns
-        -------
-        routes
-            One way for each canonical parameter, in the order of `canonical`.
+            Returns
+            -------
+            routes
+                One way for each canonical parameter, in the order of `canonical`.
 
-        Raises
-        ------
-        Refusal
-            Where a parameter is unknown, missing, given in two ways, or used by none of the ways chosen.
+            Raises
+            ------
+            Refusal
+                Where a parameter is unknown, missing, given in two ways, or used by none of the ways chosen.
 
-        Examples
-        --------
-        >>> from mixsim.dispersion import TERMS
-    >>> routes = TERMS["lorentz"].resolve({"step", "resonance", "damping"})
-        >>> routes["plasma"].key, routes["plasma"].function.__name__
-        ('step', 'plasma_from_step')
+            Examples
+            --------
+            >>> from mixsim.dispersion import TERMS
+        >>> routes = TERMS["lorentz"].resolve({"step", "resonance", "damping"})
+            >>> routes["plasma"].key, routes["plasma"].function.__name__
+            ('step', 'plasma_from_step')
         """
         names = set(given)
         for name in sorted(names - set(self.parameters)):

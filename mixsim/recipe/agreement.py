@@ -2,15 +2,18 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Mapping
+import re
+from collections.abc import Collection, Iterator, Mapping
 
 from mixsim.composition import BASES, Basis, Loading, volume_fractions
+from mixsim.dispersion.descriptions import width_from_wavelength
 from mixsim.errors import Refusal, nearest
 from mixsim.recipe.faults import Finding
 from mixsim.recipe.leaves import Number
 from mixsim.recipe.schema import Inclusion, Schema
 from mixsim.units import Leaf, kind_of_axis, read, written_unit
 
+OF_MIXTURE = "name one that the mixture depends on, not one of the band, of a validity or of the readings"
 _ROUNDING = 1e-12
 
 
@@ -24,6 +27,10 @@ def disagreements(
     for name, material in schema.materials.items():
         if material.valid is not None:
             yield from _in_order(material.valid.from_, material.valid.to, f"materials.{name}.valid")
+        if material.static is not None and material.high_frequency is not None:
+            yield from _levels(material.static, material.high_frequency, f"materials.{name}.static")
+    yield from _widths(leaves)
+    yield from _doped(schema)
     yield from _room(schema)
     yield from _unknowns(schema, leaves, ranges)
     yield from _readings(schema)
@@ -35,10 +42,15 @@ def loading_of(inclusion: Inclusion) -> tuple[Basis, Leaf]:
     return next((basis, amount) for basis, amount in given if amount is not None)
 
 
-def path_or_nearest(path: str, leaves: Mapping[str, Leaf]) -> str | None:
+def path_or_nearest(path: str, paths: Collection[str]) -> str | None:
     """Known path that a misspelt or shortened one most likely means."""
-    ends = [known for known in leaves if known.endswith("." + path)]
-    return ends[0] if len(ends) == 1 else nearest(path, leaves)
+    ends = [known for known in paths if known.endswith("." + path)]
+    return ends[0] if len(ends) == 1 else nearest(path, paths)
+
+
+def of_mixture(path: str) -> bool:
+    """Whether the mixture depends on the number at a path, so that it can be varied or found."""
+    return not path.startswith(("band.", "measured.")) and not re.match(r"materials\.[^.]+\.valid\.", path)
 
 
 def _in_order(start: Leaf, end: Leaf, path: str) -> Iterator[Finding]:
@@ -58,8 +70,6 @@ def _room(schema: Schema) -> Iterator[Finding]:
     if weights > 1.0 + _ROUNDING:
         yield "inclusions", Refusal(f"weight fractions add up to {weights:.6g}", "the sum is at most 1")
         return
-    if schema.mixing.density is not None:
-        return
     host = schema.materials[schema.host.material].density
     loadings = []
     for inclusion in schema.inclusions.values():
@@ -67,7 +77,18 @@ def _room(schema: Schema) -> Iterator[Finding]:
         density = schema.materials[inclusion.material].density
         loadings.append(Loading(basis, amount.value, density.value if density else None))
     voids = schema.voids.volume_fraction.value if schema.voids else 0.0
-    fractions = volume_fractions(loadings, host_density=host.value if host else None, voids=voids)
+    measured = schema.mixing.density
+    fractions = volume_fractions(
+        loadings,
+        host_density=host.value if host else None,
+        voids=voids,
+        mixture_density=measured.value if measured else None,
+    )
+    if measured is not None:
+        if fractions[0] < -_ROUNDING:
+            found = f"the inclusions alone weigh more than {measured.written!r}"
+            yield "mixing.density", Refusal(found, "the density of the whole mixture, the host included")
+        return
     filled = 1.0 - float(fractions[0])
     if filled > 1.0 + _ROUNDING:
         what = "inclusions and voids" if schema.voids else "inclusions"
@@ -80,8 +101,11 @@ def _room(schema: Schema) -> Iterator[Finding]:
 def _unknowns(schema: Schema, leaves: Mapping[str, Leaf], ranges: Mapping[str, Number]) -> Iterator[Finding]:
     for path, limits in schema.unknowns.items():
         where = f"unknowns.{path}"
+        if not of_mixture(path):
+            yield where, Refusal(f"{path} is no number of the mixture", OF_MIXTURE)
+            continue
         if path not in leaves:
-            suggestion = path_or_nearest(path, leaves)
+            suggestion = path_or_nearest(path, [known for known in leaves if of_mixture(known)])
             yield where, Refusal(f"unknown path {path!r}", "a path of a number in the recipe", suggestion)
             continue
         try:
@@ -99,10 +123,32 @@ def _unknowns(schema: Schema, leaves: Mapping[str, Leaf], ranges: Mapping[str, N
 
 def _readings(schema: Schema) -> Iterator[Finding]:
     measured = schema.measured
-    if measured is None or measured.static is None or measured.high_frequency is None:
-        return
-    if measured.static.value < measured.high_frequency.value:
-        found = (
-            f"static {measured.static.written!r} is below high_frequency {measured.high_frequency.written!r}"
-        )
-        yield "measured.static", Refusal(found, "a passive medium has its static level at or above the other")
+    if measured is not None and measured.static is not None and measured.high_frequency is not None:
+        yield from _levels(measured.static, measured.high_frequency, "measured.static")
+
+
+def _levels(static: Leaf, high_frequency: Leaf, path: str) -> Iterator[Finding]:
+    if static.value < high_frequency.value:
+        found = f"static {static.written!r} is below high_frequency {high_frequency.written!r}"
+        yield path, Refusal(found, "a passive medium has its static level at or above the other")
+
+
+def _widths(leaves: Mapping[str, Leaf]) -> Iterator[Finding]:
+    """A width in wavelength must leave a band about its resonance."""
+    for path, leaf in leaves.items():
+        resonance = leaves.get(f"{path.rpartition('.')[0]}.resonance")
+        if leaf.dimension == "wavelength width" and resonance is not None:
+            try:
+                width_from_wavelength(leaf.value, resonance=resonance.value)
+            except Refusal as refusal:
+                yield path, refusal
+
+
+def _doped(schema: Schema) -> Iterator[Finding]:
+    """Dopants said by weight or by mole must leave some of the host."""
+    for key in ("weight_fraction", "mole_fraction"):
+        given = (getattr(dopant, key) for dopant in schema.dopants.values())
+        total = sum(leaf.value for leaf in given if leaf is not None)
+        if total > 1.0 + _ROUNDING:
+            what = f"{key.replace('_', ' ')}s of dopants"
+            yield "dopants", Refusal(f"{what} add up to {total:.6g}", "the sum is at most 1")

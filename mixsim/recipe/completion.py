@@ -2,16 +2,20 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from pathlib import Path
 from typing import Any
 
-from mixsim.dispersion import Table, read_table
+from mixsim.dispersion import TERMS, Table, read_table
 from mixsim.errors import Refusal
 from mixsim.recipe import library
 from mixsim.recipe.faults import Finding
 
 _DESCRIPTIONS = ("permittivity", "index", "table")
+_SAME = (
+    {"infinity", "susceptibility"},
+    {"resonance_wavelengths", "resonance_wavelengths_squared"},
+)
 
 
 def complete(raw: dict[str, Any]) -> list[Finding]:
@@ -26,9 +30,32 @@ def complete(raw: dict[str, Any]) -> list[Finding]:
         if isinstance(name, str) and name not in materials and (content := library.definition(name)):
             materials[name] = content
     findings: list[Finding] = []
-    inherited = {name: _inherit(name, materials, findings, ()) for name in materials}
-    materials.update(inherited)
+    completed = {name: _inherit(name, materials, findings, ()) for name in materials}
+    materials.update(completed)
     return findings
+
+
+def inherited(name: str, raw: Mapping[str, Any]) -> Any:
+    """A material of the recipe or the library with what it is based on, the recipe untouched."""
+    materials = raw.get("materials")
+    known = materials if isinstance(materials, Mapping) else {}
+    return _inherit(name, known, [], ()) if name in known else library.definition(name)
+
+
+def once(findings: Iterable[Finding], raw: Mapping[str, Any]) -> list[Finding]:
+    """Findings without those that a material has only because another, which has it too, is its base."""
+    every = list(findings)
+    said = {(path, refusal.found) for path, refusal in every}
+
+    def comes_from_base(path: str, found: str) -> bool:
+        kind, _, rest = path.partition(".")
+        name, _, rest = rest.partition(".")
+        materials = raw.get("materials")
+        material = materials.get(name) if kind == "materials" and isinstance(materials, Mapping) else None
+        base = material.get("based_on") if isinstance(material, Mapping) else None
+        return rest != "" and base != name and (f"materials.{base}.{rest}", found) in said
+
+    return [(path, refusal) for path, refusal in every if not comes_from_base(path, refusal.found)]
 
 
 def _inherit(name: str, materials: Mapping[str, Any], findings: list[Finding], seen: tuple[str, ...]) -> Any:
@@ -38,10 +65,11 @@ def _inherit(name: str, materials: Mapping[str, Any], findings: list[Finding], s
     if not isinstance(base_name, str):
         return material
     if base_name in seen:
-        chain = " → ".join((*seen, name, base_name))
-        findings.append(
-            (f"materials.{name}.based_on", Refusal(f"a circle: {chain}", "one of them must stand alone"))
-        )
+        circle = (*seen[seen.index(base_name) :], name)
+        if base_name == seen[0] == next(other for other in materials if other in circle):  # said once
+            found = f"a circle: {' → '.join((*circle, base_name))}"
+            path = f"materials.{base_name}.based_on"
+            findings.append((path, Refusal(found, "one of them must stand alone")))
         return material
     if base_name != name and base_name in materials:
         base = _inherit(base_name, materials, findings, (*seen, name))
@@ -59,22 +87,37 @@ def _inherit(name: str, materials: Mapping[str, Any], findings: list[Finding], s
 
 
 def _merged(base: Mapping[str, Any], over: Mapping[str, Any]) -> dict[str, Any]:
-    merged = dict(base)
+    gone = _said_otherwise(base, over)
+    merged = {key: value for key, value in base.items() if key not in gone}
     for key, value in over.items():
-        inherited = merged.get(key)
-        if isinstance(value, Mapping) and isinstance(inherited, Mapping) and not _replaces(inherited, value):
-            merged[key] = _merged(inherited, value)
+        below = merged.get(key)
+        if isinstance(value, Mapping) and isinstance(below, Mapping):
+            merged[key] = _merged(below, value)
         else:
             merged[key] = value
     return merged
 
 
-def _replaces(inherited: Mapping[str, Any], value: Mapping[str, Any]) -> bool:
-    """Another model, or another way to give the level, takes nothing over from the inherited one."""
-    levels = {"infinity", "susceptibility"}
-    return value.get("model", inherited.get("model")) != inherited.get("model") or bool(
-        levels & value.keys() and levels & inherited.keys() - value.keys()
-    )
+def _said_otherwise(base: Mapping[str, Any], over: Mapping[str, Any]) -> set[str]:
+    """Keys of an inherited table that the one on top gives in other words, with what only they need.
+
+    Another model takes nothing over.
+    """
+    if over.get("model", base.get("model")) != base.get("model"):
+        return set(base)
+    gone = {key for words in _SAME for key in words if over.keys() & words} & base.keys()
+    term = TERMS.get(str(base.get("model")))
+    if term is None:
+        return gone
+    for routes in term.canonical.values():
+        keys = {route.key for route in routes}
+        gone |= (base.keys() & keys) if over.keys() & keys else set()
+    if not gone - over.keys():
+        return gone
+    left = (base.keys() - gone) | over.keys()
+    chosen = [route for routes in term.canonical.values() for route in routes if route.key in left]
+    needed = {name for route in chosen for name in route.needs}
+    return gone | (base.keys() & term.parameters.keys()) - needed
 
 
 def tables(raw: Mapping[str, Any], folder: Path) -> tuple[dict[str, Table], list[Finding]]:
@@ -91,9 +134,9 @@ def tables(raw: Mapping[str, Any], folder: Path) -> tuple[dict[str, Table], list
             read[name] = read_table(folder / file)
         except FileNotFoundError:
             findings.append((path, Refusal(f"no such file {file!r}", "paths are relative to the recipe")))
-        except OSError as error:
-            reason = (error.strerror or "it cannot be read").lower()
-            findings.append((path, Refusal(f"{file!r}: {reason}", "name a file that can be read")))
         except Refusal as refusal:
             findings.append((path, Refusal(f"{file}: {refusal.found}", refusal.allowed, refusal.suggestion)))
+        except (OSError, ValueError) as error:  # ValueError: a name that no file system takes
+            reason = (getattr(error, "strerror", None) or "it cannot be read").lower()
+            findings.append((path, Refusal(f"{file!r}: {reason}", "name a file that can be read")))
     return read, findings

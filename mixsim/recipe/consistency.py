@@ -6,7 +6,8 @@ the schema in one pass.
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Mapping
+import re
+from collections.abc import Iterable, Iterator, Mapping
 from typing import Any
 
 from mixsim.composition import BASES
@@ -16,13 +17,16 @@ from mixsim.mixing import RULES
 from mixsim.recipe import library
 from mixsim.recipe.faults import Finding
 from mixsim.recipe.leaves import join
+from mixsim.recipe.schema import NAME_PATTERN
+from mixsim.units import read
 
 CONCENTRATIONS = ("number_density", "weight_fraction", "mole_fraction")
 
 
 def contradictions(raw: Mapping[str, Any]) -> Iterator[Finding]:
     """Every contradiction and gap, with its path."""
-    yield from _band(_table(raw, "band")) if "band" in raw else ()
+    if isinstance(raw.get("band"), Mapping):
+        yield from _band(raw["band"])
     for name, material in _tables(raw, "materials"):
         yield from _material(name, material)
     for name, inclusion in _tables(raw, "inclusions"):
@@ -48,9 +52,10 @@ def _tables(raw: Mapping[str, Any], key: str) -> Iterator[tuple[str, Mapping[str
 def _one_of(path: str, node: Mapping[str, Any], keys: tuple[str, ...], what: str) -> Iterator[Finding]:
     present = [key for key in keys if key in node]
     if len(present) > 1:
+        times = "twice" if len(present) == 2 else f"{len(present)} times"
         yield (
             join(path, present[1]),
-            Refusal(f"{what} is given twice, by {' and '.join(present)}", "give one of them"),
+            Refusal(f"{what} is given {times}, by {' and '.join(present)}", "give one of them"),
         )
     elif not present:
         yield path, Refusal(f"{what} is not given", f"give one of {', '.join(keys)}")
@@ -58,9 +63,10 @@ def _one_of(path: str, node: Mapping[str, Any], keys: tuple[str, ...], what: str
 
 def _band(band: Mapping[str, Any]) -> Iterator[Finding]:
     if "values" in band:
-        for key in ("from", "to", "points", "spacing"):
-            if key in band:
-                yield f"band.{key}", Refusal(f"{key} beside values", "a band gives values, or from and to")
+        beside = [key for key in ("from", "to", "points", "spacing") if key in band]
+        if beside:
+            found = f"{' and '.join(beside)} beside values"
+            yield f"band.{beside[0]}", Refusal(found, "a band gives values, or from and to")
     else:
         for key in ("from", "to"):
             if key not in band:
@@ -98,7 +104,9 @@ def _material(name: str, material: Mapping[str, Any]) -> Iterator[Finding]:
             yield from _one_of(f"{path}.index", index, both, "the list of resonances")
             for key in both:
                 strengths, values = index.get("strengths"), index.get(key)
-                if isinstance(strengths, list) and isinstance(values, list) and len(strengths) != len(values):
+                if not (isinstance(strengths, list) and isinstance(values, list) and strengths and values):
+                    continue
+                if len(strengths) != len(values):
                     found = f"{len(values)} resonances for {len(strengths)} strengths"
                     yield f"{path}.index.{key}", Refusal(found, "they pair one to one")
 
@@ -113,14 +121,18 @@ def _term(path: str, content: Mapping[str, Any], implied: tuple[str, ...]) -> It
     except Refusal as refusal:
         yield path, refusal
     if "resonance" not in given:
-        for key in ("damping",):
-            unit = str(content.get(key, "")).split("±")[0].strip()
-            if unit.endswith(("nm", "µm", "um", "μm", "mm")):
+        for key in given:
+            if term.parameters[key].dimension == "rate" and _in_wavelength(content[key]):
                 allowed = "give a frequency, energy or wavenumber; a wavelength needs a resonance"
-                yield (
-                    f"{path}.{key}",
-                    Refusal(f"width {content[key]!r} in wavelength without a resonance", allowed),
-                )
+                found = f"width {content[key]!r} in wavelength without a resonance"
+                yield f"{path}.{key}", Refusal(found, allowed)
+
+
+def _in_wavelength(written: Any) -> bool:
+    try:
+        return isinstance(written, str) and read(written, "rate").dimension == "wavelength width"
+    except Refusal:  # the schema says so itself
+        return False
 
 
 def _inclusion(path: str, inclusion: Mapping[str, Any]) -> Iterator[Finding]:
@@ -166,7 +178,11 @@ def _dopant(path: str, dopant: Mapping[str, Any], raw: Mapping[str, Any]) -> Ite
             where,
             Refusal("molar_mass is missing", f"{path}.mole_fraction needs the molar mass of the host"),
         )
-    used = False
+    # a term that is not understood may well use the concentration
+    terms = _table(dopant, "terms")
+    used = not terms or any(
+        not isinstance(term, Mapping) or str(term.get("model")) not in TERMS for term in terms.values()
+    )
     for name, content in _tables(dopant, "terms"):
         if content.get("model") == "lorentz" and not {"plasma", "step", "number_density"} & set(content):
             if not present:
@@ -174,7 +190,7 @@ def _dopant(path: str, dopant: Mapping[str, Any], raw: Mapping[str, Any]) -> Ite
                 yield f"{path}.terms.{name}", Refusal("neither concentration nor plasma frequency", allowed)
             used = True
         yield from _term(f"{path}.terms.{name}", content, ("number_density",))
-    if present and not used and isinstance(dopant.get("terms"), Mapping):
+    if present and not used:
         found = f"{present[0]} is used by none of the terms"
         yield (
             join(path, present[0]),
@@ -193,9 +209,19 @@ def _names(raw: Mapping[str, Any]) -> Iterator[Finding]:
     ]
     uses += [(f"materials.{name}.based_on", node.get("based_on")) for name, node in _tables(raw, "materials")]
     for path, name in uses:
-        if isinstance(name, str) and name not in known:
-            allowed = f"define [materials.{name}] or name a built-in one (list materials shows them)"
-            yield path, Refusal(f"unknown material {name!r}", allowed, nearest(name, known))
+        if not isinstance(name, str) or not re.match(NAME_PATTERN, name):
+            continue  # the schema says so itself
+        if path == f"materials.{name}.based_on" and name not in library.names():
+            found = f"{name} is based on itself, and no built-in material is called so"
+            yield path, Refusal(found, "name another material")
+        elif name not in known:
+            yield path, unknown_material(name, known)
+
+
+def unknown_material(name: str, known: Iterable[str]) -> Refusal:
+    """The refusal of a material that nobody defines."""
+    allowed = f"define [materials.{name}] or name a built-in one, see mixsim list materials"
+    return Refusal(f"unknown material {name!r}", allowed, nearest(name, known))
 
 
 def _rule(raw: Mapping[str, Any]) -> Iterator[Finding]:

@@ -11,6 +11,7 @@ from pydantic import BaseModel
 from pydantic_core import PydanticCustomError, core_schema
 
 from mixsim.errors import Refusal
+from mixsim.recipe.syntax import as_toml
 from mixsim.units import Leaf, dimension_named, read
 
 if TYPE_CHECKING:
@@ -66,6 +67,12 @@ class Number:
         Refusal
             Where it is no such number or lies outside.
         """
+        dimension = dimension_named(self.dimension)
+        like = f"{dimension.said} is written like {dimension.example!r}"
+        if isinstance(written, float) and not math.isfinite(written):
+            raise Refusal(f"{as_toml(written)} is not a finite number", like)
+        if isinstance(written, bool) or not isinstance(written, str | int | float):
+            raise Refusal(f"{as_toml(written)} where a number is needed", like)
         number = read(written, self.dimension)
         if not self.holds(number.value):
             raise Refusal(f"{number.written!r} is out of range", f"must be {self.said()}")
@@ -90,6 +97,35 @@ class Number:
             return self.leaf(written)
         except Refusal as refusal:
             raise refused(refusal) from None
+
+
+class Ends:
+    """What a field takes that holds the two ends of a range: each is read once its path is known."""
+
+    def __get_pydantic_core_schema__(self, source: Any, handler: GetCoreSchemaHandler) -> CoreSchema:
+        return core_schema.no_info_plain_validator_function(self._validated)
+
+    def __get_pydantic_json_schema__(
+        self, schema: CoreSchema, handler: GetJsonSchemaHandler
+    ) -> JsonSchemaValue:
+        return {
+            "type": "array",
+            "items": {"type": ["string", "number"]},
+            "minItems": 2,
+            "maxItems": 2,
+            "description": "the two ends of the range, for example ['0 %', '30 %']",
+        }
+
+    def _validated(self, written: Any) -> Any:
+        like = "a range is a list of its two ends, such as ['0 %', '30 %']"
+        if isinstance(written, Mapping) and _single_list(written):
+            raise refused(Refusal("a path without quotes", 'its dots stand in quotes: "a.b.c" = [low, high]'))
+        if not isinstance(written, list) or len(written) != 2:
+            raise refused(Refusal(f"{as_toml(written)} where a range is needed", like))
+        for end in written:
+            if isinstance(end, bool) or not isinstance(end, str | int | float):
+                raise refused(Refusal(f"{as_toml(end)} as the end of a range", like))
+        return written
 
 
 def refused(refusal: Refusal) -> PydanticCustomError:
@@ -125,6 +161,12 @@ def ranges(node: Any, path: str = "") -> Iterator[tuple[str, Number]]:
 def join(path: str, name: str) -> str:
     """Path of a child."""
     return f"{path}.{name}" if path else name
+
+
+def _single_list(node: Any) -> bool:
+    while isinstance(node, Mapping) and len(node) == 1:
+        node = next(iter(node.values()))
+    return isinstance(node, list)
 
 
 def _children(node: Any) -> Iterator[tuple[str, Any]]:

@@ -8,18 +8,18 @@ from functools import cached_property
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
-import tomli
 from pydantic import ValidationError
 
 from mixsim.dispersion import Table
 from mixsim.errors import BadInput, Fault, Refusal
-from mixsim.recipe.agreement import disagreements, path_or_nearest
-from mixsim.recipe.completion import complete, tables
+from mixsim.recipe.agreement import OF_MIXTURE, disagreements, of_mixture, path_or_nearest
+from mixsim.recipe.completion import complete, once, tables
 from mixsim.recipe.consistency import contradictions
-from mixsim.recipe.faults import Finding, faults_of, findings_of
+from mixsim.recipe.faults import Finding, as_meant, faults_of, findings_of
 from mixsim.recipe.leaves import Number, ranges, walk
 from mixsim.recipe.schema import Schema
 from mixsim.recipe.settings import COMMAND_LINE, apply, parsed
+from mixsim.recipe.syntax import parsed_toml
 from mixsim.units import Leaf, show, written_unit
 
 if TYPE_CHECKING:
@@ -70,11 +70,14 @@ class Recipe:
         Raises
         ------
         BadInput
-            Where there is none, with the nearest path.
+            Where there is none, with the nearest path, or where the mixture does not depend on it.
         """
+        if path in self.leaves and not of_mixture(path):
+            found = f"{path} is no number of the mixture"
+            raise BadInput([Fault(COMMAND_LINE, option, found, OF_MIXTURE)])
         if path not in self.leaves:
             allowed = f"a path of a number in {self.file} (mixsim show {self.file} lists them)"
-            suggestion = path_or_nearest(path, self.leaves)
+            suggestion = path_or_nearest(path, [known for known in self.leaves if of_mixture(known)])
             raise BadInput([Fault(COMMAND_LINE, option, f"unknown path {path!r}", allowed, suggestion)])
         return self.leaves[path]
 
@@ -168,25 +171,22 @@ def parse(
 ) -> Recipe:
     """Read a recipe from TOML text; as `load`, with `folder` for the files that it names."""
     changed = dict(settings or {})
-    try:
-        raw = tomli.loads(text)
-    except tomli.TOMLDecodeError as error:
-        reason = getattr(error, "msg", str(error))
-        fault = Fault(file, "", f"TOML syntax: {reason}", "", line=getattr(error, "lineno", None))
-        raise BadInput([fault]) from None
-
+    raw = parsed_toml(text, file)
     findings: list[Finding] = []
     for path, value in changed.items():
-        findings += apply(raw, path, value)
+        findings += apply(raw, path, value, changed)
     findings += complete(raw)
-    findings += contradictions(raw)
     schema = None
     try:
         schema = Schema.model_validate(raw)
     except ValidationError as error:
         findings += findings_of(error, raw)
+    gaps = list(contradictions(raw))
+    if (meant := as_meant(raw, findings)) is not None:  # a word put right fills the gap that it leaves
+        real = {(path, refusal.found) for path, refusal in contradictions(meant)}
+        gaps = [(path, refusal) for path, refusal in gaps if (path, refusal.found) in real]
     spectra, wrong = tables(raw, folder or Path())
-    findings += wrong
+    findings = once([*findings, *gaps, *wrong], raw)
     if schema is None or findings:
         raise BadInput(faults_of(findings, file=file, text=text, settings=changed))
 

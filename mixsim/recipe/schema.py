@@ -12,7 +12,7 @@ from typing import TYPE_CHECKING, Annotated, Any, Literal
 from pydantic import BaseModel, ConfigDict, Field, create_model
 
 from mixsim.dispersion import INDEX_MODELS, TERMS, Parameter
-from mixsim.recipe.leaves import Number
+from mixsim.recipe.leaves import Ends, Number
 from mixsim.units import Leaf
 
 NAME_PATTERN = r"^[A-Za-z0-9_-]+$"
@@ -193,4 +193,4 @@ class Schema(Section):
     mixing: Mixing = Mixing()
     materials: dict[Name, Material] = {}
     measured: Measured | None = None
-    unknowns: dict[str, Annotated[list[str | float], Field(min_length=2, max_length=2)]] = {}
+    unknowns: dict[str, Annotated[list[str | float], Ends()]] = {}

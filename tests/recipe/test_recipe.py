@@ -36,6 +36,15 @@ def test_every_number_by_its_path_in_si() -> None:
     assert leaves["materials.ato.density"].value == 6600.0
     assert leaves["materials.acrylic.density"].written
     assert not [path for path in leaves if "acrylic" in path and "permittivity" in path]
+    assert not [path for path in leaves if "from_" in path]
+    density = leaves["materials.ato.density"]
+    assert (density.std, density.dimension) == (100.0, "density")
+    assert [path for path in leaves if path.startswith("materials.ato")] == [
+        "materials.ato.density",
+        "materials.ato.permittivity.susceptibility",
+        "materials.ato.permittivity.terms.carriers.plasma",
+        "materials.ato.permittivity.terms.carriers.damping",
+    ]
 
 
 @pytest.mark.parametrize("file", RECIPES, ids=lambda file: f"{file.parent.name}/{file.stem}")
@@ -70,14 +79,75 @@ def test_what_is_set_is_checked_and_replaces() -> None:
     assert item.leaves["materials.fused-silica.index.strengths.1"].value == 0.4079426
 
 
+def gold(text: str, settings: dict[str, str] | None = None) -> dict[str, float]:
+    """Numbers of a material that is based on gold, without the name of the material."""
+    recipe = parse(f'host.material = "g"\n[materials.g]\nbased_on = "gold"\n{text}', settings=settings)
+    return {path.removeprefix("materials.g."): leaf.value for path, leaf in recipe.leaves.items()}
+
+
+FREE = "permittivity.terms.free"
+
+
 def test_a_number_of_the_library_can_be_set() -> None:
-    recipe = parse(
-        'host.material = "gold"', settings={"materials.gold.permittivity.terms.free.damping": "0.1 eV"}
-    )
+    recipe = parse('host.material = "gold"', settings={f"materials.gold.{FREE}.damping": "0.1 eV"})
     plain = parse('host.material = "gold"')
     changed = {path for path, leaf in recipe.leaves.items() if leaf.value != plain.leaves[path].value}
-    assert changed == {"materials.gold.permittivity.terms.free.damping"}
+    assert changed == {f"materials.gold.{FREE}.damping"}
     assert recipe.digest != plain.digest
+    assert recipe.schema.materials["gold"].based_on == "gold"
+
+
+def test_a_material_of_the_library_can_be_set_in_other_words() -> None:
+    index = parse(
+        'host.material = "gold"', settings={"materials.gold.index": '{ model = "constant", n = 2 }'}
+    )
+    assert "materials.gold.index.n" in index.leaves
+    assert not [path for path in index.leaves if "permittivity" in path]
+    carriers = {
+        f"materials.gold.{FREE}.carrier_density": "5.9e22 cm^-3",
+        f"materials.gold.{FREE}.effective_mass": "1",
+    }
+    assert f"materials.gold.{FREE}.plasma" not in parse('host.material = "gold"', settings=carriers).leaves
+
+
+def test_an_item_of_an_inherited_list_can_be_set() -> None:
+    text = 'host.material = "g"\nmaterials.g.based_on = "fused-silica"\n'
+    plain, path = parse(text).leaves, "materials.g.index.strengths.1"
+    changed = parse(text, settings={path: "0.5"}).leaves
+    assert {p: leaf.value for p, leaf in changed.items() if leaf != plain[p]} == {path: 0.5}
+
+
+def test_tables_that_are_not_there_can_be_set() -> None:
+    grain = {"inclusions.more.material": "silver", "inclusions.more.volume_fraction": "1 %"}
+    more = parse(
+        TEXT,
+        settings={
+            **grain,
+            "voids.volume_fraction": "2 %",
+            "materials.m.index": '{ model = "constant", n = 1 }',
+        },
+    )
+    assert more.leaves["voids.volume_fraction"].value == 0.02
+    assert more.schema.inclusions["more"].material == "silver"
+    assert more.leaves["materials.m.index.n"].value == 1.0
+
+
+def test_a_range_to_find_can_be_set_by_its_path() -> None:
+    setting = {"unknowns.inclusions.ato.volume_fraction": '["0 %", "9 %"]'}
+    assert parse(TEXT, settings=setting).schema.unknowns == {"inclusions.ato.volume_fraction": ["0 %", "9 %"]}
+
+
+@pytest.mark.parametrize(
+    ("written", "value"),
+    [("2.5", 2.5), ('"2.5 ± 0.1"', 2.5), ("2.5 ± 0.1", 2.5), ("+/-", None)],
+)
+def test_what_is_set_is_toml_or_else_text(written: str, value: float | None) -> None:
+    path = "materials.ato.permittivity.susceptibility"
+    if value is None:
+        with pytest.raises(mixsim.BadInput):
+            parse(TEXT, settings={path: written})
+    else:
+        assert parse(TEXT, settings={path: written}).leaves[path].value == value
 
 
 def test_a_definition_of_the_same_name_replaces_or_is_based_on() -> None:
@@ -88,22 +158,40 @@ def test_a_definition_of_the_same_name_replaces_or_is_based_on() -> None:
     assert len([path for path in based.leaves if "terms" in path]) > 15
 
 
-def test_another_description_or_model_takes_nothing_over() -> None:
-    index = parse(
-        'host.material = "g"\n[materials.g]\nbased_on = "gold"\nindex = { model = "constant", n = 1.5 }\n'
-    )
-    assert not [path for path in index.leaves if "permittivity" in path]
-    assert index.leaves["materials.g.density"].value == 19300.0
-    term = parse(
-        'host.material = "g"\n[materials.g]\nbased_on = "gold"\n'
-        'permittivity.terms.free = { model = "debye", step = 1.0, relaxation_time = "1 ps" }\n'
-    )
-    free = {path.rsplit(".", 1)[1] for path in term.leaves if ".free." in path}
-    assert free == {"step", "relaxation_time"}
-    level = parse(
-        'host.material = "g"\n[materials.g]\nbased_on = "gold"\npermittivity = { susceptibility = 8.0 }\n'
-    )
-    assert "materials.g.permittivity.infinity" not in level.leaves
+def test_a_change_of_one_number_keeps_the_rest() -> None:
+    plain, changed = gold(""), gold(f"{FREE}.damping = '0.1 eV'\ndensity = '19 g/cm^3'")
+    assert plain.keys() == changed.keys()
+    assert {path for path in plain if plain[path] != changed[path]} == {f"{FREE}.damping", "density"}
+
+
+def test_another_description_drops_the_inherited_one() -> None:
+    index = gold('index = { model = "constant", n = 1.5 }')
+    assert not [path for path in index if path.startswith("permittivity")]
+    assert index["density"] == 19300.0
+
+
+def test_another_model_takes_nothing_over() -> None:
+    changed = gold(f'{FREE} = {{ model = "debye", step = 1.0, relaxation_time = "1 ps" }}')
+    assert {path for path in changed if path.startswith(FREE)} == {f"{FREE}.step", f"{FREE}.relaxation_time"}
+
+
+def test_the_level_in_other_words_keeps_the_terms() -> None:
+    changed, plain = gold("permittivity.susceptibility = 8.0"), gold("")
+    assert changed.keys() ^ plain.keys() == {"permittivity.infinity", "permittivity.susceptibility"}
+
+
+def test_a_term_in_other_words_drops_only_what_they_replace() -> None:
+    changed = gold(f"{FREE} = {{ carrier_density = '5.9e22 cm^-3', effective_mass = 1.0 }}")
+    own = {path.rsplit(".", 1)[1] for path in changed if path.startswith(f"{FREE}.")}
+    assert own == {"carrier_density", "effective_mass", "damping"}
+    assert changed["permittivity.terms.band1.plasma"] == gold("")["permittivity.terms.band1.plasma"]
+
+
+def test_a_base_may_have_a_base() -> None:
+    text = 'host.material = "c"\nmaterials.c.based_on = "b"\n[materials.b]\nbased_on = "gold"\n'
+    leaves = parse(text + 'density = "1 g/cm^3"\n').leaves
+    assert leaves["materials.c.density"].value == 1000.0
+    assert "materials.c.permittivity.terms.free.plasma" in leaves
 
 
 def test_tables_lie_beside_the_recipe(tmp_path: Path) -> None:
@@ -119,6 +207,9 @@ def test_numbers_of_options_are_held_to_dimension_and_range() -> None:
     recipe = parse(TEXT)
     path = "materials.ato.permittivity.terms.carriers.plasma"
     assert recipe.read(path, "800 nm", option="--vary").dimension == "spectral"
+    for path_, found in (("band.from", "no number of the mixture"), ("ato.density", "unknown path")):
+        with pytest.raises(mixsim.BadInput, match=found):
+            recipe.read(path_, "500 nm", option="--vary")
     for written, found in (("2", "2"), ("-1 eV", "out of range"), ("3 kg", "kg")):
         with pytest.raises(mixsim.BadInput) as refused:
             recipe.read(path, written, option="--vary")
