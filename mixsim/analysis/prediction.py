@@ -13,6 +13,7 @@ from mixsim.analysis.band import Axis, Varied, axis_of, through
 from mixsim.analysis.caution import Caution
 from mixsim.analysis.cautions import cautions
 from mixsim.analysis.plain import complex_parts, plain, provenance
+from mixsim.analysis.pushed import Pushed, pushed
 from mixsim.errors import BadInput, Fault, Refusal
 from mixsim.mixture import Composition, Limits, Mixture, Response
 from mixsim.observables import QUANTITIES
@@ -49,6 +50,8 @@ class Prediction:
         Whether any constituent has a permeability other than one.
     vary
         Leaves that vary, one leading axis each; none in a plain prediction.
+    pushed
+        Uncertainty from the ± of the recipe; None in a sweep, or where it states none.
     """
 
     recipe: Recipe
@@ -61,6 +64,7 @@ class Prediction:
     warnings: tuple[Caution, ...]
     magnetic: bool
     vary: tuple[Varied, ...] = ()
+    pushed: Pushed | None = None
 
     @property
     def omega(self) -> Any:
@@ -105,6 +109,14 @@ class Prediction:
             "static_permeability": complex_parts(limits.static_permeability),
             "high_frequency_permeability": complex_parts(limits.high_frequency_permeability),
             "dc": {"conductivity_s_per_m": plain(limits.conductivity), "plateau": plain(limits.plateau)},
+            "standard_uncertainty": None
+            if self.pushed is None
+            else {
+                "permittivity": {"real": plain(self.pushed.real), "imag": plain(self.pushed.imag)},
+                "static": plain(self.pushed.static),
+                "high_frequency": plain(self.pushed.high_frequency),
+                "from": list(self.pushed.paths),
+            },
             "composition": {
                 "volume_fraction": {n: plain(f) for n, f in composition.volume_fractions.items()},
                 "weight_fraction": None
@@ -214,7 +226,10 @@ def _evaluated(recipe: Recipe, vary: tuple[Varied, ...]) -> Prediction:
     limits = mixture.limits(values)
     said = cautions(recipe, mixture, axis, response, limits, composition, constituents)
     rule, magnetic = mixture.rule.name, mixture.magnetic
-    return Prediction(recipe, rule, axis, response, limits, composition, constituents, said, magnetic, vary)
+    unsure = None if vary else pushed(recipe, mixture, axis.omega)
+    return Prediction(
+        recipe, rule, axis, response, limits, composition, constituents, said, magnetic, vary, unsure
+    )
 
 
 def _room(mixture: Mixture, composition: Composition, vary: tuple[Varied, ...]) -> None:

@@ -9,7 +9,8 @@ from typing import Annotated
 import typer
 
 from mixsim.cli.status import SEPARATOR
-from mixsim.errors import BadInput, Fault
+from mixsim.errors import BadInput, Fault, Refusal
+from mixsim.mixing import rule_named
 from mixsim.recipe import COMMAND_LINE, Recipe, load, settings_of
 
 RecipeFile = Annotated[Path, typer.Argument(metavar="RECIPE", help="The recipe, a TOML file.")]
@@ -17,7 +18,7 @@ Set = Annotated[
     list[str] | None,
     typer.Option("--set", metavar="PATH=VALUE", help="Change a key for this run; may be repeated."),
 ]
-RuleName = Annotated[str, typer.Option("--rule", metavar="NAME", help="Use this mixing rule.")]
+RuleName = Annotated[str | None, typer.Option("--rule", metavar="NAME", help="Use this mixing rule.")]
 Json = Annotated[bool, typer.Option("--json", help="Put one JSON document on standard output.")]
 Out = Annotated[
     list[str] | None,
@@ -30,12 +31,27 @@ Out = Annotated[
 Strict = Annotated[bool, typer.Option("--strict", help="Take cautions as errors.")]
 
 
-def recipe_from(file: Path, settings: Sequence[str] | None, rule: str) -> Recipe:
+def recipe_from(file: Path, settings: Sequence[str] | None, rule: str | None) -> Recipe:
     """The recipe with what the command line changes."""
+    return load(file, changed_by(settings, rule))
+
+
+def changed_by(settings: Sequence[str] | None, rule: str | None) -> dict[str, str]:
+    """What the command line changes in a recipe, path → value.
+
+    Raises
+    ------
+    BadInput
+        Where a setting is malformed, or there is no such rule.
+    """
     changed = settings_of(settings or ())
-    if rule:
-        changed["mixing.rule"] = rule
-    return load(file, changed)
+    if rule is not None:
+        try:
+            changed["mixing.rule"] = rule_named(rule).name
+        except Refusal as refusal:
+            fault = Fault(COMMAND_LINE, "--rule", refusal.found, refusal.allowed, refusal.suggestion)
+            raise BadInput([fault]) from None
+    return changed
 
 
 def words(option: str, text: str, names: str) -> list[str]:

@@ -8,10 +8,10 @@ from typing import TYPE_CHECKING, Annotated
 
 import typer
 
-from mixsim.cli.options import Json, Out, RecipeFile, RuleName, Set, Strict, recipe_from, words
+from mixsim.cli.options import Json, Out, RecipeFile, RuleName, Set, Strict, changed_by, recipe_from, words
 from mixsim.cli.status import ANSWERED, NO, UNDECIDED
 from mixsim.errors import BadInput, Fault, Refusal
-from mixsim.recipe import COMMAND_LINE, settings_of
+from mixsim.recipe import COMMAND_LINE
 from mixsim.units import Leaf, read
 
 POINTS = "POINTS is a whole number, at least 2"
@@ -23,7 +23,7 @@ if TYPE_CHECKING:
 def predict(
     recipe: RecipeFile,
     settings: Set = None,
-    rule: RuleName = "",
+    rule: RuleName = None,
     json: Json = False,
     out: Out = None,
     strict: Strict = False,
@@ -47,7 +47,7 @@ def sweep(
     ] = None,
     log: Annotated[bool, typer.Option("--log", help="Space the values by a constant ratio.")] = False,
     settings: Set = None,
-    rule: RuleName = "",
+    rule: RuleName = None,
     json: Json = False,
     out: Out = None,
     strict: Strict = False,
@@ -83,7 +83,7 @@ def invert(
     ] = None,
     seed: Annotated[str, typer.Option("--seed", metavar="NUMBER", help="Of the Monte Carlo.")] = "0",
     settings: Set = None,
-    rule: RuleName = "",
+    rule: RuleName = None,
     json: Json = False,
     out: Out = None,
     strict: Strict = False,
@@ -112,7 +112,7 @@ def invert(
 def audit(
     recipe: RecipeFile,
     settings: Set = None,
-    rule: RuleName = "",
+    rule: RuleName = None,
     json: Json = False,
     strict: Strict = False,
 ) -> int:
@@ -122,8 +122,7 @@ def audit(
     """
     from mixsim.analysis import audit as ask
 
-    changed = settings_of(settings or ()) | ({"mixing.rule": rule} if rule else {})
-    answer = ask(recipe, changed)
+    answer = ask(recipe, changed_by(settings, rule))
     _print(answer, "audit", json=json)
     return ANSWERED if answer.passed and not (strict and answer.warnings) else NO
 
@@ -162,7 +161,7 @@ def _deliver(
     if out:
         from mixsim.present.files import write
 
-        for name in out:
+        for name in dict.fromkeys(out):
             write(answer, name)
             print(f"mixsim: wrote {name}", file=sys.stderr)
     _print(answer, table, json=json)

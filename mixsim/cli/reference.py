@@ -44,11 +44,16 @@ def draft(
 
 
 def list_(
-    kind: Annotated[str, typer.Argument(metavar="KIND", help="rules, models, materials or quantities.")],
+    kind: Annotated[
+        str, typer.Argument(metavar="KIND", help="rules, models, materials or quantities; without it, these.")
+    ] = "",
 ) -> int:
     """What there is: rules, models, materials or quantities."""
     from mixsim.present.columns import described
 
+    if not kind:
+        print("\n".join(KINDS))
+        return ANSWERED
     if kind not in KINDS:
         fault = Fault(COMMAND_LINE, "list", repr(kind), f"one of {', '.join(KINDS)}", nearest(kind, KINDS))
         raise BadInput([fault])

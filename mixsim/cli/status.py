@@ -65,6 +65,9 @@ class Program(TyperGroup):
             # nothing more to say, and nothing to flush at exit
             os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
             code = ANSWERED
+        except OSError as error:
+            code = _complain(f"standard output: {(error.strerror or str(error)).lower()}")
+            os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
         except Exception as error:
             if os.environ.get(TRACEBACK):
                 traceback.print_exc()

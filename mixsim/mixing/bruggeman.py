@@ -142,6 +142,9 @@ def _closed_form(e1: Array, e2: Array, f1: Array, f2: Array, d: int) -> Array:
     np.abs(side, out=side)
     if not (side.min() > least and side.max() < most):
         _mend(z, side, e1, e2, f1, f2, d)
+    # no root of passive phases lies below the lower of their losses: what does is rounding
+    lowest = np.minimum(e1.imag, e2.imag)
+    np.maximum(z.imag, lowest, out=z.imag, where=lowest >= 0.0)
     return z
 
 

@@ -79,10 +79,12 @@ def _one_kind(
     apart, filled = np.asarray(f_host, dtype=float), np.asarray(f_grain, dtype=float)
     share = factor * apart
     upper = apart - share  # (1 − f)(1 − N), the weight of the host above the line
-    mixture: Array = outside * (
-        ((filled + share) * inside + upper * outside) / (share * inside + (filled + upper) * outside)
+    mixture = np.asarray(
+        outside
+        * (((filled + share) * inside + upper * outside) / (share * inside + (filled + upper) * outside))
     )
-    return mixture
+    mixture.imag += 0.0  # division leaves -0.0 where nothing is lost and ε′ < 0
+    return mixture[()]
 
 
 def polarised_mean(
@@ -127,7 +129,9 @@ def polarised_mean(
         weight = np.asarray(fraction, dtype=float) * weight
         above = above + weight * inside
         below = below + weight
-    return above / below
+    mixture = np.asarray(above / below)
+    mixture.imag += 0.0  # division leaves -0.0 where nothing is lost and ε′ < 0
+    return mixture[()]
 
 
 def fraction_from(mixture: ArrayLike, *, host: ArrayLike, inclusion: ArrayLike) -> Array:

@@ -120,17 +120,23 @@ class Mixture:
         permittivity = np.empty(shape, dtype=complex)
         magnetic = self.magnetic
         permeability = np.empty(shape, dtype=complex) if magnetic else np.broadcast_to(1.0 + 0.0j, shape)
+        # a loss-free resonance is not finite: the answer says so, not numpy
+        with np.errstate(all="ignore"):
+            self._fill(axes, axis, permittivity, permeability if magnetic else None)
+        return Response(permittivity, permeability)
+
+    def _fill(self, axes: Axes, axis: Array, permittivity: Array, permeability: Array | None) -> None:
+        """Evaluate block by block into arrays of the whole answer."""
         for window, rows in blocks(axes.shape, axis.size):
             here = axis[window]
             electric_fixed = self._fixed("permittivity", axes, here)
-            magnetic_fixed = self._fixed("permeability", axes, here) if magnetic else {}
+            magnetic_fixed = {} if permeability is None else self._fixed("permeability", axes, here)
             for row in rows:
                 x, place = axes.values(row), (*row, window)
                 composed = self._composed(x)
                 permittivity[place] = self._mixed("permittivity", x, here, composed, electric_fixed)
-                if magnetic:
+                if permeability is not None:
                     permeability[place] = self._mixed("permeability", x, here, composed, magnetic_fixed)
-        return Response(permittivity, permeability)
 
     def limits(self, values: Mapping[str, ArrayLike]) -> Limits:
         """Exact static and high-frequency limits of the mixture, conductors included.

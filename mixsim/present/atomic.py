@@ -24,6 +24,8 @@ def check_place(file: Path, suffixes: tuple[str, ...]) -> None:
     BadInput
         Naming the file and what is allowed.
     """
+    if not file.name:
+        raise refuse(file, "it names no file", "name a file")
     suffix = file.suffix.lower()
     if suffix not in suffixes:
         found = f"suffix {file.suffix!r}" if file.suffix else "no suffix"

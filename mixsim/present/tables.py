@@ -16,6 +16,7 @@ if TYPE_CHECKING:
 ROWS = 9  # of a spectrum
 MOST_ROWS = 40  # of a sweep
 NONE = "–"
+NOISE = 1e-12  # share of |ε| below which a loss is rounding
 VERDICTS = {
     "answered": "answered",
     "impossible": "impossible: no value in the ranges gives this reading",
@@ -73,6 +74,8 @@ def inversion(answer: Inversion) -> str:
     if (check := answer.monte_carlo) is not None:
         word = "confirms" if check.agrees else "does not confirm"
         said.append(f"a Monte Carlo of {check.draws} draws (seed {check.seed}) {word} the ±")
+    if answer.pushed:
+        said.append(paragraph(f"the ± holds that of the readings and of {', '.join(answer.pushed)}"))
     parts += ["\n".join(said)] if said else []
     parts += _residuals(answer)
     if answer.family is not None:
@@ -105,7 +108,7 @@ def _composition(answer: Prediction) -> str:
     rows = []
     for name, volume in composition.volume_fractions.items():
         weights = composition.weight_fractions
-        weight = NONE if weights is None else f"{100 * float(weights[name]):.4g} %"
+        weight = NONE if weights is None or np.isnan(weights[name]) else f"{100 * weights[name]:.4g} %"
         rows.append([name, materials.get(name, "vacuum"), f"{100 * float(volume):.4g} %", weight])
     lines = [table(["", "material", "volume", "weight"], rows, left=2)]
     if composition.density is not None:
@@ -116,10 +119,13 @@ def _composition(answer: Prediction) -> str:
 
 
 def _limits(answer: Prediction) -> str:
-    limits = answer.limits
+    limits, unsure = answer.limits, answer.pushed
     rows = [
-        ["static permittivity", _axes(limits.static)],
-        ["high-frequency permittivity", _axes(limits.high_frequency)],
+        ["static permittivity", _axes(limits.static, None if unsure is None else unsure.static)],
+        [
+            "high-frequency permittivity",
+            _axes(limits.high_frequency, None if unsure is None else unsure.high_frequency),
+        ],
     ]
     if answer.magnetic:
         rows.append(["static permeability", _axes(limits.static_permeability)])
@@ -127,7 +133,10 @@ def _limits(answer: Prediction) -> str:
     if np.any(limits.conductivity > 0.0):
         rows.append(["conductivity at dc", f"{_axes(limits.conductivity)} S/m"])
         rows.append(["level beside it", _axes(limits.plateau)])
-    return table(["", ""], rows, left=2)
+    shown = table(["", ""], rows, left=2)
+    if unsure is not None:
+        shown += "\n" + paragraph(f"± is one standard uncertainty, from that of {', '.join(unsure.paths)}")
+    return shown
 
 
 def _spectrum(answer: Prediction) -> str:
@@ -135,9 +144,10 @@ def _spectrum(answer: Prediction) -> str:
     e, m = answer.permittivity, answer.permeability
     columns: list[tuple[str, Any]] = []
     if e.ndim == 2:
+        n, k = answer.quantity("index"), answer.quantity("extinction")
         for label, axis in (("⊥", 0), ("∥", 2)):
-            n = answer.quantity("index")[axis]
-            columns += [(f"ε′ {label}", e[axis].real), (f"ε″ {label}", e[axis].imag), (f"n {label}", n)]
+            columns += [(f"ε′ {label}", e[axis].real), (f"ε″ {label}", e[axis].imag)]
+            columns += [(f"n {label}", n[axis]), (f"k {label}", k[axis])]
     else:
         columns = [("ε′", e.real), ("ε″", e.imag)]
         if answer.magnetic:
@@ -151,7 +161,7 @@ def _spectrum(answer: Prediction) -> str:
     loss = _first_axis(e).imag
     peak = int(np.argmax(loss))
     chosen = set(_chosen(len(answer.omega), ROWS))
-    marked = loss[peak] > 0.0 and len(answer.omega) > 1
+    marked = loss[peak] > NOISE * abs(_first_axis(e)[peak]) and len(answer.omega) > 1
     if marked:
         chosen.add(peak)
     rows = []
@@ -164,6 +174,9 @@ def _spectrum(answer: Prediction) -> str:
 
 def _estimate(answer: Inversion, estimate: Estimate) -> str:
     interval = "" if estimate.interval is None else _interval(answer, estimate.path, estimate.interval)
+    if estimate.value is None and answer.solutions:
+        values = (answer.recipe.show(estimate.path, found[estimate.path]) for found in answer.solutions)
+        return f"either {' or '.join(values)}"
     if estimate.value is None:
         return f"allowed are {interval}" if interval else "no estimate"
     said = [answer.recipe.show(estimate.path, estimate.value, estimate.std)]
@@ -241,11 +254,14 @@ def _first(value: Any) -> Any:
     return value[0] if np.ndim(value) else value
 
 
-def _axes(value: Any) -> str:
-    """A level, or one for each principal axis."""
-    if np.ndim(value) == 0:
+def _axes(value: Any, std: Any = None) -> str:
+    """A level, or one for each principal axis, with its uncertainty where there is one."""
+    if np.ndim(value):
+        parts = [_axes(value[axis], None if std is None else std[axis]) for axis in (0, 2)]
+        return f"{parts[0]} ⊥, {parts[1]} ∥"
+    if std is None or not std > 0.0 or np.isnan(value):
         return _number(value, digits=6)
-    return f"{_number(value[0], digits=6)} ⊥, {_number(value[2], digits=6)} ∥"
+    return show(float(np.real(value)), "number", std=float(std))
 
 
 def _number(value: Any, *, digits: int = 4) -> str:
@@ -254,7 +270,7 @@ def _number(value: Any, *, digits: int = 4) -> str:
         if value.imag != 0.0 and not np.isnan(value):
             return f"{value.real:.{digits}g} + {value.imag:.{digits}g}i"
         value = value.real
-    return NONE if np.isnan(value) else f"{float(value):.{digits}g}"
+    return NONE if np.isnan(value) else f"{float(value) + 0.0:.{digits}g}"
 
 
 def _stacked(path: str, unit: str) -> str:

@@ -251,8 +251,49 @@ def test_two_readings_and_one_unknown_are_weighed() -> None:
 
 
 def test_readings_that_contradict_each_other_are_said_to() -> None:
-    answer = ask(LATTICE, (LOADING, "0 %", "40 %"), static="2.8 ± 0.002", high="2.4 ± 0.002")
-    assert [caution.kind for caution in answer.warnings] == ["readings-disagree"]
+    free = (LOADING, "0 %", "40 %")
+    apart = ask(LATTICE, free, static="2.8 ± 0.002", high="2.4 ± 0.002")
+    assert apart.verdict == "impossible"
+    assert apart.estimates[LOADING].value is None
+    assert "meets both readings" in apart.reasons[0]
+    assert len(apart.residuals) == 2
+    near = ask(LATTICE, free, static="2.86 ± 0.02", high="2.305 ± 0.005")
+    assert near.verdict == "answered"
+    assert [caution.kind for caution in near.warnings] == ["readings-disagree"]
+    unsure = ask(LATTICE, free, static="2.8", high="2.4")
+    assert [caution.kind for caution in unsure.warnings] == ["readings-disagree"]
+    assert "state ±" in unsure.warnings[0].message
+
+
+def test_what_the_recipe_is_unsure_of_is_in_the_answer() -> None:
+    """ε_h with a ± of its own: naive propagation of both, by differences of the closed form."""
+    text = LATTICE.replace("infinity = 2.1", 'infinity = "2.1 ± 0.03"')
+    answer = ask(text, (LOADING, "0 %", "40 %"), static="3.0 ± 0.01")
+    plain = ask(LATTICE, (LOADING, "0 %", "40 %"), static="3.0 ± 0.01")
+    assert answer.pushed == ("materials.matrix.permittivity.infinity",)
+    assert plain.pushed == ()
+    moved = [
+        ask(LATTICE.replace("infinity = 2.1", f"infinity = {level}"), (LOADING, "0 %", "40 %"), static="3.0")
+        for level in (2.13, 2.07)
+    ]
+    half = 0.5 * (moved[0].estimates[LOADING].value - moved[1].estimates[LOADING].value)  # type: ignore[operator]
+    alone = plain.estimates[LOADING].std
+    assert alone is not None
+    assert answer.estimates[LOADING].std == pytest.approx(np.hypot(alone, half), rel=1e-3)
+    assert answer.monte_carlo is not None
+    assert answer.monte_carlo.agrees
+
+
+def test_the_static_level_rises_without_end_towards_percolation() -> None:
+    """f = (1 − ε_h/ε)/3, however near the threshold; by weight, so that the search has to find it."""
+    text = bruggeman(METAL.replace('volume_fraction = "10 %"', 'weight_fraction = "10 %"'))
+    path = "inclusions.grain.weight_fraction"
+    for level in (50.0, 3e4, 1e6):
+        answer = ask(text, (path, "0 %", "90 %"), static=level)
+        f = (1 - 2.5 / level) / 3
+        assert answer.estimates[path].value == pytest.approx(5 * f / (5 * f + 1.2 * (1 - f)), rel=1e-6)
+    low = ask(text, (path, "0 %", "90 %"), static=1.2)
+    assert "rises from 2.5 without end" in low.reasons[0]
 
 
 def test_one_reading_leaves_a_curve_of_two_unknowns() -> None:
@@ -337,6 +378,7 @@ def test_several_answers_are_all_given() -> None:
     assert found[1] == pytest.approx(3.0, rel=1e-6)
     narrow = ask(text, (path, 1, 10), static=f"{static!r} ± 0.002")
     assert narrow.estimates[path].value == pytest.approx(3.0, rel=1e-6)
+    assert answer.estimates[path].interval is None
 
 
 def test_impossible_because_no_loading_of_these_phases_gives_it() -> None:

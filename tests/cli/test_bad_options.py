@@ -28,7 +28,7 @@ CASES: dict[str, tuple[list[str], list[str]]] = {
     "set of an unknown key": ([*PREDICT, "--set", "mixing.role=3"], ["mixing.role", "mean 'rule'"]),
     "set out of range": ([*PREDICT, "--set", f"{LOADING}=140%"], ["command line", LOADING, "'140%'", "at most 1"]),
     "set in a wrong unit": ([*PREDICT, "--set", "band.from=3kg"], ["band.from", "'kg'", "GHz"]),
-    "unknown rule": ([*PREDICT, "--rule", "brugeman"], ["mixing.rule", "'brugeman'", "did you mean 'bruggeman'"]),
+    "unknown rule": ([*PREDICT, "--rule", "brugeman"], ["--rule", "'brugeman'", "did you mean 'bruggeman'"]),
     "nothing varies": (SWEEP, ["--vary", "nothing varies", "PATH FROM TO POINTS"]),
     "three words": ([*SWEEP, "--vary", LOADING, "0%", "9%"], ["--vary", "PATH FROM TO POINTS"]),
     "unknown path": ([*SWEEP, "--vary", "inclusions.filer.volume_fraction", "0%", "9%", "3"], ["--vary", LOADING]),
@@ -99,7 +99,7 @@ def test_there_are_enough_of_them() -> None:
 
 
 def test_every_fault_of_a_recipe_on_a_line_of_its_own(run: Run) -> None:
-    result = run(*PREDICT, "--set", "band.from=3kg", "--set", f"{LOADING}=9", "--rule", "x")
+    result = run(*PREDICT, "--set", "band.from=3kg", "--set", f"{LOADING}=9", "--set", "mixing.rule=x")
     assert result.exit_code == 2
     assert len(result.stderr.splitlines()) == 3
 

@@ -184,6 +184,8 @@ class Inversion:
         Cautions.
     seed
         Of the Monte Carlo.
+    pushed
+        Numbers of the recipe whose ± is in the uncertainties, beside that of the readings.
     """
 
     recipe: Recipe
@@ -202,6 +204,7 @@ class Inversion:
     method: str
     warnings: tuple[Caution, ...]
     seed: int
+    pushed: tuple[str, ...] = ()
 
     @property
     def identifiable(self) -> bool:
@@ -256,6 +259,7 @@ class Inversion:
                 "agrees": check.agrees,
             },
             "method": self.method,
+            "uncertainty_from": ["readings", *self.pushed],
             "warnings": [caution.to_dict() for caution in self.warnings],
             "provenance": provenance(self.recipe, self.seed),
         }

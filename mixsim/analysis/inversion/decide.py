@@ -12,7 +12,7 @@ from mixsim.analysis.inversion import explain
 from mixsim.analysis.inversion.answer import Reading, Unknown, Verdict
 from mixsim.analysis.inversion.closed_form import closed_form
 from mixsim.analysis.inversion.model import ReadingModel, grid
-from mixsim.analysis.inversion.solver import crossings, least_squares, valleys
+from mixsim.analysis.inversion.solver import crossings, least_squares, towards_edges, valleys
 from mixsim.mixture import Mixture
 from mixsim.recipe import Recipe
 
@@ -22,6 +22,7 @@ _POINTS = {1: 2001, 2: 161}  # of the scan, for each number of unknowns
 _BLIND = 1e-9  # share of a reading below which it does not depend on an unknown
 _EXACT = 1e-7  # share of a reading to which a fit must meet it where no uncertainty is stated
 _REACH = 2.0  # standard uncertainties by which a reading may lie out of reach
+_CONTRADICTION = 5.0  # … or two readings apart from what one unknown can give
 _EDGE = 1e-6  # of a scaled range: nearer than that to its end, a fit is held there
 _NORMAL = 1.959964  # half-width of 95 % of a normal distribution
 
@@ -68,6 +69,8 @@ def solve(
     model = ReadingModel(mixture, unknowns, readings)
     places = grid(len(unknowns), _POINTS[len(unknowns)])
     surface = model(places)
+    if len(unknowns) == 1:
+        places, surface = towards_edges(model, places, surface)
     everywhere = tuple((0.0, 1.0) for _ in unknowns)
     if not np.isfinite(surface).any():
         reason = "the mixture conducts over the whole range, so that there is no static level to read"
@@ -133,6 +136,8 @@ def _partly_blind(recipe: Recipe, model: ReadingModel, seen: NDArray[np.bool_]) 
 
 def _out_of_reach(level: Floats, reading: Reading) -> bool:
     low, high = float(np.nanmin(level)), float(np.nanmax(level))
+    if level.ndim > 1 and np.isnan(level).any():
+        high = np.inf  # towards a percolation threshold it rises without end, between the points of a scan
     room = _REACH * reading.std if reading.std else _EXACT * abs(reading.value)
     return reading.value < low - room or reading.value > high + room
 
@@ -187,6 +192,8 @@ def _fitted(
         every = np.vstack([fitting.reshape(-1, len(best)), best])
         spans = tuple((float(low), float(high)) for low, high in zip(every.min(0), every.max(0), strict=True))
         return Solution("answered", best, allowed=spans, held=True)
+    if not exact and all(reading.std for reading in model.readings) and least > _CONTRADICTION**2:
+        return Solution("impossible", best, explain.contradiction(model, best))
     return Solution("answered", best)
 
 

@@ -1,4 +1,4 @@
-"""Uncertainty of a solution: first order, and a Monte Carlo beside it."""
+"""Uncertainty of a solution, from the ± of readings and recipe: first order, and a Monte Carlo beside it."""
 
 from __future__ import annotations
 
@@ -11,6 +11,8 @@ from mixsim.analysis.inversion.answer import MonteCarlo
 from mixsim.analysis.inversion.decide import Solution
 from mixsim.analysis.inversion.model import ReadingModel
 from mixsim.analysis.inversion.solver import covariance, gauss_newton, jacobian
+from mixsim.analysis.pushed import stated
+from mixsim.recipe import Recipe
 
 Floats = NDArray[np.float64]
 
@@ -34,6 +36,8 @@ class Doubt:
         Why the readings do not narrow an unknown, or empty.
     note
         Why there is no uncertainty, or empty.
+    pushed
+        Numbers of the recipe whose ± is in it.
     """
 
     std: Floats | None
@@ -41,17 +45,18 @@ class Doubt:
     monte_carlo: MonteCarlo | None
     weak: str
     note: str
+    pushed: tuple[str, ...] = ()
 
 
-def doubt_of(model: ReadingModel, solution: Solution, seed: int) -> Doubt:
+def doubt_of(recipe: Recipe, model: ReadingModel, solution: Solution, seed: int) -> Doubt:
     """First-order uncertainties of a solution and their check by Monte Carlo."""
-    if solution.place is None:
+    if solution.place is None or solution.verdict == "impossible":
         return Doubt(None, None, None, "", "")
     known = solution.known or (True,) * len(model.unknowns)
     if not all(known):
         index = int(np.argmax(known))
         alone = ReadingModel(model.mixture, [model.unknowns[index]], model.readings)
-        part = doubt_of(alone, replace(solution, place=solution.place[[index]], known=()), seed)
+        part = doubt_of(recipe, alone, replace(solution, place=solution.place[[index]], known=()), seed)
         if part.std is None:
             return part
         std = np.full(len(known), np.nan)
@@ -64,7 +69,9 @@ def doubt_of(model: ReadingModel, solution: Solution, seed: int) -> Doubt:
         note = f"no ± stated with {' and '.join(lacking)}"
         return Doubt(None, None, None, "", note)
     stds = np.array([reading.std for reading in model.readings], dtype=float)
-    cov = covariance(jacobian(model, solution.place), stds)
+    numbers, effects = _numbers(recipe, model, solution.place)
+    spread = np.diag(stds**2) + effects @ effects.T
+    cov = covariance(jacobian(model, solution.place), stds, spread)
     if cov is None:
         return Doubt(None, None, None, "the readings change too little to tell the unknowns apart", "")
     scaled = np.sqrt(np.diag(cov))
@@ -73,16 +80,46 @@ def doubt_of(model: ReadingModel, solution: Solution, seed: int) -> Doubt:
         if scaled[i] > _UNIFORM:
             weak = f"the readings narrow {unknown.path} no further than the range that was given"
     std = scaled * model.slopes(solution.place)
-    return Doubt(
-        std, cov / np.outer(scaled, scaled), _monte_carlo(model, solution.place, stds, std, seed), weak, ""
-    )
+    check = _monte_carlo(recipe, model, solution.place, stds, std, numbers, seed)
+    return Doubt(std, cov / np.outer(scaled, scaled), check, weak, "", tuple(numbers))
 
 
-def _monte_carlo(model: ReadingModel, place: Floats, stds: Floats, std: Floats, seed: int) -> MonteCarlo:
+def _numbers(recipe: Recipe, model: ReadingModel, place: Floats) -> tuple[dict[str, float], Floats]:
+    """Numbers of the recipe with a ± that the readings feel, and what one ± of each does to the readings."""
+    free = {unknown.path for unknown in model.unknowns}
+    found: dict[str, float] = {}
+    effects = []
+    for path, std in stated(recipe).items():
+        if path in free:
+            continue
+        value = recipe.leaves[path].value
+        ends = [model.with_others({path: np.asarray(value + side * std)})(place) for side in (1.0, -1.0)]
+        effect = 0.5 * (ends[0] - ends[1])
+        if np.isfinite(effect).all() and effect.any():
+            found[path] = std
+            effects.append(effect)
+    return found, np.array(effects).T.reshape(len(model.readings), len(found))
+
+
+def _monte_carlo(
+    recipe: Recipe,
+    model: ReadingModel,
+    place: Floats,
+    stds: Floats,
+    std: Floats,
+    numbers: dict[str, float],
+    seed: int,
+) -> MonteCarlo:
     random = np.random.default_rng(seed)
     centre = np.array([reading.value for reading in model.readings])
     targets = centre + stds * random.standard_normal((_DRAWS, len(stds)))
-    places, inside = gauss_newton(model, targets, 1.0 / stds, place)
+    others = {}
+    for path, spread in numbers.items():
+        allowed = recipe.ranges[path]
+        drawn = recipe.leaves[path].value + spread * random.standard_normal(_DRAWS)
+        least = np.nextafter(allowed.minimum, np.inf) if allowed.exclusive else allowed.minimum
+        others[path] = np.clip(drawn, least, allowed.maximum)
+    places, inside = gauss_newton(model.with_others(others), targets, 1.0 / stds, place)
     values = model.values(places)
     ends = np.percentile(values, [2.5, 97.5], axis=0)
     spread = values.std(axis=0, ddof=1)

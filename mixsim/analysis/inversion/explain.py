@@ -17,14 +17,25 @@ from mixsim.recipe import Recipe
 
 Floats = NDArray[np.float64]
 
-TOO_HIGH = (
-    "usual causes of a high reading: moisture, ions or electrode polarisation at the frequency read; "
-    "more filler than thought; grains that touch; stray capacitance; a thickness taken too large"
-)
-TOO_LOW = (
-    "usual causes of a low reading: voids, or air under an electrode; less filler than thought, or settled; "
-    "a loading in weight read as one in volume; a thickness taken too small"
-)
+CAUSES = {
+    ("static", True): (
+        "usual causes of a high reading: moisture, ions or electrode polarisation at the frequency read; "
+        "more filler than thought; grains that touch; stray capacitance; a thickness taken too large"
+    ),
+    ("static", False): (
+        "usual causes of a low reading: voids, or air under an electrode; less filler than thought, "
+        "or settled; a loading in weight read as one in volume; a thickness taken too small"
+    ),
+    ("high_frequency", True): (
+        "usual causes of a high reading: the index was read where a band still lifts it; more filler than "
+        "thought, or a denser film; a thickness taken too small in a fit of fringes"
+    ),
+    ("high_frequency", False): (
+        "usual causes of a low reading: voids; less filler than thought; a loading in weight read as one in "
+        "volume; the index was read below a band; a thickness taken too large in a fit of fringes"
+    ),
+}
+_ENDLESS = 1e6  # times the lowest: what only a percolation threshold gives
 _CONDUCTOR = 1e45  # times the host: stands for a perfect conductor
 NAMES = {"static": "static", "high_frequency": "high-frequency"}
 
@@ -50,9 +61,14 @@ def impossible(recipe: Recipe, model: ReadingModel, position: int, levels: Float
     ranges = " and ".join(
         f"{u.path} from {recipe.show(u.path, u.low)} to {recipe.show(u.path, u.high)}" for u in model.unknowns
     )
+    span = (
+        f"rises from {low:.4g} without end"
+        if high > _ENDLESS * low
+        else f"lies between {low:.4g} and {high:.4g}"
+    )
     reasons = [
-        f"impossible: under {model.mixture.rule.name}, with {ranges}, the {name} permittivity lies between "
-        f"{low:.4g} and {high:.4g}; {reading.written} was read"
+        f"under {model.mixture.rule.name}, with {ranges}, the {name} permittivity {span}; "
+        f"{reading.written} was read"
     ]
     phases = model.phase_levels(grid(len(model.unknowns), 21), reading.kind)
     least = min(float(np.nanmin(level)) for level in phases.values())
@@ -60,12 +76,30 @@ def impossible(recipe: Recipe, model: ReadingModel, position: int, levels: Float
     if value > greatest or value < least:
         reasons.append(
             f"no arrangement of these phases at any loading gives it: on their own they lie between "
-            f"{least:.4g} and {greatest:.4g}"
+            f"{least:.4g} and {_upper(greatest)}"
         )
     else:
         reasons += _elsewhere(recipe, model, position)
         reasons += _bounds(model.mixture, phases, reading, over=over)
-    return (*reasons, TOO_HIGH if over else TOO_LOW)
+    return (*reasons, CAUSES[reading.kind, over])
+
+
+def _upper(level: float) -> str:
+    return "infinity, where a phase conducts" if np.isinf(level) else f"{level:.4g}"
+
+
+def contradiction(model: ReadingModel, place: Floats) -> tuple[str, ...]:
+    """That two readings cannot both be met by one unknown, and by how much the best misses."""
+    missed = ", ".join(
+        f"{NAMES[r.kind]} {r.written} by {(r.value - float(p)) / r.std:+.1f}"
+        for r, p in zip(model.readings, model(place), strict=True)
+        if r.std
+    )
+    path = model.unknowns[0].path
+    return (
+        f"no {path} meets both readings; the nearest misses, in standard uncertainties, {missed}",
+        "one of the readings is wrong, or another number of the recipe is, or the rule does not hold",
+    )
 
 
 def _elsewhere(recipe: Recipe, model: ReadingModel, position: int) -> list[str]:

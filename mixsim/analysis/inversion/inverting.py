@@ -24,6 +24,7 @@ from mixsim.units import Leaf, dimension_named
 
 Floats = NDArray[np.float64]
 
+_APART = 0.01  # share by which a reading without ± may be missed before it is said
 _DISAGREE = 3.0  # standard uncertainties between readings before it is said
 
 
@@ -61,7 +62,8 @@ def invert(
     Notes
     -----
     Closed form where there is one; bounded least squares on the exact limits of the mixture elsewhere.
-    Uncertainties are those of the readings alone: first order, (JᵀWJ)⁻¹, and a Monte Carlo beside it.
+    Uncertainties are those of the readings, and of the numbers of the recipe that state a ±: first order,
+    and a Monte Carlo beside it.
 
     Examples
     --------
@@ -89,7 +91,7 @@ def invert(
     with np.errstate(all="ignore"):
         solution = solve(recipe, mixture, unknowns, readings)
         model = ReadingModel(mixture, unknowns, readings)
-        checked = doubt_of(model, solution, seed)
+        checked = doubt_of(recipe, model, solution, seed)
         residuals = _residuals(model, solution)
         by_rule = _by_rule(recipe, mixture, unknowns, readings, solution)
     if checked.weak and solution.verdict == "answered":
@@ -109,6 +111,7 @@ def invert(
         by_rule=by_rule,
         monte_carlo=checked.monte_carlo if solution.verdict == "answered" else None,
         method=solution.method,
+        pushed=checked.pushed,
         warnings=(*suspicions(recipe), *_cautions(solution, checked, residuals)),
         seed=seed,
     )
@@ -124,7 +127,8 @@ def _limits_known(recipe: Recipe, mixture: Mixture, readings: Sequence[Reading])
             if np.any(np.isnan(level)):
                 path, word = f"materials.{phase.material}", reading.kind
                 found = f"{phase.material} has no {word} level: it is known over a band only"
-                faults.append(Fault(recipe.file, path, found, f"state {word} of the material"))
+                base = "" if f"[{path}]" in recipe.text else f'based_on = "{phase.material}" and '
+                faults.append(Fault(recipe.file, path, found, f"give [{path}] {base}{word}"))
     if faults:
         raise BadInput(list(dict.fromkeys(faults)))
 
@@ -133,14 +137,18 @@ def _estimates(recipe: Recipe, model: ReadingModel, solution: Solution, doubt: D
     estimates = {}
     for i, unknown in enumerate(model.unknowns):
         path = unknown.path
-        known = solution.place is not None and (not solution.known or solution.known[i])
+        known = (
+            solution.place is not None
+            and solution.verdict != "impossible"
+            and (not solution.known or solution.known[i])
+        )
         settled = known and solution.place is not None and not doubt.weak
         value = float(model.values(solution.place)[i]) if settled and solution.place is not None else None
         std = float(doubt.std[i]) if settled and doubt.std is not None else None
         interval: tuple[float, float] | None = None
         if settled and doubt.monte_carlo is not None:
             interval = doubt.monte_carlo.interval.get(path)
-        elif (not settled or solution.held) and solution.verdict != "impossible":
+        elif (not settled or solution.held) and solution.verdict != "impossible" and not solution.others:
             ends = solution.allowed or tuple((0.0, 1.0) for _ in model.unknowns)
             places = np.array([[pair[end] for pair in ends] for end in (0, 1)])
             low, high = sorted(float(v) for v in model.values(places)[:, i])
@@ -203,6 +211,14 @@ def _cautions(solution: Solution, doubt: Doubt, residuals: Sequence[Residual]) -
                 "unknowns",
                 f"the Monte Carlo does not confirm the first-order uncertainties "
                 f"({check.outside:.1%} of its draws left the ranges): trust the intervals, which are its own",
+            )
+        )
+    apart = [r for r in residuals if r.standardised is None and abs(r.measured / r.predicted - 1.0) > _APART]
+    if apart:
+        said = ", ".join(f"{explain.NAMES[r.kind]} {r.measured:.4g} against {r.predicted:.4g}" for r in apart)
+        found.append(
+            Caution(
+                "readings-disagree", "measured", f"the readings are not met: {said}; state ± to judge that"
             )
         )
     off = [r for r in residuals if r.standardised is not None and abs(r.standardised) > _DISAGREE]

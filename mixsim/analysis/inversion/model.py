@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from typing import Any
 
 import numpy as np
@@ -26,10 +26,19 @@ class ReadingModel:
         Leaves and their ranges.
     readings
         Which limits are read.
+    others
+        Numbers of the recipe that differ from it, such as draws of those with a ±.
     """
 
-    def __init__(self, mixture: Mixture, unknowns: Sequence[Unknown], readings: Sequence[Reading]) -> None:
+    def __init__(
+        self,
+        mixture: Mixture,
+        unknowns: Sequence[Unknown],
+        readings: Sequence[Reading],
+        others: Mapping[str, Floats] | None = None,
+    ) -> None:
         self.mixture, self.unknowns, self.readings = mixture, tuple(unknowns), tuple(readings)
+        self.others = dict(others or {})
         self._log = [u.low > 0.0 and u.high / u.low > _WIDE for u in unknowns]
 
     def values(self, t: Floats) -> Floats:
@@ -59,13 +68,17 @@ class ReadingModel:
         ]
         return np.stack(columns, axis=-1)
 
+    def with_others(self, others: Mapping[str, Floats]) -> ReadingModel:
+        """The same with other numbers of the recipe."""
+        return ReadingModel(self.mixture, self.unknowns, self.readings, others)
+
     def __call__(self, t: Floats) -> Floats:
         """Readings at scaled places, shape (..., readings); NaN where there is no limit or no room."""
         return self.at(self.values(np.asarray(t, dtype=float)))
 
     def at(self, values: Floats) -> Floats:
         """Readings at values [SI], shape (..., readings)."""
-        given = {u.path: values[..., i] for i, u in enumerate(self.unknowns)}
+        given = {**self.others, **{u.path: values[..., i] for i, u in enumerate(self.unknowns)}}
         limits = self.mixture.limits(given)
         levels = [np.real(getattr(limits, reading.kind)) for reading in self.readings]
         stacked = np.stack(levels, axis=-1)

@@ -117,6 +117,44 @@ def crossings(model: Model, target: float, line: Floats, levels: Floats) -> Floa
     return found[near]
 
 
+def towards_edges(model: Model, line: Floats, levels: Floats) -> tuple[Floats, Floats]:
+    """A scan along one unknown with more points towards each place where a reading ceases to be.
+
+    A static level rises without end towards a percolation threshold; even steps would cut it off.
+
+    Parameters
+    ----------
+    model
+        Readings at scaled places.
+    line
+        Scaled places, shape (K, 1).
+    levels
+        Readings there, shape (K, R); NaN where there is none.
+
+    Returns
+    -------
+    line, levels
+        With the points added, in order.
+    """
+    there = np.asarray(np.isfinite(levels).all(axis=-1))
+    last = np.flatnonzero(there[:-1] != there[1:])
+    if not last.size:
+        return line, levels
+    rising = there[last][:, np.newaxis]
+    inner = np.where(rising, line[last], line[last + 1])
+    outer = np.where(rising, line[last + 1], line[last])
+    near, far = inner.copy(), outer.copy()
+    for _ in range(60):
+        middle = 0.5 * (near + far)
+        found = np.asarray(np.isfinite(model(middle)).all(axis=-1))[:, np.newaxis]
+        near, far = np.where(found, middle, near), np.where(found, far, middle)
+    steps = np.geomspace(1.0, 1e-15, 200)
+    more = (near[:, np.newaxis] + (inner - near)[:, np.newaxis] * steps[:, np.newaxis]).reshape(-1, 1)
+    everything = np.concatenate([line, more, near])
+    order = np.argsort(everything[:, 0], kind="stable")
+    return everything[order], np.concatenate([levels, model(more), model(near)])[order]
+
+
 def jacobian(model: Model, t: Floats) -> Floats:
     """Derivatives of the readings by the scaled places, shape (..., R, U); one-sided at the ends."""
     columns = []
@@ -129,21 +167,30 @@ def jacobian(model: Model, t: Floats) -> Floats:
     return np.stack(columns, axis=-1)
 
 
-def covariance(jac: Floats, std: Floats) -> Floats | None:
-    """First-order covariance of the places from the standard uncertainties of the readings; None if singular.
+def covariance(jac: Floats, std: Floats, spread: Floats) -> Floats | None:
+    """First-order covariance of the places of a weighted fit; None if singular.
+
+    Parameters
+    ----------
+    jac
+        Derivatives of the readings by the places, shape (R, U).
+    std
+        Standard uncertainties that weigh the readings, shape (R,).
+    spread
+        Covariance of readings less model, shape (R, R): that of the readings, and of what the model rests on.
 
     Notes
     -----
-    (Jᵀ W J)⁻¹ with W = diag(1/σ²).
+    A S Aᵀ with A = (Jᵀ W J)⁻¹ Jᵀ W and W = diag(1/σ²); (Jᵀ W J)⁻¹ where S is that of the readings alone.
     """
-    if not np.isfinite(jac).all():
+    if not (np.isfinite(jac).all() and np.isfinite(spread).all()):
         return None
     weighted = jac / std[:, np.newaxis]
     singular = np.linalg.svd(weighted, compute_uv=False)
     if singular[-1] <= 1e-9 * singular[0] or singular[-1] == 0.0:
         return None
-    inverse = np.linalg.pinv(weighted)
-    return np.asarray(inverse @ inverse.T)
+    gain = np.linalg.pinv(weighted) / std
+    return np.asarray(gain @ spread @ gain.T)
 
 
 def gauss_newton(

@@ -62,6 +62,13 @@ def loss(axes: Axes, answer: Prediction, quantity: str = "permittivity") -> Axes
     return axes
 
 
+def _band(axes: Axes, x: Any, values: Any, std: Any) -> None:
+    """One standard uncertainty on either side of the mixture, from the ± of the recipe."""
+    for number, axis in enumerate((0, 2) if values.ndim == 2 else (...,)):
+        ends = values[axis] - std[axis], values[axis] + std[axis]
+        axes.fill_between(x, *ends, color=STRONG[number], alpha=0.2, lw=0, gid=f"unsure-{number}")
+
+
 def _curves(axes: Axes, answer: Prediction, quantity: str, part: str, flat: float) -> None:
     """Mixture and references; the scale follows the mixture."""
     x, values = answer.axis.shown, getattr(getattr(answer, quantity), part)
@@ -79,6 +86,8 @@ def _curves(axes: Axes, answer: Prediction, quantity: str, part: str, flat: floa
             ms=4,
             zorder=3,
         )
+    if quantity == "permittivity" and answer.pushed is not None:
+        _band(axes, x, values, getattr(answer.pushed, part))
     low, high = float(np.min(values)), float(np.max(values))
     reach = max(high - low, flat * 0.5 * abs(high + low))
     ends = low - BEYOND * reach, high + BEYOND * reach
