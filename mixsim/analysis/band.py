@@ -73,7 +73,7 @@ def axis_of(recipe: Recipe) -> Axis:
     band = recipe.schema.band
     if band is None:
         allowed = 'give [band] with from and to, or values, such as values = ["589.3 nm"]'
-        raise BadInput([Fault(recipe.file, "band", "no band to evaluate over", allowed)])
+        raise BadInput([recipe.fault("band", "no band to evaluate over", allowed)])
     if band.values is not None:
         unit = written_unit(band.values[0])
         omega = np.array([leaf.value for leaf in band.values])
@@ -161,11 +161,11 @@ def through(recipe: Recipe, path: str, values: ArrayLike) -> Varied:
     allowed = recipe.ranges[path]
     if numbers.ndim != 1 or not numbers.size:
         found = f"{path}: values of shape {numbers.shape}"
-        raise BadInput([Fault(recipe.file, "vary", found, "one list of numbers for each path")])
+        raise BadInput([recipe.fault("vary", found, "one list of numbers for each path")])
     for value in numbers.tolist():
         if not allowed.holds(value):
             found = f"{path}: {value:g} is out of range"
-            raise BadInput([Fault(recipe.file, "vary", found, f"must be {allowed.said()}")])
+            raise BadInput([recipe.fault("vary", found, f"must be {allowed.said()}")])
     unit = written_unit(here)
     shown = np.asarray(to_unit(numbers, unit, here.dimension)) if unit else numbers
     return Varied(path, numbers, unit, shown)

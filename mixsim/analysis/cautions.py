@@ -2,23 +2,24 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Mapping
+from collections.abc import Iterator, Mapping, Sequence
 
 import numpy as np
 
-from mixsim.analysis.band import Axis
+from mixsim.analysis.band import Axis, Varied
 from mixsim.analysis.caution import Caution
 from mixsim.analysis.rules import applicable_rules, conducts
 from mixsim.analysis.suspicion import suspicions
 from mixsim.mixture import HOST, VOIDS, Composition, Limits, Mixture, Response
 from mixsim.observables import complex_index
 from mixsim.recipe import Recipe
-from mixsim.units import SPEED_OF_LIGHT, show
+from mixsim.units import SPEED_OF_LIGHT, show, written_unit
 
 SIZE_PARAMETER = 0.3  # πdn/λ: scattering and retardation enter at its square, here a tenth
 RANDOM_PACKING = 0.64  # of equal hard spheres, common practice
 TOUCHING = 0.16  # volume fraction at which random hard spheres percolate, common practice
 SPREAD = 0.2  # share by which other rules may differ before it is said
+CONTRACTION = 0.1  # of the volume on mixing, which no common solution reaches; common practice
 PASSIVE = 1e-9  # share of |ε| below which a negative loss is rounding
 
 
@@ -30,15 +31,18 @@ def cautions(
     limits: Limits,
     composition: Composition,
     constituents: Mapping[str, Response],
+    vary: Sequence[Varied],
 ) -> tuple[Caution, ...]:
     """Every caution about one prediction, or about the worst corner of a sweep."""
+    largest = {item.path: float(item.values.max()) for item in vary}
     found = [
         *suspicions(recipe),
         *_ranges(recipe, mixture, axis),
-        *_sizes(recipe, axis, constituents),
+        *_sizes(recipe, axis, constituents, largest),
+        *_not_finite(axis, response),
         *_crowding(recipe, mixture, composition),
         *_no_limit(mixture, limits),
-        *_not_passive(axis, response, constituents),
+        *_not_passive(recipe, mixture, axis, response, constituents),
         *_rule_spread(recipe, mixture, axis, response),
     ]
     return tuple(dict.fromkeys(found))
@@ -66,22 +70,25 @@ def _span(axis: Axis) -> str:
     return f"from {first} to {last}" if len(axis.omega) > 1 else f"at {first}"
 
 
-def _sizes(recipe: Recipe, axis: Axis, constituents: Mapping[str, Response]) -> Iterator[Caution]:
+def _sizes(
+    recipe: Recipe, axis: Axis, constituents: Mapping[str, Response], largest: Mapping[str, float]
+) -> Iterator[Caution]:
     host = constituents[HOST]
     around = complex_index(axis.omega, host.permittivity, host.permeability).real
     for name, inclusion in recipe.schema.inclusions.items():
         if inclusion.diameter is None:
             continue
-        size = inclusion.diameter.value
+        path = f"inclusions.{name}.diameter"
+        size = largest.get(path, inclusion.diameter.value)
+        grains = f"grains of {show(size, 'length', written_unit(inclusion.diameter))}"
         parameter = np.pi * size * around * axis.omega / (2 * np.pi * SPEED_OF_LIGHT)
         worst = int(np.argmax(parameter))
         where = show(float(axis.omega[worst]), "spectral", axis.unit)
-        path = f"inclusions.{name}.diameter"
         if parameter[worst] > SIZE_PARAMETER:
             yield Caution(
                 "quasi-static",
                 path,
-                f"grains of {inclusion.diameter.written} reach a size parameter πdn/λ of "
+                f"{grains} reach a size parameter πdn/λ of "
                 f"{parameter[worst]:.2g} at {where}: scattering and retardation, which the rule leaves out, "
                 f"matter above {SIZE_PARAMETER:g}",
             )
@@ -96,7 +103,7 @@ def _sizes(recipe: Recipe, axis: Axis, constituents: Mapping[str, Response]) -> 
             yield Caution(
                 "skin-depth",
                 path,
-                f"grains of {inclusion.diameter.written} are thicker than the skin depth {depth} at {where}: "
+                f"{grains} are thicker than the skin depth {depth} at {where}: "
                 f"the field does not fill them as the rule assumes",
             )
 
@@ -105,7 +112,9 @@ def _crowding(recipe: Recipe, mixture: Mixture, composition: Composition) -> Ite
     """Loading against packing, percolation and what is said of contact."""
     fractions = {g.name: float(np.max(composition.volume_fractions[g.name])) for g in mixture.inclusions}
     total = sum(fractions.values())
-    if total > RANDOM_PACKING:
+    if mixture.density is not None:
+        yield from _partial_volumes(composition)
+    elif mixture.rule.homogeneous and total > RANDOM_PACKING:
         yield Caution(
             "packing",
             "inclusions",
@@ -145,6 +154,33 @@ def _crowding(recipe: Recipe, mixture: Mixture, composition: Composition) -> Ite
             )
 
 
+def _partial_volumes(composition: Composition) -> Iterator[Caution]:
+    """A measured density far from that of the pure constituents is rather a slip than a contraction."""
+    totals = np.atleast_1d(sum(composition.volume_fractions.values()))
+    worst = float(totals.flat[int(np.argmax(np.abs(totals - 1.0)))])
+    if abs(worst - 1.0) > CONTRACTION:
+        yield Caution(
+            "partial-volumes",
+            "mixing.density",
+            f"with this density the pure constituents would fill {100 * worst:.4g} % of the volume: a change "
+            f"beyond {CONTRACTION:.0%} on mixing is rather a slip in a density or a weight",
+        )
+
+
+def _not_finite(axis: Axis, response: Response) -> Iterator[Caution]:
+    """Frequencies at which a constituent without loss is at its resonance."""
+    lost = ~np.isfinite(response.permittivity) | ~np.isfinite(response.permeability)
+    if np.any(lost):
+        places = lost.reshape(-1, lost.shape[-1]).any(axis=0)
+        first = show(float(axis.omega[int(np.argmax(places))]), "spectral", axis.unit)
+        yield Caution(
+            "not-finite",
+            "",
+            f"no value at {int(places.sum())} of {places.size} frequencies, first at {first}: a band without "
+            f"damping, or the resonance of an index formula, lies there",
+        )
+
+
 def _no_limit(mixture: Mixture, limits: Limits) -> Iterator[Caution]:
     x = mixture.defaults
     lacking: dict[str, list[str]] = {}
@@ -168,19 +204,35 @@ def _no_limit(mixture: Mixture, limits: Limits) -> Iterator[Caution]:
         )
 
 
-def _not_passive(axis: Axis, response: Response, constituents: Mapping[str, Response]) -> Iterator[Caution]:
-    for name, part in {"the mixture": response, **constituents}.items():
-        for symbol, value in (("ε″", part.permittivity), ("μ″", part.permeability)):
-            gain = value.imag < -PASSIVE * np.abs(value)
-            if np.any(gain):
-                first = int(np.flatnonzero(gain.reshape(-1, gain.shape[-1]).any(axis=0))[0])
-                where = show(float(axis.omega[first]), "spectral", axis.unit)
-                yield Caution(
-                    "not-passive",
-                    "",
-                    f"{symbol} of {name} is negative, first at {where}: gain that no passive medium has"
-                    + ("; grains of different shapes in one host can do that" if part is response else ""),
-                )
+def _not_passive(
+    recipe: Recipe, mixture: Mixture, axis: Axis, response: Response, constituents: Mapping[str, Response]
+) -> Iterator[Caution]:
+    """Gain in a constituent; or, where all are passive, in what the rule makes of them."""
+    materials = {phase.name: phase.material for phase in mixture.phases}
+    found = False
+    for name, part in constituents.items():
+        where = _gain(axis, part)
+        if where:
+            found = True
+            table = recipe.tables.get(materials[name])
+            sign = f"; its table states {table.convention}, does its sign of k agree?" if table else ""
+            message = f"{where}, as no passive medium has{sign}"
+            yield Caution("not-passive", f"materials.{materials[name]}", message)
+    where = "" if found else _gain(axis, response)
+    if where:
+        message = f"{where}, as no passive medium has; grains of different shapes in one host can do that"
+        yield Caution("not-passive", "mixing.rule", message)
+
+
+def _gain(axis: Axis, part: Response) -> str:
+    """Where ε″ or μ″ is negative beyond rounding, in words; empty where nowhere."""
+    for symbol, value in (("ε″", part.permittivity), ("μ″", part.permeability)):
+        gain = value.imag < -PASSIVE * np.abs(value)
+        if np.any(gain):
+            first = int(np.flatnonzero(gain.reshape(-1, gain.shape[-1]).any(axis=0))[0])
+            where = show(float(axis.omega[first]), "spectral", axis.unit)
+            return f"{symbol} is negative, first at {where}"
+    return ""
 
 
 def _rule_spread(recipe: Recipe, mixture: Mixture, axis: Axis, response: Response) -> Iterator[Caution]:
@@ -191,7 +243,7 @@ def _rule_spread(recipe: Recipe, mixture: Mixture, axis: Axis, response: Respons
         return
     for name in applicable_rules(recipe, mixture):
         other = mixture.with_rule(name).response({}, axis.omega).permittivity
-        share = np.abs(other - response.permittivity) / np.abs(response.permittivity)
+        share = np.nan_to_num(np.abs(other - response.permittivity) / np.abs(response.permittivity))
         worst = int(np.argmax(share.reshape(-1, share.shape[-1]).max(axis=0)))
         if (most := float(share.max())) > SPREAD:
             where = show(float(axis.omega[worst]), "spectral", axis.unit)
@@ -203,4 +255,4 @@ def _rule_spread(recipe: Recipe, mixture: Mixture, axis: Axis, response: Respons
 
 
 def _share(part: float) -> str:
-    return f"{part:.0%}" if part < 2.0 else f"{part:.2g} times"
+    return f"{part:.0%}" if part < 1.0 else f"{part:.2g} times"

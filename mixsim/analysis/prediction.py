@@ -14,6 +14,7 @@ from mixsim.analysis.caution import Caution
 from mixsim.analysis.cautions import cautions
 from mixsim.analysis.plain import complex_parts, plain, provenance
 from mixsim.analysis.pushed import Pushed, pushed
+from mixsim.dispersion import interpolate
 from mixsim.errors import BadInput, Fault, Refusal
 from mixsim.mixture import Composition, Limits, Mixture, Response
 from mixsim.observables import QUANTITIES
@@ -217,19 +218,29 @@ def _evaluated(recipe: Recipe, vary: tuple[Varied, ...]) -> Prediction:
     }
     composition = mixture.composition(values)
     _room(mixture, composition, vary)
-    try:
-        response = mixture.response(values, axis.omega)
-        constituents = mixture.constituents(axis.omega)
-    except Refusal as refusal:
-        fault = Fault(recipe.file, "band", refusal.found, refusal.allowed, refusal.suggestion)
-        raise BadInput([fault]) from None
+    _reach(recipe, mixture, axis)
+    response = mixture.response(values, axis.omega)
+    constituents = mixture.constituents(axis.omega)
     limits = mixture.limits(values)
-    said = cautions(recipe, mixture, axis, response, limits, composition, constituents)
+    said = cautions(recipe, mixture, axis, response, limits, composition, constituents, vary)
     rule, magnetic = mixture.rule.name, mixture.magnetic
     unsure = None if vary else pushed(recipe, mixture, axis.omega)
     return Prediction(
         recipe, rule, axis, response, limits, composition, constituents, said, magnetic, vary, unsure
     )
+
+
+def _reach(recipe: Recipe, mixture: Mixture, axis: Axis) -> None:
+    """Refuse a band that a measured table does not cover: it is never extrapolated."""
+    faults = []
+    for name in dict.fromkeys(phase.material for phase in mixture.phases):
+        if (table := recipe.tables.get(name)) is not None:
+            try:
+                interpolate(axis.omega, table=table)
+            except Refusal as refusal:
+                faults.append(recipe.fault(f"materials.{name}.table", refusal.found, refusal.allowed))
+    if faults:
+        raise BadInput(faults)
 
 
 def _room(mixture: Mixture, composition: Composition, vary: tuple[Varied, ...]) -> None:

@@ -8,13 +8,22 @@ from mixsim.analysis.caution import Caution
 from mixsim.recipe import Recipe
 from mixsim.units import Leaf, read, show, written_unit
 
+DENSEST = 23e3  # kg/m^3; osmium has 22.6e3, handbook value from memory
 APART = 10.0  # factor between a suspect number and every other of the recipe
 MISTAKEN = {"cm^-1": "nm", "nm": "cm^-1", "eV": "meV", "meV": "eV", "THz": "GHz", "GHz": "THz"}
 
 
 def suspicions(recipe: Recipe) -> tuple[Caution, ...]:
     """Cautions that need no computing."""
-    return tuple(_units(recipe))
+    return (*_units(recipe), *_densities(recipe))
+
+
+def _densities(recipe: Recipe) -> Iterator[Caution]:
+    """Denser than any element: g/cm^3 was written where kg/m^3 was meant."""
+    for path, leaf in recipe.leaves.items():
+        if leaf.dimension == "density" and leaf.value > DENSEST:
+            shown, meant = show(leaf.value, "density", "g/cm^3"), f"{leaf.value / 1e6:.4g} g/cm^3"
+            yield Caution("unit-suspect", path, f"{shown} is denser than any element; is {meant} meant?")
 
 
 def _units(recipe: Recipe) -> Iterator[Caution]:

@@ -330,6 +330,8 @@ def _numbers(number: int, cells: Sequence[str], headings: Sequence[str]) -> list
     values = [float(cell) for cell in cells]
     if values[0] <= 0:
         raise Refusal(f"line {number}: {cells[0]!r} on the axis", "it must be above 0")
+    if "n" in headings and (n := cells[headings.index("n")]).startswith("-"):
+        raise Refusal(f"line {number}: {n!r} for n", "an index is not negative")
     return values
 
 

@@ -10,6 +10,22 @@ GAP = "  "
 NARROWEST = 24  # to which the last column may be wrapped
 
 
+def owned(path: str) -> list[str]:
+    """The words of a path that tell a reader whose number it is, without those of the recipe's layout.
+
+    Examples
+    --------
+    >>> owned("materials.tin-oxide.permittivity.terms.lattice.plasma")
+    ['tin-oxide', 'lattice', 'plasma']
+    >>> owned("voids.volume_fraction")
+    ['voids', 'volume_fraction']
+    """
+    words = path.split(".")
+    if words[0] in ("inclusions", "materials", "dopants"):
+        words = words[1:]
+    return [word for word in words if word not in ("permittivity", "terms", "shape", "index")] or words
+
+
 def width() -> int:
     """Width of the terminal, 80 where there is none."""
     return shutil.get_terminal_size((80, 24)).columns

@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
-from mixsim.present.columns import paragraph, table
+from mixsim.present.columns import owned, paragraph, table
 from mixsim.units import kind_of_axis, show
 
 if TYPE_CHECKING:
@@ -32,31 +32,43 @@ def prediction(answer: Prediction) -> str:
 
 def sweep(answer: Prediction) -> str:
     """A sweep: one row for each combination of the varied values."""
-    place = len(answer.omega) // 2
-    at = f"{answer.axis.shown[place]:.5g} {answer.axis.unit}"
-    headings = [_stacked(item.path, item.unit) for item in answer.vary]
-    headings += ["static", "high-\nfrequency", f"ε′ at\n{at}", f"ε″ at\n{at}"]
-    headings += ["highest\nε″", f"at\n[{answer.axis.unit}]"]
     shape = tuple(len(item.values) for item in answer.vary)
     count = int(np.prod(shape))
+    columns = _swept(answer)
+    headings = [*[_stacked(item.path, item.unit) for item in answer.vary], *[name for name, _ in columns]]
     rows = []
     for index in _chosen(count, MOST_ROWS):
         here = np.unravel_index(index, shape)
-        spectrum = _first_axis(answer.permittivity[here])
-        peak = int(np.argmax(spectrum.imag))
-        numbers = [
-            _first(answer.limits.static[here]),
-            _first(answer.limits.high_frequency[here]),
-            spectrum[place].real,
-            spectrum[place].imag,
-            spectrum[peak].imag,
-        ]
         varied = [f"{item.shown[i]:.6g}" for item, i in zip(answer.vary, here, strict=True)]
-        rows.append([*varied, *map(_number, numbers), f"{answer.axis.shown[peak]:.5g}"])
+        rows.append([*varied, *[_number(values[here]) for _, values in columns]])
     parts = [_head(answer), table(headings, rows, left=0)]
     if count > MOST_ROWS:
         parts.append(f"{MOST_ROWS} of {count} rows; --out sweep.csv writes them all")
     return "\n\n".join([*parts, *_cautions(answer.warnings)])
+
+
+def _swept(answer: Prediction) -> list[tuple[str, Any]]:
+    """Headings and values of what a sweep shows: limits, the middle of the band, the highest loss."""
+    e, m, limits = answer.permittivity, answer.permeability, answer.limits
+    place = len(answer.omega) // 2
+    at = f"{answer.axis.shown[place]:.5g} {answer.axis.unit}"
+    if e.ndim == len(answer.vary) + 2:
+        columns: list[tuple[str, Any]] = []
+        for label, axis in (("⊥", 0), ("∥", 2)):
+            columns.append((f"static\n{label}", limits.static[..., axis]))
+            columns.append((f"ε′ {label} at\n{at}", e[..., axis, place].real))
+            columns.append((f"ε″ {label} at\n{at}", e[..., axis, place].imag))
+        return columns
+    columns = [("static", limits.static), ("high-\nfrequency", limits.high_frequency)]
+    if np.any(limits.conductivity > 0.0):
+        columns = [("static", limits.static), ("dc\n[S/m]", limits.conductivity)]
+    columns += [(f"ε′ at\n{at}", e[..., place].real), (f"ε″ at\n{at}", e[..., place].imag)]
+    if answer.magnetic:
+        return [*columns, (f"μ′ at\n{at}", m[..., place].real), (f"μ″ at\n{at}", m[..., place].imag)]
+    loss = e.imag
+    peak = np.argmax(np.nan_to_num(loss, nan=-np.inf), axis=-1)
+    columns.append(("highest\nε″", np.take_along_axis(loss, peak[..., np.newaxis], axis=-1)[..., 0]))
+    return [*columns, (f"at\n[{answer.axis.unit}]", answer.axis.shown[peak])]
 
 
 def inversion(answer: Inversion) -> str:
@@ -229,7 +241,7 @@ def _by_rule(answer: Inversion) -> str:
         else:
             shown = [_round(answer.recipe.show(path, value)) for path, value in found.values.items()]
             rows.append([found.rule, *shown])
-    return table(["rule", *[".".join(path.split(".")[-2:]) for path in answer.estimates]], rows)
+    return table(["rule", *["\n".join(owned(path)) for path in answer.estimates]], rows)
 
 
 def _cautions(warnings: Sequence[Caution]) -> list[str]:
@@ -248,10 +260,6 @@ def _chosen(count: int, rows: int) -> list[int]:
 def _first_axis(values: Any) -> Any:
     """A spectrum, along the first principal axis where there are three."""
     return values[0] if values.ndim == 2 else values
-
-
-def _first(value: Any) -> Any:
-    return value[0] if np.ndim(value) else value
 
 
 def _axes(value: Any, std: Any = None) -> str:
@@ -274,5 +282,5 @@ def _number(value: Any, *, digits: int = 4) -> str:
 
 
 def _stacked(path: str, unit: str) -> str:
-    """The last two words of a path and its unit, one below the other, as a narrow heading."""
-    return "\n".join([*path.split(".")[-2:], *([f"[{unit}]"] if unit else [])])
+    """Whose number it is, what it is, and its unit, one below the other, as a narrow heading."""
+    return "\n".join([*owned(path), *([f"[{unit}]"] if unit else [])])

@@ -245,6 +245,9 @@ def _rule(raw: Mapping[str, Any]) -> Iterator[Finding]:
                 f"only {free} takes partial volumes that do not add up to one",
             ),
         )
+    if "density" in mixing and "voids" in raw and not rule.additive_only:
+        allowed = "the density of the mixture says how much is missing already"
+        yield "voids", Refusal("voids beside a measured density", allowed)
     for inclusion, node in _tables(raw, "inclusions"):
         shape = node.get("shape")
         if isinstance(shape, Mapping) and shape.get("kind") == "spheroid" and not rule.takes_shapes:

@@ -12,7 +12,7 @@ from pydantic_core import PydanticCustomError, core_schema
 
 from mixsim.errors import Refusal
 from mixsim.recipe.syntax import as_toml
-from mixsim.units import Leaf, dimension_named, read
+from mixsim.units import Leaf, dimension_named, read, written_unit
 
 if TYPE_CHECKING:
     from pydantic import GetCoreSchemaHandler, GetJsonSchemaHandler
@@ -75,7 +75,9 @@ class Number:
             raise Refusal(f"{as_toml(written)} where a number is needed", like)
         number = read(written, self.dimension)
         if not self.holds(number.value):
-            raise Refusal(f"{number.written!r} is out of range", f"must be {self.said()}")
+            per_cent = self.maximum == 1.0 and 1.0 < number.value <= 100.0 and not written_unit(number)
+            meant = f"{number.written} %" if per_cent else None
+            raise Refusal(f"{number.written!r} is out of range", f"must be {self.said()}", meant)
         return number
 
     def __get_pydantic_core_schema__(self, source: Any, handler: GetCoreSchemaHandler) -> CoreSchema:

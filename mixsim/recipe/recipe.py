@@ -81,6 +81,16 @@ class Recipe:
             raise BadInput([Fault(COMMAND_LINE, option, f"unknown path {path!r}", allowed, suggestion)])
         return self.leaves[path]
 
+    def fault(self, path: str, found: str, allowed: str, suggestion: str | None = None) -> Fault:
+        """A fault of this recipe found after it was read, with its line."""
+        (fault,) = faults_of(
+            [(path, Refusal(found, allowed, suggestion))],
+            file=self.file,
+            text=self.text,
+            settings=self.settings,
+        )
+        return fault
+
     def read(self, path: str, written: str | float, *, option: str) -> Leaf:
         """A number that an option gives for the leaf at a path, held to its dimension and range.
 

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from pathlib import Path
+
 import numpy as np
 import pytest
 
@@ -113,3 +115,62 @@ def test_audit_computes_nothing_and_asks_about_units(tmp_path: object) -> None:
     assert not report.passed
     assert len(report.faults) == 2
     assert report.to_dict()["faults"][0]["line"] == 4
+
+
+def test_a_resonance_without_damping_is_said(recwarn: pytest.WarningsRecorder) -> None:
+    text = """
+        host.material = "m"
+        materials.m.permittivity.infinity = 2.0
+        band.values = ["1 eV", "2 eV"]
+        [materials.m.permittivity.terms.t]
+        model = "lorentz"
+        step = 1.0
+        resonance = "2 eV"
+        damping = "0 eV"
+    """
+    (caution,) = mixsim.predict(mixsim.parse(text)).warnings
+    assert (caution.kind, "first at 2 eV" in caution.message) == ("not-finite", True)
+    assert not recwarn.list
+
+
+@pytest.mark.parametrize("rule", ["maxwell-garnett", "bruggeman", "lorentz-lorenz"])
+def test_what_loses_nothing_loses_nothing(rule: str) -> None:
+    """A loss-free metal by itself: no −0.0 that would turn the wave around, no loss by rounding."""
+    text = f"""
+        host.material = "m"
+        inclusions.i = {{ material = "m", volume_fraction = 0 }}
+        mixing.rule = "{rule}"
+        materials.m.permittivity.infinity = 2.0
+        materials.m.permittivity.terms.t = {{ model = "drude", plasma = "4 eV", damping = "0 eV" }}
+        band.values = ["1 eV", "2 eV"]
+    """
+    found = mixsim.predict(mixsim.parse(text))
+    assert np.all(found.permittivity.real < 0)
+    assert np.all(found.permittivity.imag == 0)
+    assert np.all(found.quantity("extinction") > 0)
+
+
+def test_the_largest_grain_of_a_sweep_is_judged() -> None:
+    recipe = mixsim.parse(oxide(extra=INSULATED + 'inclusions.grain.diameter = "10 nm"'))
+    swept = mixsim.sweep(recipe, [varied(recipe, "inclusions.grain.diameter", "10 nm", "300 nm", 3)])
+    assert "300 nm" in next(c.message for c in swept.warnings if c.kind == "quasi-static")
+
+
+def test_a_measured_density_that_no_solution_has_is_asked_about() -> None:
+    recipe = mixsim.load("configs/glycerol-coolant.toml", {"mixing.density": "1.5 g/cm^3"})
+    assert [caution.kind for caution in mixsim.predict(recipe).warnings] == ["partial-volumes"]
+    heavy = mixsim.load("configs/glycerol-coolant.toml", {"materials.glycerol.density": "1261 g/cm^3"})
+    assert "unit-suspect" in [caution.kind for caution in mixsim.predict(heavy).warnings]
+
+
+def test_a_table_of_the_wrong_sign_is_named(tmp_path: Path) -> None:
+    (tmp_path / "m.csv").write_text(
+        "# convention: exp(+iwt)\nwavelength [nm], n, k\n500,1.5,0.1\n600,1.4,0.1\n"
+    )
+    (tmp_path / "r.toml").write_text(
+        'host.material = "m"\nmaterials.m.table = "m.csv"\nband.values = ["550 nm"]\n'
+    )
+    found = [c for c in mixsim.predict(mixsim.load(tmp_path / "r.toml")).warnings if c.kind == "not-passive"]
+    (caution,) = found
+    assert caution.path == "materials.m"
+    assert "exp(+iwt)" in caution.message

@@ -43,6 +43,7 @@ density = "4.0 g/cm^3"
 permittivity.infinity = 4.0
 permittivity.terms.free = { model = "drude", plasma = "1.5 eV", damping = "0.1 eV" }
 """
+VOIDS = '[voids]\nvolume_fraction = "1 %"\n'
 LOADING = 'volume_fraction = "10 %"'
 CONCENTRATION = 'number_density = "1e19 cm^-3"'
 RED_TERM = 'terms.red = { model = "lorentz", strength = 1e-3, resonance = "2.05 eV", damping = "0.28 eV" }'

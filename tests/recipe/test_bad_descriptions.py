@@ -12,6 +12,7 @@ from broken import (
     RED,
     RED_TERM,
     SOUND,
+    VOIDS,
     Broken,
     add,
     check,
@@ -73,11 +74,19 @@ CASES: dict[str, Broken] = {
         "[materials.matrix]",
     ),
     "measured density without density of the host": dense(
-        {'"maxwell-garnett"': '"lorentz-lorenz"\ndensity = "1.3 g/cm^3"', HOST_DENSITY: ""},
+        {'"maxwell-garnett"': '"lorentz-lorenz"\ndensity = "1.3 g/cm^3"', HOST_DENSITY: "", VOIDS: ""},
         MATRIX,
         "density is missing",
         "mixing.density needs it",
         "[materials.matrix]",
+    ),
+    "voids beside a measured density": swap(
+        'rule = "maxwell-garnett"',
+        'rule = "lorentz-lorenz"\ndensity = "1.3 g/cm^3"',
+        "voids",
+        "voids beside a measured density",
+        "how much is missing",
+        at="[voids]",
     ),
     # one term, one description
     "plasma and step": dense(

@@ -10,6 +10,7 @@ from broken import (
     LEVEL,
     LOADING,
     RED,
+    VOIDS,
     Broken,
     add,
     check,
@@ -112,7 +113,7 @@ CASES: dict[str, Broken] = {
         '"10 %"', '"140 %"', AMOUNT, "'140 %' is out of range", "at least 0 and at most 1"
     ),
     "bare percent": swap(
-        '"10 %"', "10", AMOUNT, "'10' is out of range", "at most 1", at="volume_fraction = 10"
+        '"10 %"', "10", AMOUNT, "'10' is out of range", "at most 1", "10 %", at="volume_fraction = 10"
     ),
     "negative fraction": swap('"10 %"', '"-1 %"', AMOUNT, "'-1 %' is out of range", "at least 0"),
     "negative phr": swap(LOADING, "phr = -3", f"{GRAIN}.phr", "'-3' is out of range", "at least 0"),
@@ -182,12 +183,13 @@ CASES: dict[str, Broken] = {
         None,
         "[inclusions.grain]",
     ),
-    "measured density below that of the inclusions": swap(
-        'rule = "maxwell-garnett"',
-        'rule = "lorentz-lorenz"\ndensity = "0.3 g/cm^3"',  # the filler alone: 0.1 × 4 g/cm^3
+    "measured density below that of the inclusions": Broken(
+        {'rule = "maxwell-garnett"': 'rule = "lorentz-lorenz"\ndensity = "0.3 g/cm^3"', VOIDS: ""},
         "mixing.density",
-        "the inclusions alone weigh more than '0.3 g/cm^3'",
+        "the inclusions alone weigh more than '0.3 g/cm^3'",  # the filler alone: 0.1 × 4 g/cm^3
         "the host included",
+        None,
+        'density = "0.3 g/cm^3"',
     ),
     "weight fractions of dopants": Broken(
         {"": f"[dopants.one]\n{DOPED}[dopants.two]\n{DOPED}"},

@@ -61,7 +61,7 @@ def test_a_message_in_full() -> None:
         ),
         ({"hots.material": "air"}, "hots", "unknown key 'hots'", "a recipe takes", "host"),
         ({"host": "air"}, "host", "'air' where a table is needed", "takes material", None),
-        ({"voids.volume_fraction": "2"}, "voids.volume_fraction", "'2' is out of range", "at most 1", None),
+        ({"voids.volume_fraction": "2"}, "voids.volume_fraction", "'2' is out of range", "at most 1", "2 %"),
         ({"voids.volume_fraction": "nan"}, "voids.volume_fraction", "nan is not a finite", "4.0 %", None),
         ({"band.points": "9" * 5000}, "band.points", "where a whole number", "401", None),
         (

@@ -29,7 +29,7 @@ def readings_of(recipe: Recipe, *, static: Leaf | None, high_frequency: Leaf | N
     found = {kind: leaf for kind, leaf in given.items() if leaf is not None}
     if not found:
         allowed = 'give static or high_frequency, such as static = "2.70 ± 0.01"'
-        raise BadInput([Fault(recipe.file, "measured", "no reading to invert", allowed)])
+        raise BadInput([recipe.fault("measured", "no reading to invert", allowed)])
     for kind, leaf in found.items():
         if leaf.value <= 0.0:
             raise BadInput([_fault(recipe, kind, given, f"{leaf.written!r}", "a reading is above zero")])
@@ -49,7 +49,7 @@ def _fault(recipe: Recipe, kind: str, given: dict[str, Leaf | None], found: str,
     measured = recipe.schema.measured
     in_recipe = measured is not None and getattr(measured, kind) is given[kind]
     if in_recipe:
-        return Fault(recipe.file, f"measured.{kind}", found, allowed)
+        return recipe.fault(f"measured.{kind}", found, allowed)
     return Fault(COMMAND_LINE, "--" + kind.replace("_", "-"), found, allowed)
 
 
@@ -68,13 +68,13 @@ def unknowns_of(recipe: Recipe, free: Sequence[Unknown] | None) -> tuple[Unknown
             unknowns.append(Unknown(path, low, high))
     if not unknowns:
         allowed = 'give a range, such as "inclusions.ato.volume_fraction" = ["0 %", "30 %"]'
-        raise BadInput([Fault(recipe.file, "unknowns", "nothing to find", allowed)])
+        raise BadInput([recipe.fault("unknowns", "nothing to find", allowed)])
     paths = [unknown.path for unknown in unknowns]
     if len(set(paths)) < len(paths):
         raise BadInput([Fault(COMMAND_LINE, "--free", f"{paths[0]} is freed twice", "once each")])
     if len(paths) > MOST_UNKNOWNS:
         found = f"{len(paths)} unknowns: {', '.join(paths)}"
-        raise BadInput([Fault(recipe.file, "unknowns", found, "static and high_frequency tell two at most")])
+        raise BadInput([recipe.fault("unknowns", found, "static and high_frequency tell two at most")])
     return tuple(unknowns)
 
 

@@ -17,7 +17,7 @@ from mixsim.analysis.inversion.doubt import Doubt, doubt_of
 from mixsim.analysis.inversion.model import ReadingModel
 from mixsim.analysis.rules import applicable_rules
 from mixsim.analysis.suspicion import suspicions
-from mixsim.errors import BadInput, Fault
+from mixsim.errors import BadInput
 from mixsim.mixture import Mixture
 from mixsim.recipe import Recipe
 from mixsim.units import Leaf, dimension_named
@@ -84,9 +84,7 @@ def invert(
     mixture = recipe.compile()
     if mixture.aligned:
         allowed = "a reading would have to say along which axis; orientation = 'random' has one level"
-        raise BadInput(
-            [Fault(recipe.file, "inclusions", "aligned grains have a level for each axis", allowed)]
-        )
+        raise BadInput([recipe.fault("inclusions", "aligned grains have a level for each axis", allowed)])
     _limits_known(recipe, mixture, readings)
     with np.errstate(all="ignore"):
         solution = solve(recipe, mixture, unknowns, readings)
@@ -128,7 +126,7 @@ def _limits_known(recipe: Recipe, mixture: Mixture, readings: Sequence[Reading])
                 path, word = f"materials.{phase.material}", reading.kind
                 found = f"{phase.material} has no {word} level: it is known over a band only"
                 base = "" if f"[{path}]" in recipe.text else f'based_on = "{phase.material}" and '
-                faults.append(Fault(recipe.file, path, found, f"give [{path}] {base}{word}"))
+                faults.append(recipe.fault(path, found, f"give [{path}] {base}{word}"))
     if faults:
         raise BadInput(list(dict.fromkeys(faults)))
 

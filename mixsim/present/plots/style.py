@@ -7,6 +7,7 @@ from collections.abc import Sequence
 from itertools import pairwise
 from typing import TYPE_CHECKING, Any
 
+from mixsim.present.columns import owned
 from mixsim.units import kind_of_axis
 
 if TYPE_CHECKING:
@@ -70,14 +71,14 @@ def axis_label(unit: str) -> str:
 
 
 def path_label(path: str, unit: str) -> str:
-    """Label of a varied number: the last two words of its path, and its unit.
+    """Label of a varied number: whose it is, what it is, and its unit.
 
     Examples
     --------
     >>> path_label("inclusions.oxide.volume_fraction", "%")
     'oxide volume fraction / %'
     """
-    words = " ".join(path.split(".")[-2:]).replace("_", " ")
+    words = " ".join(owned(path)).replace("_", " ")
     return f"{words} / {_UNITS.get(unit, unit)}" if unit else words
 
 

@@ -29,7 +29,7 @@ def test_one_unknown_meets_its_reading_at_the_estimate(answers: Any) -> None:
     estimate = answer.estimates[answers.plasma]
     drawn = figure(answer)
     (axes,) = drawn.axes
-    assert axes.get_xlabel() == "lattice plasma / cm⁻¹"
+    assert axes.get_xlabel() == "oxide lattice plasma / cm⁻¹"
     assert legend(drawn) == ["static, model", "static, read 2.915 ± 0.010", "±1 standard uncertainty"]
     curve = lines(axes)["static, model"]
     assert curve.get_xdata()[[0, -1]] == pytest.approx([600.0, 2000.0])

@@ -60,7 +60,7 @@ def test_at_one_frequency_against_the_value(answers: Any) -> None:
 def test_log_values_on_log_axes(answers: Any) -> None:
     shown = panels(answers.sweep((answers.plasma, "300 cm^-1", "3000 cm^-1", 9), log=True))
     assert shown["highest ε″"].get_xscale() == "log"
-    ticks = [text.get_text() for text in shown["lattice plasma / cm⁻¹"].get_xticklabels()]
+    ticks = [text.get_text() for text in shown["oxide lattice plasma / cm⁻¹"].get_xticklabels()]
     assert "1000" in ticks and not any("$" in tick for tick in ticks)
 
 
@@ -72,7 +72,7 @@ def test_two_numbers_make_maps(answers: Any) -> None:
         axes for axes in drawn.axes if axes.collections and axes.get_xlabel() == "grain volume fraction / %"
     ]
     assert len(maps) == 2
-    assert maps[0].get_ylabel() == "lattice plasma / cm⁻¹"
+    assert maps[0].get_ylabel() == "oxide lattice plasma / cm⁻¹"
     place = len(answer.omega) // 2
     for axes, values in zip(maps, (answer.permittivity.real, answer.permittivity.imag), strict=True):
         assert axes.collections[0].get_array().reshape(8, 12).T.tolist() == values[..., place].tolist()
