@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import sys
 from collections.abc import Callable
 from typing import Annotated
 
@@ -57,5 +58,8 @@ def _program(
 
 
 def main() -> None:
-    """Run the program."""
+    """Run the program, of whose commands only the one asked for is built: the others cost a start as much."""
+    asked = sys.argv[1:2]
+    if asked and asked[0] in _COMMANDS:
+        app.registered_commands = [known for known in app.registered_commands if known.name == asked[0]]
     app()
