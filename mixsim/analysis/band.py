@@ -13,6 +13,7 @@ from mixsim.recipe import COMMAND_LINE, Recipe
 from mixsim.units import from_unit, spectral_from, spectral_to, to_unit, written_unit
 
 Floats = NDArray[np.float64]
+MOST_POINTS = 10_000_000
 
 
 @dataclass(frozen=True)
@@ -124,6 +125,8 @@ def varied(
     def refuse(found: str, allowed: str) -> BadInput:
         return BadInput([Fault(COMMAND_LINE, option, f"{path}: {found}", allowed)])
 
+    if points > MOST_POINTS:
+        raise refuse(f"{points} points", f"at most {MOST_POINTS}")
     if points < 2:
         raise refuse(f"{points} points", "at least 2, for both ends are among them")
     if first.value == last.value:

@@ -255,4 +255,4 @@ def _rule_spread(recipe: Recipe, mixture: Mixture, axis: Axis, response: Respons
 
 
 def _share(part: float) -> str:
-    return f"{part:.0%}" if part < 1.0 else f"{part:.2g} times"
+    return f"{part:.0%}" if part < 10.0 else f"{part:.2g} times"

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import Any
@@ -208,7 +209,7 @@ def sweep(recipe: Recipe, vary: Sequence[Varied] | Mapping[str, ArrayLike]) -> P
 
 def _evaluated(recipe: Recipe, vary: tuple[Varied, ...]) -> Prediction:
     mixture, axis = recipe.compile(), axis_of(recipe)
-    size = len(axis.omega) * int(np.prod([len(item.values) for item in vary]))
+    size = len(axis.omega) * math.prod(len(item.values) for item in vary)
     if size > LARGEST:
         found = f"a grid of {size:.3g} values"
         raise BadInput([Fault(COMMAND_LINE, "--vary", found, f"at most {LARGEST:.3g} in one answer")])

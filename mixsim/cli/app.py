@@ -24,7 +24,7 @@ app = typer.Typer(
 
 # each with the example that its help shows
 _COMMANDS: dict[str, tuple[Callable[..., int], str]] = {
-    "draft": (reference.draft, "draft filled-resin --out recipe.toml"),
+    "draft": (reference.draft, "draft nanoparticle-film --out recipe.toml"),
     "predict": (questions.predict, "predict recipe.toml --out film.png --out film.csv"),
     "sweep": (questions.sweep, "sweep recipe.toml --vary inclusions.oxide.volume_fraction 2% 20% 10"),
     "invert": (
@@ -59,7 +59,10 @@ def _program(
 
 def main() -> None:
     """Run the program, of whose commands only the one asked for is built: the others cost a start as much."""
-    asked = sys.argv[1:2]
+    asked, every = sys.argv[1:2], app.registered_commands
     if asked and asked[0] in _COMMANDS:
-        app.registered_commands = [known for known in app.registered_commands if known.name == asked[0]]
-    app()
+        app.registered_commands = [known for known in every if known.name == asked[0]]
+    try:
+        app()
+    finally:
+        app.registered_commands = every

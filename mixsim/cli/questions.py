@@ -14,7 +14,9 @@ from mixsim.errors import BadInput, Fault, Refusal
 from mixsim.recipe import COMMAND_LINE
 from mixsim.units import Leaf, read
 
-POINTS = "POINTS is a whole number, at least 2"
+POINTS = "POINTS is a whole number, at least 2 and at most 10000000"
+MOST_DIGITS = 18  # of a whole number that no memory could serve anyway
+MOST_POINTS = 10_000_000  # on one axis, as for the band of a recipe
 
 if TYPE_CHECKING:
     from mixsim.analysis import Audit, Caution, Inversion, Prediction
@@ -28,7 +30,7 @@ def predict(
     out: Out = None,
     strict: Strict = False,
 ) -> int:
-    """Permittivity and permeability of the mixture over the band of its recipe."""
+    """Permittivity and permeability of the mixture over its band."""
     from mixsim.analysis import predict as ask
 
     _check(out)
@@ -61,7 +63,9 @@ def sweep(
     axes = []
     for text in vary or ():
         path, start, stop, points = words("--vary", text, "PATH FROM TO POINTS")
-        axes.append(varied(loaded, path, start, stop, _whole("--vary", points, POINTS), log=log))
+        axes.append(
+            varied(loaded, path, start, stop, _whole("--vary", points, POINTS, most=MOST_POINTS), log=log)
+        )
     answer = ask(loaded, axes)
     _deliver(answer, "sweep", json=json, out=out, strict=strict)
     return ANSWERED
@@ -88,7 +92,9 @@ def invert(
     out: Out = None,
     strict: Strict = False,
 ) -> int:
-    """What went in, from the static and high-frequency permittivity of a sample.
+    """What went in, from what was read on a sample.
+
+    Readings are the static and the high-frequency permittivity.
 
     Exit status 1: no value gives the reading; 3: the readings cannot tell.
     """
@@ -103,7 +109,7 @@ def invert(
         static=_reading("--static", static),
         high_frequency=_reading("--high-frequency", high_frequency),
         free=unknowns,
-        seed=_whole("--seed", seed, "a whole number, 0 or above"),
+        seed=_whole("--seed", seed, f"a whole number, 0 or above, of at most {MOST_DIGITS} digits"),
     )
     _deliver(answer, "inversion", json=json, out=out, strict=strict)
     return {"answered": ANSWERED, "impossible": NO, "undecided": UNDECIDED}[answer.verdict]
@@ -127,8 +133,9 @@ def audit(
     return ANSWERED if answer.passed and not (strict and answer.warnings) else NO
 
 
-def _whole(option: str, text: str, allowed: str) -> int:
-    if not text.isdecimal():
+def _whole(option: str, text: str, allowed: str, *, most: int | None = None) -> int:
+    readable = text.isdecimal() and len(text) <= MOST_DIGITS
+    if not readable or (most is not None and int(text) > most):
         raise BadInput([Fault(COMMAND_LINE, option, repr(text), allowed)])
     return int(text)
 
@@ -159,9 +166,10 @@ def _deliver(
     if strict and answer.warnings:
         raise BadInput([_as_fault(caution, answer.recipe.file) for caution in answer.warnings])
     if out:
-        from mixsim.present.files import write
+        from mixsim.present.files import PLOTS, write
 
-        for name in dict.fromkeys(out):
+        # pictures first: only they can be refused for what the answer is, and then nothing is written
+        for name in sorted(dict.fromkeys(out), key=lambda name: not name.lower().endswith(PLOTS)):
             write(answer, name)
             print(f"mixsim: wrote {name}", file=sys.stderr)
     _print(answer, table, json=json)

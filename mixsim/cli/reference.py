@@ -129,13 +129,9 @@ def _listed(kind: str) -> Rows:
 
 
 def _show_recipe(name: str) -> int:
-    from mixsim.present.columns import described
+    from mixsim.present.entries import numbers
     from mixsim.recipe import load
 
-    recipe = load(name)
-    rows = []
-    for path, leaf in recipe.leaves.items():
-        allowed = recipe.ranges[path].said() if recipe.ranges[path].bounded else ""
-        rows.append((path, leaf.written, allowed))
-    print(described(["path", "as written", "must be"], rows))
+    # one line for each number where another program reads
+    print(numbers(load(name), wrapped=sys.stdout.isatty()))
     return ANSWERED

@@ -10,7 +10,7 @@ from typing import Any
 import typer
 from typer.core import TyperCommand, TyperGroup
 
-from mixsim.errors import BadInput, Refusal
+from mixsim.errors import BadInput, Refusal, nearest
 
 ANSWERED, NO, BAD_INPUT, UNDECIDED, INTERNAL, INTERRUPTED = 0, 1, 2, 3, 70, 130
 TRACEBACK = "MIXSIM_TRACEBACK"
@@ -29,15 +29,30 @@ class Command(TyperCommand):
         joined: list[str] = []
         while words:
             word = words.pop(0)
-            joined.append(word)
-            if count := _WORDS.get(word):
+            option, equals, first = word.partition("=")
+            if count := _WORDS.get(option):
+                words = [first, *words] if equals else words
                 taken, words = words[:count], words[count:]
-                joined.append(SEPARATOR.join(taken))
-        return super().parse_args(ctx, joined)
+                joined += [option, SEPARATOR.join(taken)]
+            else:
+                joined.append(word)
+        try:
+            return super().parse_args(ctx, joined)
+        except _USAGE_ERROR as error:
+            known: Any = error
+            known.ctx = known.ctx or ctx  # the parser does not always say which command it was
+            raise
 
 
 class Program(TyperGroup):
     """The program: turns whatever happens into an exit status and a message without a traceback."""
+
+    def resolve_command(self, ctx: Any, args: list[str]) -> Any:
+        """Find the command that was asked for."""
+        if args and args[0] not in self.commands and not args[0].startswith("-"):
+            near = nearest(args[0], list(self.commands))
+            raise Refusal(f"no such command {args[0]!r}", "mixsim --help lists them", near)
+        return super().resolve_command(ctx, args)
 
     def invoke(self, ctx: Any) -> Any:
         """Run the command that was asked for."""
@@ -49,6 +64,12 @@ class Program(TyperGroup):
     def main(self, *args: Any, **more: Any) -> Any:
         """Run, and exit."""
         more["standalone_mode"] = False
+        if sys.stderr is None:  # closed; or its notes would be printed on standard output
+            sys.stderr = open(os.devnull, "w")  # noqa: SIM115 – for as long as the process lasts
+        if sys.stdout is None:
+            sys.exit(_complain("standard output: it is closed"))
+        for stream in (sys.stdout, sys.stderr):
+            _speak_utf8(stream)
         try:
             code = super().main(*args, **more)
             sys.stdout.flush()
@@ -68,6 +89,10 @@ class Program(TyperGroup):
         except OSError as error:
             code = _complain(f"standard output: {(error.strerror or str(error)).lower()}")
             os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        except MemoryError:
+            code = _complain(
+                "command line: the answer does not fit into memory; ask for fewer points or values"
+            )
         except Exception as error:
             if os.environ.get(TRACEBACK):
                 traceback.print_exc()
@@ -83,6 +108,13 @@ class _ReaderLeftError(Exception):
     """Whoever read our output has left, as `head` does."""
 
 
+def _speak_utf8(stream: Any) -> None:
+    """Write files and pipes in UTF-8, as JSON and TOML must be; a terminal as it can."""
+    if hasattr(stream, "reconfigure"):
+        encoding = stream.encoding if stream.isatty() else "utf-8"
+        stream.reconfigure(encoding=encoding, errors="backslashreplace")
+
+
 def _complain(*lines: str) -> int:
     for line in lines:
         print(f"mixsim: {line}", file=sys.stderr)
@@ -91,6 +123,14 @@ def _complain(*lines: str) -> int:
 
 def _usage(error: Any) -> str:
     """The message of the parser in one line, in our spelling."""
-    text = " ".join(str(error.format_message()).split()).rstrip(".")
-    command = error.ctx.command_path if getattr(error, "ctx", None) else "mixsim"
-    return f"{text[:1].lower()}{text[1:]} ({command} --help shows what it takes)"
+    context, option = getattr(error, "ctx", None), getattr(error, "option_name", "")
+    near = None
+    if hasattr(error, "possibilities"):  # an option that is not there
+        text = f"no such option: {option}"
+        known = [name.lstrip("-") for p in context.command.params for name in p.opts] if context else []
+        near = nearest(option.lstrip("-"), [*known, "help"])
+    else:
+        text = " ".join(str(error.format_message()).split()).rstrip(".")
+    command = context.command_path if context else "mixsim"
+    allowed = f"{command} --help shows what it takes"
+    return str(Refusal(f"{text[:1].lower()}{text[1:]}", allowed, near and f"--{near}"))

@@ -3,14 +3,17 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from mixsim.dispersion import INDEX_MODELS, TERMS, IndexModel, Parameter, Term
 from mixsim.mixing import RULES, Rule
 from mixsim.observables import QUANTITIES, Quantity
-from mixsim.present.columns import described, paragraph, table
+from mixsim.present.columns import described, paragraph, table, width
 from mixsim.recipe import library
-from mixsim.units import accepted_units, dimension_named
+from mixsim.units import Leaf, accepted_units, dimension_named
+
+if TYPE_CHECKING:
+    from mixsim.recipe import Recipe
 
 
 def entry(name: str) -> str | None:
@@ -25,6 +28,34 @@ def entry(name: str) -> str | None:
     if (content := library.definition(name)) is not None:
         found.append(_material(name, content))
     return "\n\n".join(found) or None
+
+
+def numbers(recipe: Recipe, *, wrapped: bool) -> str:
+    """Every number of a recipe: path, as written, in SI, and what it must be.
+
+    Parameters
+    ----------
+    recipe
+        The recipe.
+    wrapped
+        Whether each path stands on a line of its own where one line for each number is too wide.
+    """
+    rows = []
+    for path, leaf in recipe.leaves.items():
+        allowed = recipe.ranges[path].said() if recipe.ranges[path].bounded else ""
+        rows.append((path, leaf.written, _in_si(leaf), allowed))
+    headings = ("path", "as written", "in SI", "must be")
+    shown = table(headings, rows, left=4)
+    if not wrapped or max(map(len, shown.splitlines())) <= width():
+        return shown
+    beneath = table(headings[1:], [row[1:] for row in rows], left=3).splitlines()
+    pairs = zip([headings[0], *recipe.leaves], beneath, strict=True)
+    return "\n".join(f"{path}\n  {line}" for path, line in pairs)
+
+
+def _in_si(leaf: Leaf) -> str:
+    spread = f" ± {leaf.std:.2g}" if leaf.std else ""
+    return f"{leaf.value:.6g}{spread} {dimension_named(leaf.dimension).si}".rstrip()
 
 
 def _head(name: str, kind: str, facts: Iterable[tuple[str, str]]) -> str:

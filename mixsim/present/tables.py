@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
-from mixsim.present.columns import owned, paragraph, table
+from mixsim.present.columns import owned, paragraph, table, width
 from mixsim.units import kind_of_axis, show
 
 if TYPE_CHECKING:
@@ -17,6 +17,11 @@ ROWS = 9  # of a spectrum
 MOST_ROWS = 40  # of a sweep
 NONE = "–"
 NOISE = 1e-12  # share of |ε| below which a loss is rounding
+LARGE, HUGE = (
+    1e4,
+    1e7,
+)  # between which a number keeps its digits in front of the point, without a power of ten
+HIGHEST = "← highest ε″"
 VERDICTS = {
     "answered": "answered",
     "impossible": "impossible: no value in the ranges gives this reading",
@@ -132,6 +137,7 @@ def _composition(answer: Prediction) -> str:
 
 def _limits(answer: Prediction) -> str:
     limits, unsure = answer.limits, answer.pushed
+    said = any(caution.kind == "no-limit" for caution in answer.warnings)
     rows = [
         ["static permittivity", _axes(limits.static, None if unsure is None else unsure.static)],
         [
@@ -145,43 +151,57 @@ def _limits(answer: Prediction) -> str:
     if np.any(limits.conductivity > 0.0):
         rows.append(["conductivity at dc", f"{_axes(limits.conductivity)} S/m"])
         rows.append(["level beside it", _axes(limits.plateau)])
+    rows = [[name, "none: see no-limit below" if said and level == NONE else level] for name, level in rows]
     shown = table(["", ""], rows, left=2)
-    if unsure is not None:
+    if unsure is not None and "±" in shown:
         shown += "\n" + paragraph(f"± is one standard uncertainty, from that of {', '.join(unsure.paths)}")
     return shown
 
 
 def _spectrum(answer: Prediction) -> str:
-    """Some rows of the spectrum, and the highest loss."""
-    e, m = answer.permittivity, answer.permeability
-    columns: list[tuple[str, Any]] = []
-    if e.ndim == 2:
-        n, k = answer.quantity("index"), answer.quantity("extinction")
-        for label, axis in (("⊥", 0), ("∥", 2)):
-            columns += [(f"ε′ {label}", e[axis].real), (f"ε″ {label}", e[axis].imag)]
-            columns += [(f"n {label}", n[axis]), (f"k {label}", k[axis])]
-    else:
-        columns = [("ε′", e.real), ("ε″", e.imag)]
-        if answer.magnetic:
-            columns += [("μ′", m.real), ("μ″", m.imag)]
-        columns += [("n", answer.quantity("index")), ("k", answer.quantity("extinction"))]
-        if not answer.magnetic:
-            columns.append(("tan δ", answer.quantity("loss_tangent")))
-        columns.append(("α\n[1/cm]", answer.quantity("absorption_coefficient") / 100.0))
+    """Some rows of the spectrum with the highest loss; along each axis where the grains are aligned."""
+    if answer.permittivity.ndim == 1:
+        return _along(answer, 0)
+    axes = (("⊥, across the aligned axis", 0), ("∥, along the aligned axis", 2))
+    return "\n\n".join(f"{label}\n{_along(answer, axis)}" for label, axis in axes)
+
+
+def _along(answer: Prediction, axis: int) -> str:
+    """The spectrum along one principal axis, or that of a mixture which has none."""
+
+    def here(values: Any) -> Any:
+        return values[axis] if values.ndim == 2 else values
+
+    e, m = here(answer.permittivity), here(answer.permeability)
+    columns: list[tuple[str, Any]] = [("ε′", e.real), ("ε″", e.imag)]
+    if answer.magnetic:
+        columns += [("μ′", m.real), ("μ″", m.imag)]
+    columns += [("n", here(answer.quantity("index"))), ("k", here(answer.quantity("extinction")))]
+    if not answer.magnetic:
+        columns.append(("tan δ", here(answer.quantity("loss_tangent"))))
+    columns.append(("α\n[1/cm]", here(answer.quantity("absorption_coefficient")) / 100.0))
     kind = kind_of_axis(answer.axis.unit).removeprefix("vacuum ")
     headings = [f"{kind}\n[{answer.axis.unit}]", *[name for name, _ in columns], ""]
-    loss = _first_axis(e).imag
+    loss = e.imag
     peak = int(np.argmax(loss))
     chosen = set(_chosen(len(answer.omega), ROWS))
-    marked = loss[peak] > NOISE * abs(_first_axis(e)[peak]) and len(answer.omega) > 1
+    marked = loss[peak] > NOISE * abs(e[peak]) and len(answer.omega) > 1
     if marked:
         chosen.add(peak)
     rows = []
     for i in sorted(chosen):
-        mark = "← highest ε″" if marked and i == peak else ""
+        mark = HIGHEST if marked and i == peak else ""
         rows.append([f"{answer.axis.shown[i]:.5g}", *[_number(values[i]) for _, values in columns], mark])
-    size = max(len(row[-1]) for row in rows)
-    return table(headings, [[*row[:-1], row[-1].ljust(size)] for row in rows], left=0)
+    shown = _marked(headings, rows, HIGHEST)
+    if marked and max(map(len, shown.splitlines())) > width():
+        short = [[*row[:-1], HIGHEST[: len(row[-1]) and 1]] for row in rows]
+        shown = f"{_marked(headings, short, HIGHEST[:1])}\n{HIGHEST}"
+    return shown
+
+
+def _marked(headings: Sequence[str], rows: Sequence[Sequence[str]], mark: str) -> str:
+    """Numbers to the right, and a mark after some rows to the left."""
+    return table(headings, [[*row[:-1], row[-1].ljust(len(mark))] for row in rows], left=0)
 
 
 def _estimate(answer: Inversion, estimate: Estimate) -> str:
@@ -257,11 +277,6 @@ def _chosen(count: int, rows: int) -> list[int]:
     return sorted({round(i) for i in np.linspace(0, count - 1, min(rows, count))})
 
 
-def _first_axis(values: Any) -> Any:
-    """A spectrum, along the first principal axis where there are three."""
-    return values[0] if values.ndim == 2 else values
-
-
 def _axes(value: Any, std: Any = None) -> str:
     """A level, or one for each principal axis, with its uncertainty where there is one."""
     if np.ndim(value):
@@ -278,7 +293,10 @@ def _number(value: Any, *, digits: int = 4) -> str:
         if value.imag != 0.0 and not np.isnan(value):
             return f"{value.real:.{digits}g} + {value.imag:.{digits}g}i"
         value = value.real
-    return NONE if np.isnan(value) else f"{float(value) + 0.0:.{digits}g}"
+    if np.isnan(value):
+        return NONE
+    text = f"{float(value) + 0.0:.{digits}g}"
+    return f"{float(text):.0f}" if LARGE <= abs(float(text)) < HUGE else text
 
 
 def _stacked(path: str, unit: str) -> str:

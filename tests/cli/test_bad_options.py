@@ -16,8 +16,12 @@ PREDICT, SWEEP, INVERT = ["predict", "recipe.toml"], ["sweep", "recipe.toml"], [
 
 # ruff: noqa: E501 – one case a line
 CASES: dict[str, tuple[list[str], list[str]]] = {
-    "unknown command": (["predic"], ["no such command 'predic'", "predict"]),
-    "unknown option": ([*PREDICT, "--jsn"], ["no such option: --jsn", "mixsim predict --help"]),
+    "unknown command": (["predic"], ["no such command 'predic'", "did you mean 'predict'?"]),
+    "unknown option": (
+        [*PREDICT, "--jsn"], ["no such option: --jsn", "mixsim predict --help", "did you mean '--json'?"],
+    ),
+    "unknown option of the program": (["--verison"], ["--verison", "did you mean '--version'?"]),
+    "a value for a switch": ([*PREDICT, "--json=3"], ["'--json' does not take a value", "mixsim predict --help"]),
     "no recipe": (["predict"], ["missing argument", "RECIPE"]),
     "two recipes": ([*PREDICT, "other.toml"], ["unexpected extra argument", "other.toml"]),
     "recipe not there": (["predict", "none.toml"], ["none.toml: no such file", "TOML"]),
@@ -34,6 +38,9 @@ CASES: dict[str, tuple[list[str], list[str]]] = {
     "unknown path": ([*SWEEP, "--vary", "inclusions.filer.volume_fraction", "0%", "9%", "3"], ["--vary", LOADING]),
     "shortened path": ([*SWEEP, "--vary", "band.plasma", "1eV", "2eV", "3"], ["terms.band.plasma'?"]),
     "points in words": ([*SWEEP, "--vary", LOADING, "0%", "9%", "few"], ["'few'", "at least 2"]),
+    "points beyond any memory": ([*SWEEP, "--vary", LOADING, "0%", "9%", "9" * 10], ["at most 10000000"]),
+    "points of many digits": ([*SWEEP, "--vary", LOADING, "0%", "9%", "9" * 5000], ["at most 10000000"]),
+    "an equals sign and too few": ([*SWEEP, f"--vary={LOADING}", "0%", "9%"], ["PATH FROM TO POINTS"]),
     "one point": ([*SWEEP, "--vary", LOADING, "0%", "9%", "1"], ["1 points", "at least 2"]),
     "a range of nothing": ([*SWEEP, "--vary", LOADING, "9%", "9%", "3"], ["the two ends differ"]),
     "a log axis from zero": ([*SWEEP, "--log", "--vary", LOADING, "0%", "9%", "3"], ["above zero"]),
@@ -56,6 +63,7 @@ CASES: dict[str, tuple[list[str], list[str]]] = {
     "a free range of nothing": ([*INVERT, "--free", LOADING, "5%", "5%"], ["--free", "is empty"]),
     "two words": ([*INVERT, "--free", LOADING, "5%"], ["--free", "PATH LOW HIGH"]),
     "a seed in words": ([*INVERT, "--seed", "x"], ["--seed", "'x'"]),
+    "a seed of many digits": ([*INVERT, "--seed", "9" * 5000], ["--seed", "at most 18 digits"]),
     "a negative seed": ([*INVERT, "--seed", "-1"], ["--seed", "-1"]),
     "unknown suffix": ([*PREDICT, "--out", "film.xls"], ["'film.xls'", "'.xls'", ".csv"]),
     "near suffix": ([*PREDICT, "--out", "film.pgn"], ["did you mean '.png'?"]),
@@ -67,6 +75,11 @@ CASES: dict[str, tuple[list[str], list[str]]] = {
         [*SWEEP, "--out", "s.png", "--vary", LOADING, "0%", "9%", "3",
          "--vary", "materials.filler.permittivity.infinity", "2", "3", "2",
          "--vary", "materials.resin.permittivity.infinity", "2", "3", "2"], ["'s.png'", "3 varied", ".npz"],
+    ),
+    "a good file before a picture of three varied": (
+        [*SWEEP, "--out", "s.csv", "--out", "s.png", "--vary", LOADING, "0%", "9%", "3",
+         "--vary", "materials.filler.permittivity.infinity", "2", "3", "2",
+         "--vary", "materials.resin.permittivity.infinity", "2", "3", "2"], ["'s.png'", "3 varied"],
     ),
     "unknown draft": (["draft", "doped-gls"], ["'doped-gls'", "did you mean 'doped-glass'?"]),
     "a draft over a file": (["draft", "doped-glass", "--out", "recipe.toml"], ["there already", "never overwritten"]),
@@ -138,3 +151,19 @@ def test_interruption_and_internal_faults(run: Run, monkeypatch: pytest.MonkeyPa
     assert "Traceback" not in result.stderr
     monkeypatch.setenv("MIXSIM_TRACEBACK", "1")
     assert "Traceback" in run(*PREDICT).stderr
+
+
+def test_an_answer_beyond_the_memory_is_bad_input(run: Run, monkeypatch: pytest.MonkeyPatch) -> None:
+    def full(*_: Any) -> None:
+        raise MemoryError
+
+    monkeypatch.setattr(questions, "recipe_from", full)
+    result = run(*PREDICT)
+    assert result.exit_code == 2
+    assert result.stderr == (
+        "mixsim: command line: the answer does not fit into memory; ask for fewer points or values\n"
+    )
+
+
+def test_an_option_that_is_nothing_like_another_gets_no_suggestion(run: Run) -> None:
+    assert "did you mean" not in run("audit", "recipe.toml", "--out", "x.csv").stderr

@@ -22,12 +22,24 @@ from .conftest import Run
 
 COMMANDS = ("draft", "predict", "sweep", "invert", "audit", "list", "show", "schema")
 LOADING = "inclusions.filler.volume_fraction"
+CONFIGS = sorted((Path(__file__).parents[2] / "configs").glob("*.toml"))
+
+
+def no_constant(name: str) -> None:
+    raise AssertionError(f"{name} is no JSON")
 
 
 def answer(run: Run, *arguments: str) -> dict[str, object]:
     result = run(*arguments, "--json")
     assert result.exit_code in (0, 1, 3), result.stderr
-    return json.loads(result.stdout)  # type: ignore[no-any-return]
+    return json.loads(result.stdout, parse_constant=no_constant)  # type: ignore[no-any-return]
+
+
+@pytest.mark.parametrize("file", CONFIGS, ids=lambda file: file.stem)
+def test_every_config_answers_in_json_without_nan(run: Run, file: Path) -> None:
+    held = answer(run, "predict", str(file))
+    assert held["title"]
+    assert len(held["omega_rad_s"]) == np.shape(held["permittivity"]["real"])[-1]  # type: ignore[arg-type,index]
 
 
 def test_predict_says_composition_limits_and_spectrum(run: Run) -> None:
@@ -132,10 +144,23 @@ def test_every_draft_loads_predicts_and_inverts_where_it_asks_for_it(run: Run, k
     text = Path("new.toml").read_text(encoding="utf-8")
     if tomli.loads(text).get("measured"):
         assert run("invert", "new.toml").exit_code == 0
+    assert re.search("^# .*the safety data sheets and local rules come first", text, re.MULTILINE)
     assert run("draft", kind).stdout == text
     assert kind in run("draft").stdout
     assert "placeholder" in text
     assert len(text.splitlines()) > 15
+
+
+@pytest.mark.parametrize("kind", drafts.names())
+def test_what_a_draft_leaves_out_works_when_put_in(run: Run, kind: str) -> None:
+    text = run("draft", kind).stdout
+    whole = re.sub(r'^# (?!values)(?=\[|[\w."-]+ = )', "", text, flags=re.MULTILINE)
+    Path("whole.toml").write_text(whole, encoding="utf-8")
+    assert run("audit", "whole.toml").stdout.startswith("whole.toml: sound")
+    assert run("predict", "whole.toml").exit_code == 0
+    if "[measured]" in whole:
+        result = run("invert", "whole.toml")
+        assert (result.exit_code, result.stderr) == (0, "")
 
 
 @pytest.mark.parametrize(
@@ -171,7 +196,13 @@ def test_show_tells_a_rule_a_term_and_a_material(run: Run) -> None:
 
 def test_show_tells_every_number_of_a_recipe(run: Run) -> None:
     shown = run("show", "recipe.toml").stdout
-    assert re.search(rf"^{LOADING} +20 % +at least 0 and at most 1$", shown, re.MULTILINE)
+    assert re.search(rf"^{LOADING} +20 % +0.2 +at least 0 and at most 1$", shown, re.MULTILINE)
+    assert re.search(r"^materials.filler.density +4.0 g/cm\^3 +4000 kg/m\^3 +above 0$", shown, re.MULTILINE)
+    assert re.search(r"^measured.static +4.10 ± 0.03 +4.1 ± 0.03 ", shown, re.MULTILINE)
+    for number in shown.splitlines()[1:]:
+        path, written = re.split(r"  +", number)[:2]
+        options = [] if path.startswith("measured") else ["--set", f"{path}={written}"]
+        assert run("predict", "recipe.toml", *options).exit_code == 0, path
 
 
 def test_schema_is_one_that_takes_the_recipe(run: Run) -> None:
@@ -183,7 +214,7 @@ def test_schema_is_one_that_takes_the_recipe(run: Run) -> None:
 
 
 def test_files_of_every_kind(run: Run) -> None:
-    files = ["a.csv", "a.json", "a.npz", "a.png", "a.svg", "a.pdf"]
+    files = ["a.png", "a.svg", "a.pdf", "a.csv", "a.json", "a.npz"]  # in the order in which they are written
     options = [word for file in files for word in ("--out", file)]
     result = run("predict", "recipe.toml", *options)
     assert result.exit_code == 0
@@ -193,15 +224,29 @@ def test_files_of_every_kind(run: Run) -> None:
     assert json.loads(Path("a.json").read_text()) == answer(run, "predict", "recipe.toml")
 
 
-@pytest.mark.parametrize("command", COMMANDS)
-def test_help_shows_an_example_that_runs(run: Run, command: str) -> None:
-    text = run(command, "--help").stdout
-    (example,) = re.findall(r"^    mixsim (.*)$", text, re.MULTILINE)
-    assert shlex.split(example)[0] == command
-    if "recipe.toml" in example and command == "draft":
-        Path("recipe.toml").unlink()
-    example = example.replace("inclusions.oxide", "inclusions.filler")
-    assert run(*shlex.split(example)).exit_code in (0, 1)
+def test_examples_of_the_helps_run_one_after_the_other(run: Run) -> None:
+    Path("recipe.toml").unlink()
+    for command in ("", *COMMANDS):
+        text = run(*command.split(), "--help").stdout
+        (example,) = re.findall(r"^    mixsim (.*)$", text, re.MULTILINE)
+        asked = shlex.split(example)
+        assert command in ("", asked[0])
+        if asked[0] == "draft":
+            Path("recipe.toml").unlink(missing_ok=True)
+        result = run(*asked)
+        assert result.exit_code == 0, (example, result.stderr)
+
+
+def test_help_says_each_command_in_one_whole_line(run: Run) -> None:
+    listed = run("--help").stdout.split("Commands:\n")[1].split("\n\n")[0].splitlines()
+    assert len(listed) == len(COMMANDS)
+    for line in listed:
+        assert line.endswith(".") and not line.endswith("...")
+
+
+def test_an_equals_sign_may_join_an_option_of_several_words(run: Run) -> None:
+    plain = answer(run, "sweep", "recipe.toml", "--vary", LOADING, "0%", "9%", "3")
+    assert answer(run, "sweep", "recipe.toml", f"--vary={LOADING}", "0%", "9%", "3") == plain
 
 
 def test_the_program_alone_shows_its_help_and_version(run: Run) -> None:

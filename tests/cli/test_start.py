@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import json
+import os
 import subprocess
 import sys
 from pathlib import Path
@@ -53,6 +55,37 @@ def test_output_that_nobody_reads_is_no_fault() -> None:
     done = subprocess.run(["bash", "-c", command], cwd=ROOT, capture_output=True, text=True, check=False)
     assert done.stderr == ""
     assert done.returncode == 0
+
+
+@pytest.mark.parametrize("encoding", ["ascii", "latin-1", "cp1252"])
+def test_pipes_are_utf8_whatever_the_locale(encoding: str, tmp_path: Path) -> None:
+    def run(*arguments: str) -> subprocess.CompletedProcess[bytes]:
+        program = [sys.executable, "-m", "mixsim", *arguments]
+        return subprocess.run(
+            program,
+            cwd=ROOT,
+            capture_output=True,
+            check=False,
+            env=os.environ | {"PYTHONIOENCODING": encoding},
+        )
+
+    drafted = run("draft", "filled-resin")
+    assert (drafted.returncode, drafted.stderr) == (0, b"")
+    recipe = tmp_path / "recipe.toml"
+    recipe.write_bytes(drafted.stdout)
+    assert "± 0.03" in recipe.read_text(encoding="utf-8")
+    table = run("predict", str(recipe))
+    assert "ε′" in table.stdout.decode("utf-8")
+    assert json.loads(run("predict", str(recipe), "--json").stdout.decode("utf-8"))["title"]
+
+
+@pytest.mark.parametrize(("closed", "status"), [(">&-", 2), ("2>&-", 0)])
+def test_closed_streams(closed: str, status: int) -> None:
+    command = f"{sys.executable} -m mixsim predict configs/porous-silica-coating.toml --json {closed}"
+    done = subprocess.run(["bash", "-c", command], cwd=ROOT, capture_output=True, text=True, check=False)
+    assert done.returncode == status
+    assert done.stderr == ("mixsim: standard output: it is closed\n" if status else "")
+    assert status or json.loads(done.stdout)
 
 
 def test_public_names() -> None:
