@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass
 from typing import Any
@@ -27,6 +28,8 @@ class Parameter:
         What it is, for people.
     is_list
         Whether it takes a list of such numbers.
+    maximum
+        Greatest SI value allowed.
     """
 
     name: str
@@ -36,6 +39,7 @@ class Parameter:
     default: float | None
     meaning: str
     is_list: bool = False
+    maximum: float = math.inf
 
 
 @dataclass(frozen=True, slots=True)
@@ -80,6 +84,8 @@ class Term:
         Every parameter that a recipe may write, by name.
     summary, equation, source
         What a person wants to know of it, as text.
+    of
+        Which of ε and μ physics allows it for.
     """
 
     name: str
@@ -90,31 +96,32 @@ class Term:
     summary: str
     equation: str
     source: str
+    of: tuple[str, ...] = ("permittivity", "permeability")
 
     def resolve(self, given: Iterable[str]) -> Mapping[str, Route]:
         """The way in which each canonical parameter is given.
 
-            Parameters
-            ----------
-            given
-                Names of the parameters that are given.
+        Parameters
+        ----------
+        given
+            Names of the parameters that are given.
 
-            Returns
-            -------
-            routes
-                One way for each canonical parameter, in the order of `canonical`.
+        Returns
+        -------
+        routes
+            One way for each canonical parameter, in the order of `canonical`.
 
-            Raises
-            ------
-            Refusal
-                Where a parameter is unknown, missing, given in two ways, or used by none of the ways chosen.
+        Raises
+        ------
+        Refusal
+            Where a parameter is unknown, missing, given in two ways, or used by none of the ways chosen.
 
-            Examples
-            --------
-            >>> from mixsim.dispersion import TERMS
+        Examples
+        --------
+        >>> from mixsim.dispersion import TERMS
         >>> routes = TERMS["lorentz"].resolve({"step", "resonance", "damping"})
-            >>> routes["plasma"].key, routes["plasma"].function.__name__
-            ('step', 'plasma_from_step')
+        >>> routes["plasma"].key, routes["plasma"].function.__name__
+        ('step', 'plasma_from_step')
         """
         names = set(given)
         for name in sorted(names - set(self.parameters)):
@@ -137,6 +144,19 @@ class Term:
                     f"leave it out, or give it with {' or '.join(self._companions(name))}",
                 )
         return chosen
+
+    def leaves_open(self, canonical: str, given: Iterable[str]) -> bool:
+        """Whether a term has a canonical parameter and is not told it, in whichever description.
+
+        Examples
+        --------
+        >>> from mixsim.dispersion import TERMS
+        >>> TERMS["lorentz"].leaves_open("plasma", ["strength", "resonance", "damping"])
+        True
+        """
+        return not {route.key for route in self.canonical.get(canonical, ())}.intersection(given) and (
+            canonical in self.canonical
+        )
 
     def _chosen(self, canonical: str, names: set[str]) -> Route:
         routes = self.canonical[canonical]
@@ -163,6 +183,11 @@ class Term:
 def positive(name: str, dimension: str, meaning: str) -> Parameter:
     """Parameter that must be above zero and has no default."""
     return Parameter(name, dimension, minimum=0.0, exclusive=True, default=None, meaning=meaning)
+
+
+def bounded(name: str, meaning: str, *, least: float, most: float) -> Parameter:
+    """Plain number between two ends, both allowed."""
+    return Parameter(name, "number", least, False, None, meaning, maximum=most)
 
 
 def not_negative(name: str, dimension: str, meaning: str, default: float | None = None) -> Parameter:

@@ -112,7 +112,17 @@ class _Compiler:
         level: Input = Leafed(f"{path}.infinity")
         if susceptibility is not None:
             level = Derived(_level_from_susceptibility, {"susceptibility": susceptibility})
-        terms = (self._term(content, f"{path}.terms.{name}", {}) for name, content in response.terms.items())
+        shared = self._maybe(f"{path}.plasma")
+        terms = (
+            self._term(
+                content,
+                f"{path}.terms.{name}",
+                {"plasma": shared}
+                if shared and TERMS[content.model].leaves_open("plasma", _given(content))
+                else {},
+            )
+            for name, content in response.terms.items()
+        )
         return TermSum(level, tuple(terms))
 
     def _index_inputs(
@@ -130,7 +140,7 @@ class _Compiler:
     def _term(self, content: Any, path: str, implied: Mapping[str, Input]) -> BoundTerm:
         """A term of a recipe; `implied` are parameters that stand elsewhere than in it."""
         term = TERMS[content.model]
-        given = {name for name in term.parameters if getattr(content, name) is not None}
+        given = _given(content) & term.parameters.keys()
         numbers: dict[str, Input] = {
             name: implied[name] if name in implied else self._number(f"{path}.{name}", parameter)
             for name, parameter in term.parameters.items()
@@ -189,6 +199,11 @@ class _Compiler:
             "host_molar_mass": Leafed(f"{host}.molar_mass"),
         }
         return Derived(number_density_from_mole_fraction, inputs)
+
+
+def _given(content: Any) -> set[str]:
+    """Keys that a term of the recipe gives."""
+    return {name for name in type(content).model_fields if getattr(content, name) is not None}
 
 
 def _wants_concentration(content: Any) -> bool:

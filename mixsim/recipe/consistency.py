@@ -73,6 +73,24 @@ def _band(band: Mapping[str, Any]) -> Iterator[Finding]:
                 yield "band", Refusal(f"{key} is missing", "a band gives from and to, or values")
 
 
+def _terms(path: str, quantity: str, response: Mapping[str, Any]) -> Iterator[Finding]:
+    """Terms of one response, with the plasma frequency that some of them may share."""
+    sharing = False
+    for name, content in _tables(response, "terms"):
+        where = f"{path}.terms.{name}"
+        term = TERMS.get(str(content.get("model")))
+        if term is not None and quantity not in term.of:
+            kept = ", ".join(known for known, entry in TERMS.items() if quantity in entry.of)
+            yield f"{where}.model", Refusal(f"a {term.name} term in the {quantity}", f"it takes {kept}")
+            continue
+        shares = term is not None and "plasma" in response and term.leaves_open("plasma", content)
+        sharing = sharing or shares
+        yield from _term(where, content, ("plasma",) if shares else ())
+    if "plasma" in response and not sharing:
+        allowed = "it is for terms that give only their strength; leave it out"
+        yield f"{path}.plasma", Refusal("a plasma frequency that no term shares", allowed)
+
+
 def _material(name: str, material: Mapping[str, Any]) -> Iterator[Finding]:
     path = f"materials.{name}"
     if "based_on" not in material:
@@ -86,8 +104,7 @@ def _material(name: str, material: Mapping[str, Any]) -> Iterator[Finding]:
                 ("infinity", "susceptibility"),
                 "the level above all resonances",
             )
-            for term, content in _tables(response, "terms"):
-                yield from _term(f"{path}.{quantity}.terms.{term}", content, ())
+            yield from _terms(f"{path}.{quantity}", quantity, response)
     if "permittivity" in material:
         for key in ("static", "high_frequency"):
             if key in material:

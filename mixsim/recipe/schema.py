@@ -43,7 +43,9 @@ def _model_section(name: str, parameters: Mapping[str, Parameter], summary: str)
     fields: dict[str, Any] = {"model": (Literal[name], Field(description=summary))}
     for key, parameter in parameters.items():
         minimum = -math.inf if parameter.minimum is None else parameter.minimum
-        number = Number(parameter.dimension, minimum=minimum, exclusive=parameter.exclusive)
+        number = Number(
+            parameter.dimension, minimum=minimum, maximum=parameter.maximum, exclusive=parameter.exclusive
+        )
         kind: Any = Annotated[Leaf, number]
         if parameter.is_list:
             kind = Annotated[list[kind], Field(min_length=1)]
@@ -144,6 +146,7 @@ class Response(Section):
 
     infinity: Positive | None = Field(default=None, description="level above all resonances")
     susceptibility: Susceptibility | None = Field(default=None, description="that level less one")
+    plasma: Spectral | None = Field(default=None, description="shared by terms that give only strength")
     terms: dict[Name, Term] = {}
 
 

@@ -20,6 +20,19 @@ PLASMA, RESONANCE, DAMPING, MASS, TIME = 2.4e15, 3.1e15, 1.8e14, 0.35, 8.27e-12
 DENSITY = PLASMA**2 * VACUUM_PERMITTIVITY * ELECTRON_MASS / ELEMENTARY_CHARGE**2
 LINE = {"resonance": RESONANCE, "damping": DAMPING}
 
+SHAPES = {
+    "cole-cole": {"alpha": 0.2},
+    "cole-davidson": {"beta": 0.6},
+    "havriliak-negami": {"alpha": 0.2, "beta": 0.6},
+}
+PLAIN = {  # terms with one way to give each number
+    "wide-band-debye": {"step": 0.4, "low": 1e4, "high": 1e12},
+    "jonscher": {"amplitude": 2.0, "exponent": 0.6, "reference_frequency": 1e6},
+    "landau-lifshitz-gilbert": {"saturation": 5e10, "resonance": 2e10, "gilbert_damping": 0.02},
+    "gaussian": {"amplitude": 0.3, "resonance": RESONANCE, "width": 4e14},
+    "tauc-lorentz": {"amplitude": 1e17, "resonance": 5e15, "damping": 2e15, "gap": 2e15},
+}
+
 # One term and the numbers of each other data sheet, worked out here from the plain definitions.
 SAME = [
     ("lorentz", {"plasma": PLASMA, **LINE}),
@@ -49,12 +62,26 @@ SAME = [
     ("debye", {"step": 73.16, "relaxation_time": TIME}),
     ("debye", {"step": 73.16, "relaxation_frequency": spectral_from(1 / (2 * np.pi * TIME), "Hz")}),
     ("conduction", {"conductivity": 0.3}),
+    *[
+        (name, {"step": 2.0, **time, **shape})
+        for name, shape in SHAPES.items()
+        for time in (
+            {"relaxation_time": TIME},
+            {"relaxation_frequency": spectral_from(1 / (2 * np.pi * TIME), "Hz")},
+        )
+    ],
+    ("brendel-bormann", {"plasma": 2 * PLASMA, "strength": 0.25, "width": 3e14, **LINE}),
+    ("brendel-bormann", {"number_density": DENSITY, "width": 3e14, **LINE}),
+    *PLAIN.items(),
 ]
 CANONICAL = {
     "lorentz": {"plasma": PLASMA, **LINE},
     "drude": {"plasma": PLASMA, "damping": DAMPING},
     "debye": {"step": 73.16, "relaxation_time": TIME},
     "conduction": {"conductivity": 0.3},
+    "brendel-bormann": {"plasma": PLASMA, "width": 3e14, **LINE},
+    **{name: {"step": 2.0, "relaxation_time": TIME, **shape} for name, shape in SHAPES.items()},
+    **PLAIN,
 }
 
 

@@ -26,6 +26,17 @@ TYPICAL: dict[str, Any] = {
     "step": 1.7,
     "relaxation_time": 5e-16,
     "conductivity": 3e4,
+    "amplitude": 0.9,
+    "width": 3e14,
+    "gap": 1.1e15,
+    "alpha": 0.2,
+    "beta": 0.6,
+    "low": 2e13,
+    "high": 5e16,
+    "exponent": 0.6,
+    "reference_frequency": 1e15,
+    "saturation": 3e15,
+    "gilbert_damping": 0.05,
     "n": 1.5,
     "k": 0.02,
     "a": 1.478,
@@ -65,16 +76,16 @@ def test_scalars_rows_grids_and_read_only_input(
     assert row.shape == OMEGA.shape and row.dtype == np.complex128 and np.isfinite(row).all()
     for w, value in zip(OMEGA, row, strict=True):
         alone = function(float(w), **typical)
-        assert isinstance(alone, np.complex128) and alone == pytest.approx(value, rel=1e-14)
+        assert isinstance(alone, np.complex128) and alone == pytest.approx(value, rel=1e-12)
     assert function(np.empty(0), **typical).shape == (0,)
     for name, value in typical.items():
         factors = frozen([[0.5], [1.0], [1.5]])
         many = [factors * item for item in value] if isinstance(value, list) else factors * value
         grid = function(frozen(OMEGA), **{**typical, name: many})
         assert grid.shape == (3, len(OMEGA))
-        np.testing.assert_allclose(grid[1], row, rtol=1e-14)
+        np.testing.assert_allclose(grid[1], row, rtol=1e-12)
         half = [0.5 * item for item in value] if isinstance(value, list) else 0.5 * value
-        np.testing.assert_allclose(grid[0], function(OMEGA, **{**typical, name: half}), rtol=1e-14)
+        np.testing.assert_allclose(grid[0], function(OMEGA, **{**typical, name: half}), rtol=1e-12)
 
 
 @every_function
@@ -96,9 +107,11 @@ def test_low_broadcasts_and_carries_nan(term: Term) -> None:
         rate, plateau = term.low(**{**typical, name: frozen([[value], [np.nan]])})
         for batch, single in zip((rate, plateau), alone, strict=True):
             assert np.shape(single) == () and np.shape(batch) == (2, 1)
-            assert batch[0, 0] == single and np.isnan(batch[1, 0])
+            assert batch[0, 0] == pytest.approx(single, rel=1e-12, nan_ok=True)
+            assert np.isnan(batch[1, 0])
 
 
+WITHOUT_STATIC_LIMIT = ("brendel-bormann", "jonscher")
 positive = st.floats(1e-12, 1e12)
 
 
@@ -108,15 +121,20 @@ def test_terms_are_passive(term: Term, data: st.DataObject, omega: float) -> Non
     values = {}
     for name in term.canonical:
         parameter = term.parameters[name]
+        if np.isfinite(parameter.maximum):
+            values[name] = data.draw(st.floats(parameter.minimum, parameter.maximum), label=name)
+            continue
         zero = st.just(0.0) if parameter.minimum == 0.0 and not parameter.exclusive else st.nothing()
         values[name] = data.draw(positive | zero, label=name)
     value = term.function(omega, **values)
     if np.isfinite(value):
         assert value.imag >= 0.0 and not np.signbit(value.imag)
     else:
-        assert values.get("damping") == 0.0 and values.get("resonance") == omega
+        assert values.get("low", 0.0) == values.get("high", 1.0) or values.get("resonance") == omega
+        assert "high" in values or values.get("damping", values.get("gilbert_damping")) == 0.0
     rate, plateau = term.low(**values)
-    assert rate >= 0.0 and np.isfinite(plateau)
+    assert rate >= 0.0
+    assert np.isfinite(plateau) or term.name in WITHOUT_STATIC_LIMIT
 
 
 @pytest.mark.parametrize("entry", ENTRIES, ids=lambda entry: entry.name)

@@ -27,7 +27,74 @@ NAIVE: dict[str, Callable[..., Any]] = {
     "drude": lambda w, plasma, damping: -(plasma**2) / (w**2 + J * damping * w),
     "debye": lambda w, step, relaxation_time: step / (1 - J * w * relaxation_time),
     "conduction": lambda w, conductivity: J * conductivity / (MP.mpf(VACUUM_PERMITTIVITY) * w),
+    "cole-cole": lambda w, step, relaxation_time, alpha: (
+        step / (1 + MP.power(-J * w * relaxation_time, 1 - alpha))
+    ),
+    "cole-davidson": lambda w, step, relaxation_time, beta: (
+        step / MP.power(1 - J * w * relaxation_time, beta)
+    ),
+    "havriliak-negami": lambda w, step, relaxation_time, alpha, beta: (
+        step / MP.power(1 + MP.power(-J * w * relaxation_time, 1 - alpha), beta)
+    ),
+    "wide-band-debye": lambda w, step, low, high: (
+        step * MP.log((high - J * w) / (low - J * w)) / MP.log(high / low)
+    ),
+    "jonscher": lambda w, amplitude, exponent, reference_frequency: (
+        amplitude * MP.power(-J * w / reference_frequency, exponent - 1)
+    ),
+    "landau-lifshitz-gilbert": lambda w, saturation, resonance, gilbert_damping: (
+        saturation
+        * (resonance - J * gilbert_damping * w)
+        / ((resonance - J * gilbert_damping * w) ** 2 - w**2)
+    ),
+    "gaussian": lambda w, amplitude, resonance, width: naive_gaussian(w, amplitude, resonance, width),
+    "brendel-bormann": lambda w, plasma, resonance, damping, width: naive_spread(
+        w, plasma, resonance, damping, width
+    ),
+    "tauc-lorentz": lambda w, amplitude, resonance, damping, gap: naive_gap(
+        w, amplitude, resonance, damping, gap
+    ),
 }
+
+
+def faddeeva(z: Any) -> Any:
+    return MP.exp(-z * z) * MP.erfc(-J * z)
+
+
+def naive_gaussian(w: Any, amplitude: Any, resonance: Any, width: Any) -> Any:
+    scale = 2 * MP.sqrt(MP.log(2)) / width
+    return J * amplitude * (faddeeva((w - resonance) * scale) - faddeeva((w + resonance) * scale))
+
+
+def naive_spread(w: Any, plasma: Any, resonance: Any, damping: Any, width: Any) -> Any:
+    a = MP.sqrt(w * w + J * damping * w)
+    pair = sum(faddeeva((a + sign * resonance) / (MP.sqrt(2) * width)) for sign in (-1, 1))
+    return J * MP.sqrt(MP.pi) * plasma**2 / (2 * MP.sqrt(2) * a * width) * pair
+
+
+def naive_gap(w: Any, amplitude: Any, resonance: Any, damping: Any, gap: Any) -> Any:
+    """ε″ as published, ε′ by its Kramers–Kronig integral, the pole taken off it."""
+
+    def loss(x: Any) -> Any:
+        if x <= gap:
+            return MP.mpf(0)
+        below = (x * x - resonance**2) ** 2 + damping**2 * x * x
+        return amplitude * resonance * damping * (x - gap) ** 2 / (below * x)
+
+    here = w * loss(w)
+
+    def integrand(x: Any) -> Any:
+        return (x * loss(x) - here) / (x * x - w * w) if x != w else MP.mpf(0)
+
+    unit = resonance
+    marks = sorted(
+        {MP.mpf(0), gap, w, resonance, 0.7 * resonance, 1.4 * resonance, 4 * unit, 30 * unit, 1000 * unit}
+    )
+    with MP.workdps(25):
+        real = 2 / MP.pi * (MP.quad(integrand, marks) + MP.quad(integrand, [marks[-1], MP.inf]))
+    return real + J * loss(w)
+
+
 CASES = {
     "lorentz": [
         {"plasma": 3.0, "resonance": 2.0, "damping": 0.4},
@@ -43,7 +110,34 @@ CASES = {
     ],
     "debye": [{"step": 73.16, "relaxation_time": 8.27e-12}, {"step": 2.0, "relaxation_time": 0.5}],
     "conduction": [{"conductivity": 0.3}, {"conductivity": 0.0}],
+    "cole-cole": [{"step": 2.0, "relaxation_time": 0.5, "alpha": a} for a in (0.0, 0.1, 0.6)],
+    "cole-davidson": [{"step": 2.0, "relaxation_time": 0.5, "beta": b} for b in (1.0, 0.4)],
+    "havriliak-negami": [
+        {"step": 2.0, "relaxation_time": 0.5, "alpha": a, "beta": b}
+        for a, b in ((0.0, 1.0), (0.3, 1.0), (0.0, 0.7), (0.25, 0.6))
+    ],
+    "wide-band-debye": [{"step": 0.4, "low": 1e-3, "high": 1e5}, {"step": 0.4, "low": 0.9, "high": 1.1}],
+    "jonscher": [{"amplitude": 2.0, "exponent": n, "reference_frequency": 1.0} for n in (0.3, 0.8)],
+    "landau-lifshitz-gilbert": [
+        {"saturation": 5.0, "resonance": 2.0, "gilbert_damping": a} for a in (0.0, 0.02, 1.5)
+    ],
+    "gaussian": [
+        {"amplitude": 2.0, "resonance": 2.0, "width": 0.3},
+        {"amplitude": 2.0, "resonance": 2.0, "width": 3.0},
+    ],
+    "brendel-bormann": [
+        {"plasma": 3.0, "resonance": 2.0, "damping": 0.2, "width": 0.3},
+        {"plasma": 3.0, "resonance": 2.0, "damping": 0.01, "width": 1.0},
+    ],
+    "tauc-lorentz": [
+        {"amplitude": 100.0, "resonance": 4.0, "damping": 2.0, "gap": 1.5},
+        {"amplitude": 30.0, "resonance": 3.0, "damping": 7.0, "gap": 1.0},
+        {"amplitude": 20.0, "resonance": 3.0, "damping": 0.5, "gap": 0.0},
+    ],
 }
+SPECIAL = {"gaussian": 1e-13, "brendel-bormann": 1e-9, "tauc-lorentz": 1e-9}
+WITHOUT_STATIC_LIMIT = ("brendel-bormann", "jonscher")
+SLOW = ("cole-cole", "havriliak-negami")  # towards the limit as a fractional power of ω
 POINTS = [(name, case) for name, cases in CASES.items() for case in cases]
 
 
@@ -61,6 +155,10 @@ def test_term_equals_its_naive_transcription(name: str, case: dict[str, float]) 
     for factor in (1e-9, 1e-3, 0.7, 0.999999, 1.000001, 1.6, 1e3, 1e9):
         value = TERMS[name].function(scale * factor, **case)
         truth = complex(exact(name, scale * factor, case))
+        if name in SPECIAL:  # special functions and logarithms that cancel far from the band
+            assert abs(value - truth) < SPECIAL[name] * max(abs(truth), 1.0), factor
+            assert value.imag >= 0.0
+            continue
         assert value.real == pytest.approx(truth.real, rel=1e-14, abs=1e-14 * abs(truth)), factor
         assert value.imag == pytest.approx(truth.imag, rel=1e-14, abs=1e-300), factor
 
@@ -70,6 +168,13 @@ def test_term_equals_its_naive_transcription(name: str, case: dict[str, float]) 
 )
 def test_low_is_the_limit_of_zero_frequency(name: str, case: dict[str, float]) -> None:
     rate, plateau = TERMS[name].low(**case)
+    if name in WITHOUT_STATIC_LIMIT:
+        assert np.isnan(plateau)
+        return
+    if name in SPECIAL or name in SLOW:
+        near = TERMS[name].function(1e-9 if name in SPECIAL else 1e-40, **case)
+        assert near.real == pytest.approx(float(plateau), rel=1e-8)
+        return
     scale = MP.mpf(case.get("resonance") or case.get("damping") or 1.0)
     # The next order is ω itself, so half of the 60 digits are left to tell the limit by.
     omega = scale * MP.mpf("1e-30")
@@ -86,7 +191,7 @@ def test_carriers_without_collisions_have_no_finite_rate() -> None:
 
 @pytest.mark.parametrize(("name", "case"), POINTS)
 def test_terms_vanish_at_high_frequency(name: str, case: dict[str, float]) -> None:
-    assert abs(TERMS[name].function(1e40, **case)) < 1e-8
+    assert abs(TERMS[name].function(1e40, **case)) < 1e-7
 
 
 @pytest.mark.parametrize(
@@ -169,8 +274,15 @@ def test_a_window_loses_more_of_the_f_sum_than_of_the_step(
 @pytest.mark.parametrize("omega", [0.3, 1.9, 2.3, 6.0])
 @pytest.mark.parametrize(
     "term",
-    [lambda w: lorentz(w, **LORENTZ), lambda w: debye(w, step=2.0, relaxation_time=0.5)],
-    ids=["lorentz", "debye"],
+    [
+        lambda w: lorentz(w, **LORENTZ),
+        lambda w: debye(w, step=2.0, relaxation_time=0.5),
+        *[
+            lambda w, n=name, c=cases[-1]: TERMS[n].function(w, **c)
+            for name, cases in CASES.items()
+            if name not in ("lorentz", "drude", "debye", "conduction", "jonscher", "tauc-lorentz")
+        ],
+    ],
 )
 def test_kramers_kronig(term: Callable[[float], complex], omega: float) -> None:
     here = omega * term(omega).imag

@@ -215,3 +215,46 @@ def test_a_naive_transcription() -> None:
         expected = (above + (1.0 - f_a - f_b - f_v) * h) / below
         found = mixsim.parse(text).compile().response({}, np.array([w])).permittivity[0]
         assert cmath.isclose(found, expected, rel_tol=1e-11)
+
+
+SHARED = """
+host.material = "m"
+[materials.m.permittivity]
+infinity = 1.0
+plasma = "9 eV"
+[materials.m.permittivity.terms]
+free = { model = "drude", strength = 0.7, damping = "0.05 eV" }
+band = { model = "lorentz", strength = 0.3, resonance = "3 eV", damping = "0.9 eV" }
+own = { model = "lorentz", step = 0.5, resonance = "5 eV", damping = "0.9 eV" }
+"""
+
+
+def test_terms_share_a_plasma_frequency_that_they_do_not_give() -> None:
+    """The generalised form: one ωp, strengths; a term that gives its own keeps it."""
+    each = SHARED.replace('plasma = "9 eV"\n', "").replace("strength", 'plasma = "9 eV", strength')
+    shared, apart = mixsim.parse(SHARED).compile(), mixsim.parse(each).compile()
+    assert np.array_equal(shared.response({}, OMEGA).permittivity, apart.response({}, OMEGA).permittivity)
+    doubled = shared.response({"materials.m.permittivity.plasma": 2.0}, OMEGA).permittivity
+    assert not np.array_equal(doubled, shared.response({}, OMEGA).permittivity)
+
+
+def test_a_plasma_frequency_that_no_term_shares_is_refused() -> None:
+    with pytest.raises(mixsim.BadInput, match="no term shares"):
+        mixsim.parse(
+            'host.material = "m"\nmaterials.m.permittivity = { infinity = 2.0, plasma = "9 eV", terms = '
+            '{ a = { model = "lorentz", step = 0.5, resonance = "5 eV", damping = "0.9 eV" } } }\n'
+        )
+
+
+@pytest.mark.parametrize(
+    ("model", "quantity"), [("drude", "permeability"), ("landau-lifshitz-gilbert", "permittivity")]
+)
+def test_terms_stand_only_where_physics_allows_them(model: str, quantity: str) -> None:
+    text = f"""
+        host.material = "m"
+        materials.m.permittivity.infinity = 2.0
+        materials.m.permeability.infinity = 1.0
+        materials.m.{quantity}.terms.t.model = "{model}"
+    """
+    with pytest.raises(mixsim.BadInput, match=f"a {model} term in the {quantity}"):
+        mixsim.parse(text)

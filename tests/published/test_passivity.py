@@ -16,6 +16,7 @@ from mixsim.mixing import RULES
 
 DRAWS = 120
 SPANS = {  # decades of the SI value
+    "shape": (-2, 0),
     "spectral": (9, 16), "rate": (8, 16), "number": (-3, 2), "time": (-15, -8), "conductivity": (-8, 7),
     "number density": (22, 29), "electron masses": (-1, 1), "mobility": (-5, 0),
     "length": (-7, -5), "area": (-14, -10),
@@ -36,12 +37,15 @@ def terms_of(path: str) -> tuple[str, dict[str, str]]:
     """TOML of a response with every registered term in it, and the dimension of each number by its path."""
     lines, dimensions = [f"{path}.infinity = 1.5"], {f"{path}.infinity": "number"}
     for name, term in TERMS.items():
+        if path.rsplit(".", 1)[1] not in term.of:
+            continue
         lines.append(f'{path}.terms.{name}.model = "{name}"')
         for key in route_of(term):
             parameter = term.parameters[key]
             unit = UNITS.get(parameter.dimension)
-            lines.append(f"{path}.terms.{name}.{key} = " + (f'"1 {unit}"' if unit else "1.0"))
-            dimensions[f"{path}.terms.{name}.{key}"] = parameter.dimension
+            lines.append(f"{path}.terms.{name}.{key} = " + (f'"1 {unit}"' if unit else "0.5"))
+            shape = np.isfinite(parameter.maximum)
+            dimensions[f"{path}.terms.{name}.{key}"] = "shape" if shape else parameter.dimension
     return "\n".join(lines), dimensions
 
 
@@ -50,6 +54,8 @@ def drawn(dimensions: dict[str, str], random: np.random.Generator) -> dict[str, 
     for path, dimension in dimensions.items():
         low, high = SPANS[dimension]
         values[path] = 10.0 ** random.uniform(low, high, DRAWS)
+        if dimension == "shape":
+            values[path] = random.uniform(0.05, 0.95, DRAWS)
         if path.endswith(".infinity"):
             values[path] = random.uniform(1.0, 20.0, DRAWS)
     return values
@@ -65,15 +71,16 @@ def test_one_model_under_each_rule(model: str, rule: str) -> None:
     """Three kinds of sphere and voids, one model each, 120 draws over many decades, 181 frequencies."""
     text, values = 'host.material = "m0"\n', {}
     random = np.random.default_rng(1935)
+    quantity = TERMS[model].of[0]
     for name in ("m0", "m1", "m2"):
-        path = f"materials.{name}.permittivity"
+        path = f"materials.{name}.{quantity}"
+        text += f"materials.{name}.permittivity.infinity = 2.0\n" if quantity == "permeability" else ""
         body, dimensions = terms_of(path)
         chosen = (f"{path}.infinity", f"{path}.terms.{model}.")
         text += "\n".join(line for line in body.splitlines() if line.startswith(chosen)) + "\n"
         values |= drawn({p: d for p, d in dimensions.items() if p.startswith(chosen)}, random)
-    assert passive(
-        evaluator.permittivity(text + SPHERES + RULE.format(rule), OMEGA, values | fractions(random))
-    )
+    answer = evaluator.mixture(text + SPHERES + RULE.format(rule)).response(values | fractions(random), OMEGA)
+    assert passive(getattr(answer, quantity))
 
 
 @pytest.mark.parametrize("rule", RULES)

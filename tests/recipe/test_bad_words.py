@@ -88,7 +88,7 @@ CASES: dict[str, Broken] = {
         "permittivity.infinty = 2.25",
         f"{MATRIX}.permittivity.infinty",
         "unknown key 'infinty'",
-        "infinity, susceptibility, terms",
+        "infinity, susceptibility, plasma, terms",
         "infinity",
     ),
     "key of a term": swap(
@@ -311,7 +311,7 @@ CASES: dict[str, Broken] = {
         "permittivity = 2.25",
         f"{MATRIX}.permittivity",
         "2.25 where a table is needed",
-        "infinity, susceptibility, terms",
+        "infinity, susceptibility, plasma, terms",
     ),
     "number for an index": swap(
         HOST_LEVEL, "index = 1.5", f"{MATRIX}.index", "1.5 where a table is needed", "a table with model"

@@ -201,4 +201,5 @@ DRUDE = Term(
     summary="free carriers with one collision rate",
     equation="−ωp² / (ω² + iγω)",
     source="P. Drude, Ann. Phys. 306, 566 (1900)",
+    of=("permittivity",),
 )
