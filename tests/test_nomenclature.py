@@ -11,7 +11,14 @@ from typing import Any
 import pytest
 
 from mixsim import composition, mixing, observables
-from mixsim.dispersion import INDEX_MODELS, TERMS, descriptions, interpolate
+from mixsim.dispersion import (
+    INDEX_MODELS,
+    TERMS,
+    descriptions,
+    infinity_from_pair,
+    interpolate,
+    step_from_pair,
+)
 from mixsim.mixing import RULES
 
 DEVELOPERS = (Path(__file__).parents[1] / "DEVELOPERS.md").read_text(encoding="utf-8")
@@ -24,7 +31,7 @@ def formulas() -> Iterator[Callable[..., Any]]:
         routes = [route for ways in term.canonical.values() for route in ways]
         yield from (route.function for route in routes if route.function is not None)
     yield from (model.function for model in INDEX_MODELS.values())
-    yield from (descriptions.width_from_wavelength, interpolate)
+    yield from (descriptions.width_from_wavelength, interpolate, infinity_from_pair, step_from_pair)
     for rule in RULES.values():
         given = (rule.function, rule.fraction_from, rule.inclusion_from)
         yield from (function for function in given if function is not None)

@@ -18,6 +18,7 @@ from mixsim.units import SPEED_OF_LIGHT, show, written_unit
 SIZE_PARAMETER = 0.3  # πdn/λ: scattering and retardation enter at its square, here a tenth
 RANDOM_PACKING = 0.64  # of equal hard spheres, common practice
 TOUCHING = 0.16  # volume fraction at which random hard spheres percolate, common practice
+DECADE = 2.0  # ratio of the ends of a band over which a constant loss is still handy
 SPREAD = 0.2  # share by which other rules may differ before it is said
 CONTRACTION = 0.1  # of the volume on mixing, which no common solution reaches; common practice
 PASSIVE = 1e-9  # share of |ε| below which a negative loss is rounding
@@ -40,6 +41,7 @@ def cautions(
         *_ranges(recipe, mixture, axis),
         *_sizes(recipe, axis, constituents, largest),
         *_not_finite(axis, response),
+        *_not_causal(recipe, mixture, axis),
         *_crowding(recipe, mixture, composition),
         *_no_limit(mixture, limits),
         *_not_passive(recipe, mixture, axis, response, constituents),
@@ -165,6 +167,23 @@ def _partial_volumes(composition: Composition) -> Iterator[Caution]:
             f"with this density the pure constituents would fill {100 * worst:.4g} % of the volume: a change "
             f"beyond {CONTRACTION:.0%} on mixing is rather a slip in a density or a weight",
         )
+
+
+def _not_causal(recipe: Recipe, mixture: Mixture, axis: Axis) -> Iterator[Caution]:
+    """Losses that are the same everywhere, and levels below one that a wide band of loss leaves."""
+    for name in dict.fromkeys(phase.material for phase in mixture.phases if phase.name != VOIDS):
+        material = recipe.schema.materials[name]
+        for quantity in ("permittivity", "permeability"):
+            response = getattr(material, quantity)
+            lossy = (
+                response is not None and response.model == "constant" and response.loss_tangent.value > 0.0
+            )
+            if lossy and len(axis.omega) > 1 and axis.omega.max() > DECADE * axis.omega.min():
+                yield Caution(
+                    "not-causal",
+                    f"materials.{name}.{quantity}",
+                    f"the same loss {_span(axis)} is not causal; the wide-band-debye model is",
+                )
 
 
 def _not_finite(axis: Axis, response: Response) -> Iterator[Caution]:

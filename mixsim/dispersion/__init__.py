@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from mixsim.dispersion.data_sheet import infinity_from_pair, step_from_pair
 from mixsim.dispersion.descriptions import width_from_wavelength
 from mixsim.dispersion.index import INDEX_MODELS, IndexModel
 from mixsim.dispersion.registry import Parameter, Route, Term
@@ -16,7 +17,9 @@ __all__ = [
     "Route",
     "Table",
     "Term",
+    "infinity_from_pair",
     "interpolate",
     "read_table",
+    "step_from_pair",
     "width_from_wavelength",
 ]

@@ -6,13 +6,22 @@ from collections.abc import Mapping
 from typing import Any
 
 from mixsim.composition import number_density_from_mole_fraction, number_density_from_weight_fraction
-from mixsim.dispersion import INDEX_MODELS, TERMS, IndexModel, Parameter, width_from_wavelength
+from mixsim.dispersion import (
+    INDEX_MODELS,
+    TERMS,
+    IndexModel,
+    Parameter,
+    infinity_from_pair,
+    step_from_pair,
+    width_from_wavelength,
+)
 from mixsim.mixing import rule_named
 from mixsim.mixture.inputs import Derived, Fixed, Input, Leafed
 from mixsim.mixture.mixture import HOST, Constituent, Mixture
 from mixsim.mixture.spectra import (
     VACUUM,
     BoundTerm,
+    ConstantLoss,
     Doped,
     Index,
     LocalPlasma,
@@ -21,6 +30,7 @@ from mixsim.mixture.spectra import (
     TermSum,
 )
 from mixsim.recipe import Recipe, loading_of
+from mixsim.units import read
 
 
 def compile_recipe(recipe: Recipe) -> Mixture:
@@ -108,6 +118,8 @@ class _Compiler:
         return self._response(permeability, f"materials.{name}.permeability")
 
     def _response(self, response: Any, path: str) -> Spectrum:
+        if response.value is not None:
+            return self._pair(response, path)
         susceptibility = self._maybe(f"{path}.susceptibility")
         level: Input = Leafed(f"{path}.infinity")
         if susceptibility is not None:
@@ -124,6 +136,20 @@ class _Compiler:
             for name, content in response.terms.items()
         )
         return TermSum(level, tuple(terms))
+
+    def _pair(self, response: Any, path: str) -> Spectrum:
+        """A data sheet's pair at one frequency, as a causal spectrum or as a constant."""
+        given: dict[str, Input] = {key: Leafed(f"{path}.{key}") for key in ("value", "loss_tangent")}
+        if response.model == "constant":
+            return ConstantLoss(**given)
+        given |= {
+            "at": Leafed(f"{path}.at"),
+            "low": self._maybe(f"{path}.low") or Fixed(read("1 kHz", "spectral").value),
+            "high": self._maybe(f"{path}.high") or Fixed(read("1 THz", "spectral").value),
+        }
+        ends = {key: given[key] for key in ("low", "high")}
+        term = BoundTerm(TERMS["wide-band-debye"], {"step": Derived(step_from_pair, given), **ends})
+        return TermSum(Derived(infinity_from_pair, given), (term,))
 
     def _index_inputs(
         self, model: IndexModel, content: Any, path: str

@@ -58,6 +58,31 @@ VACUUM = Constant()
 
 
 @dataclass(frozen=True, eq=False)
+class ConstantLoss:
+    """A data sheet's pair taken to hold at every frequency: handy in a narrow band, and not causal."""
+
+    value: Input
+    loss_tangent: Input
+
+    @cached_property
+    def paths(self) -> frozenset[str]:
+        return paths_of((self.value, self.loss_tangent))
+
+    def at(self, x: Values, omega: Any) -> Any:
+        return self._level(x) + 0.0 * omega
+
+    def low(self, x: Values) -> tuple[Any, Any]:
+        return 0.0, self._level(x)
+
+    def high(self, x: Values) -> Any:
+        return self._level(x)
+
+    def _level(self, x: Values) -> Any:
+        value = self.value(x)
+        return value + 1j * (value * self.loss_tangent(x))
+
+
+@dataclass(frozen=True, eq=False)
 class BoundTerm:
     """A registered term and where it takes each canonical parameter from."""
 

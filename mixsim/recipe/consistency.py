@@ -20,6 +20,7 @@ from mixsim.recipe.leaves import join
 from mixsim.recipe.schema import NAME_PATTERN
 from mixsim.units import read
 
+_PAIR = ("loss_tangent", "at", "model", "low", "high")
 CONCENTRATIONS = ("number_density", "weight_fraction", "mole_fraction")
 
 
@@ -73,6 +74,23 @@ def _band(band: Mapping[str, Any]) -> Iterator[Finding]:
                 yield "band", Refusal(f"{key} is missing", "a band gives from and to, or values")
 
 
+def _pair(path: str, response: Mapping[str, Any]) -> Iterator[Finding]:
+    """A data sheet's permittivity and loss tangent at one frequency, complete and alone."""
+    for key in ("infinity", "susceptibility", "plasma", "terms"):
+        if key in response:
+            yield f"{path}.{key}", Refusal(f"{key} beside value", "a data sheet's pair stands alone")
+    causal = response.get("model") == "wide-band-debye"
+    for key in ("loss_tangent", "model", *(("at",) if causal else ())):
+        if key not in response:
+            allowed = (
+                'such as loss_tangent = 0.0025, at = "10 GHz", model = "wide-band-debye" (or "constant")'
+            )
+            yield path, Refusal(f"value without {key}", allowed)
+    for key in ("low", "high"):
+        if key in response and not causal:
+            yield f"{path}.{key}", Refusal(f"{key} without the wide-band-debye model", "leave it out")
+
+
 def _terms(path: str, quantity: str, response: Mapping[str, Any]) -> Iterator[Finding]:
     """Terms of one response, with the plasma frequency that some of them may share."""
     sharing = False
@@ -98,12 +116,22 @@ def _material(name: str, material: Mapping[str, Any]) -> Iterator[Finding]:
     for quantity in ("permittivity", "permeability"):
         response = material.get(quantity)
         if isinstance(response, Mapping):
+            if "value" in response:
+                yield from _pair(f"{path}.{quantity}", response)
+                continue
             yield from _one_of(
                 f"{path}.{quantity}",
                 response,
                 ("infinity", "susceptibility"),
                 "the level above all resonances",
             )
+            for key in _PAIR:
+                if key in response:
+                    found = f"{key} without value"
+                    yield (
+                        f"{path}.{quantity}.{key}",
+                        Refusal(found, "a data sheet's pair has value, loss_tangent, at"),
+                    )
             yield from _terms(f"{path}.{quantity}", quantity, response)
     if "permittivity" in material:
         for key in ("static", "high_frequency"):

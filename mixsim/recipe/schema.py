@@ -20,6 +20,7 @@ Name = Annotated[str, Field(pattern=NAME_PATTERN)]
 
 Susceptibility = Annotated[Leaf, Number("number", minimum=-1.0, exclusive=True)]
 Positive = Annotated[Leaf, Number("number", minimum=0.0, exclusive=True)]
+NotNegative = Annotated[Leaf, Number("number", minimum=0.0)]
 Parts = Annotated[Leaf, Number("number", minimum=0.0)]
 Fraction = Annotated[Leaf, Number("fraction", minimum=0.0, maximum=1.0)]
 Spectral = Annotated[Leaf, Number("spectral", minimum=0.0, exclusive=True)]
@@ -148,6 +149,14 @@ class Response(Section):
     susceptibility: Susceptibility | None = Field(default=None, description="that level less one")
     plasma: Spectral | None = Field(default=None, description="shared by terms that give only strength")
     terms: dict[Name, Term] = {}
+    value: Positive | None = Field(default=None, description="of a data sheet, at one frequency")
+    loss_tangent: NotNegative | None = Field(default=None, description="beside value")
+    at: Spectral | None = Field(default=None, description="the frequency of the two")
+    model: Literal["wide-band-debye", "constant"] | None = Field(
+        default=None, description="what the pair becomes: causal, or the same everywhere, which is not"
+    )
+    low: Spectral | None = Field(default=None, description="where the level loss begins; 1 kHz if left out")
+    high: Spectral | None = Field(default=None, description="where it ends; 1 THz if left out")
 
 
 class Valid(Section):
