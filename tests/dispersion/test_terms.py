@@ -295,3 +295,44 @@ def test_kramers_kronig(term: Callable[[float], complex], omega: float) -> None:
     pieces = pairwise(edges)
     total = sum(quad(integrand, a, b, epsabs=1e-10, epsrel=1e-10, limit=400)[0] for a, b in pieces)
     assert 2 / np.pi * total == pytest.approx(term(omega).real, rel=1e-6, abs=1e-7)
+
+
+@pytest.mark.parametrize("energy", [0.4, 1.4, 1.6, 3.0, 4.0, 7.5])
+def test_gap_against_the_published_real_part(energy: float) -> None:
+    """memory: Jellison and Modine, Appl. Phys. Lett. 69, 371 (1996), with its logarithms and arctangents."""
+    a, e0, c, eg, e = 100.0, 4.0, 2.0, 1.5, energy
+    alpha, gamma2 = np.sqrt(4 * e0**2 - c**2), e0**2 - c**2 / 2
+    zeta = (e**2 - gamma2) ** 2 + alpha**2 * c**2 / 4
+    a_ln = (eg**2 - e0**2) * e**2 + eg**2 * c**2 - e0**2 * (e0**2 + 3 * eg**2)
+    a_atan = (e**2 - e0**2) * (e0**2 + eg**2) + eg**2 * c**2
+    ratio = (e0**2 + eg**2 + alpha * eg) / (e0**2 + eg**2 - alpha * eg)
+    turn = np.pi - np.arctan((2 * eg + alpha) / c) + np.arctan((alpha - 2 * eg) / c)
+    angle = np.pi + 2 * np.arctan(2 * (gamma2 - eg**2) / (alpha * c))
+    edge = abs(e - eg) * (e + eg) / np.sqrt((e0**2 - eg**2) ** 2 + eg**2 * c**2)
+    real = a * c * a_ln / (2 * alpha * e0) * np.log(ratio) - a * a_atan / e0 * turn
+    real += 2 * a * e0 / alpha * eg * (e**2 - gamma2) * angle
+    real += -a * e0 * c * (e**2 + eg**2) / e * np.log(abs(e - eg) / (e + eg)) + 2 * a * e0 * c * eg * np.log(
+        edge
+    )
+    found = TERMS["tauc-lorentz"].function(e, amplitude=a, resonance=e0, damping=c, gap=eg)
+    assert found.real == pytest.approx(real / (np.pi * zeta), rel=1e-10)
+
+
+@pytest.mark.parametrize("alpha", [0.0, 0.2, 0.5])
+def test_cole_cole_lies_on_a_circle(alpha: float) -> None:
+    """Centre (Δ/2, −(Δ/2) tan(απ/2)), radius (Δ/2)/cos(απ/2)."""
+    values = TERMS["cole-cole"].function(
+        np.geomspace(1e-4, 1e4, 41), step=2.0, relaxation_time=1.0, alpha=alpha
+    )
+    centre = 1.0 - 1j * np.tan(alpha * np.pi / 2)
+    assert np.abs(values - centre) == pytest.approx(np.full(41, 1.0 / np.cos(alpha * np.pi / 2)), rel=1e-12)
+
+
+def test_lyddane_sachs_teller() -> None:
+    """ω_L²/ω_T² = ε_s/ε∞ of one undamped band: where ε′ crosses zero above it."""
+    infinity, resonance, plasma = 4.0, 2.0, 3.0
+    static = infinity + lorentz_low(plasma=plasma, resonance=resonance, damping=0.0)[1]
+    longitudinal = resonance * np.sqrt(static / infinity)
+    assert infinity + lorentz(
+        longitudinal, plasma=plasma, resonance=resonance, damping=0.0
+    ).real == pytest.approx(0.0, abs=1e-13)
