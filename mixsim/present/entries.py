@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING, Any
 from mixsim.dispersion import INDEX_MODELS, TERMS, IndexModel, Parameter, Term
 from mixsim.mixing import RULES, Rule
 from mixsim.observables import QUANTITIES, Quantity
+from mixsim.present.all_words import in_all_words
 from mixsim.present.columns import described, paragraph, table, width
 from mixsim.recipe import library
 from mixsim.units import Leaf, accepted_units, dimension_named
@@ -149,7 +150,9 @@ def _material(name: str, content: Mapping[str, Any]) -> str:
     )
     skip = ("title", "kind", "source", "valid")
     rows = [(path, value) for path, value in _flat(content, "") if path.split(".")[0] not in skip]
-    return f"{head}\n\n{described(('key', 'value'), rows)}"
+    shown = f"{head}\n\n{described(('key', 'value'), rows)}"
+    words = in_all_words(name)
+    return f"{shown}\n\n{words}" if words else shown
 
 
 def _flat(node: Any, path: str) -> Iterable[tuple[str, str]]:
