@@ -52,7 +52,7 @@ def _response(spectrum: TermSum, x: Mapping[str, Any], symbol: str) -> str:
             # a width has no wavelength of its own
             shown = [_in(value, unit) if is_place or unit != "nm" else "" for unit in UNITS]
             spectral.append([word, key, *shown])
-        plain += [[word, key, text] for key, text in _consequences(term, values)]
+        plain += [[word, key, text] for key, text in _consequences(term, values, electric=symbol == "ε")]
     lines = [f"terms of {symbol} in every unit, {symbol}∞ = {level:.6g}"]
     if spectral:
         lines.append(table(["term", "", *UNITS], spectral, left=2))
@@ -84,14 +84,16 @@ def _frequencies(
         yield "relaxation", 1.0 / values["relaxation_time"], True
 
 
-def _consequences(term: BoundTerm, values: Mapping[str, float]) -> Iterator[tuple[str, str]]:
+def _consequences(
+    term: BoundTerm, values: Mapping[str, float], *, electric: bool
+) -> Iterator[tuple[str, str]]:
     """What else a data sheet would say of a term."""
     rate, plateau = (float(part) for part in term.term.low(**values))
     if rate == 0.0 and np.isfinite(plateau):
         yield "static step", f"{plateau:.5g}"
     elif 0.0 < rate < np.inf:
         yield "dc conductivity", f"{rate * VACUUM_PERMITTIVITY:.5g} S/m"
-    if "plasma" in values:
+    if "plasma" in values and electric:
         density = values["plasma"] ** 2 * VACUUM_PERMITTIVITY * ELECTRON_MASS / ELEMENTARY_CHARGE**2
         yield "density × strength / mass", f"{density / 1e6:.4g} cm^-3"
     if term.term.name == "drude" and values["damping"] > 0.0:
@@ -103,5 +105,5 @@ def _consequences(term: BoundTerm, values: Mapping[str, float]) -> Iterator[tupl
 def _in(value: float, unit: str) -> str:
     shown = float(to_unit(value, unit, "spectral"))
     if unit == "nm" and shown >= LONG:
-        return f"{shown / 1e6:.4g} mm"
+        return f"{shown / 1e6:.4g} mm" if shown < 1e3 * LONG else f"{shown / 1e9:.4g} m"
     return f"{shown:.5g}"

@@ -11,7 +11,7 @@ import reference
 
 METALS = {
     "gold": "Au", "silver": "Ag", "aluminium": "Al", "copper": "Cu", "nickel": "Ni", "platinum": "Pt",
-    "titanium": "Ti", "tungsten": "W", "chromium": "Cr",
+    "titanium": "Ti", "tungsten": "W", "chromium": "Cr", "beryllium": "Be", "palladium": "Pd",
 }  # fmt: skip
 FORMULAS = {
     "fused-silica": ("main", "SiO2", "Malitson"),
