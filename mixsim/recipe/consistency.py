@@ -144,6 +144,10 @@ def _material(name: str, material: Mapping[str, Any]) -> Iterator[Finding]:
         for key in model.required:
             if key not in index:
                 yield f"{path}.index", Refusal(f"{key} is missing", f"a {model.name} index needs {key}")
+        given = index.get("coefficients")
+        if model.count and isinstance(given, list) and len(given) != model.count:
+            found = f"{len(given)} coefficients"
+            yield f"{path}.index.coefficients", Refusal(found, f"a {model.name} index takes {model.count}")
         if model.name == "sellmeier":
             both = ("resonance_wavelengths", "resonance_wavelengths_squared")
             yield from _one_of(f"{path}.index", index, both, "the list of resonances")

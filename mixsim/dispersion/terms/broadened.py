@@ -135,6 +135,8 @@ def brendel_bormann(
         scale = 1.0 / (np.sqrt(2.0) * sigma)
         pair = wofz((a - w0) * scale) + wofz((a + w0) * scale)
         contribution = np.asarray(1j * np.sqrt(np.pi) * 0.5 * scale * (wp * wp) * pair / a)
+        # far from the band the two functions all but cancel: what is left below zero is rounding
+        np.maximum(contribution.imag, 0.0, out=contribution.imag)
     return contribution[()]
 
 
