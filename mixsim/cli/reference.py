@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import json
+import math
 import sys
 from collections.abc import Iterator, Sequence
 from pathlib import Path
@@ -10,7 +12,7 @@ from typing import Annotated, Any
 import typer
 
 from mixsim.cli.status import ANSWERED
-from mixsim.errors import BadInput, Fault, nearest
+from mixsim.errors import BadInput, Fault, Refusal, nearest
 from mixsim.recipe import COMMAND_LINE
 
 Rows = Iterator[Sequence[str]]
@@ -47,6 +49,15 @@ def list_(
     kind: Annotated[
         str, typer.Argument(metavar="KIND", help="rules, models, materials or quantities; without it, these.")
     ] = "",
+    text: Annotated[
+        str, typer.Option("--text", metavar="WORD", help="Only entries with this word, in any case.")
+    ] = "",
+    evidence: Annotated[
+        str, typer.Option("--evidence", metavar="WORD", help="Only materials of this kind of evidence.")
+    ] = "",
+    at: Annotated[
+        str, typer.Option("--at", metavar="PLACE", help="Only materials that hold there, such as '10 GHz'.")
+    ] = "",
 ) -> int:
     """What there is: rules, models, materials or quantities."""
     from mixsim.present.columns import described
@@ -57,9 +68,16 @@ def list_(
     if kind not in KINDS:
         fault = Fault(COMMAND_LINE, "list", repr(kind), f"one of {', '.join(KINDS)}", nearest(kind, KINDS))
         raise BadInput([fault])
+    if kind != "materials" and (evidence or at):
+        option = "--evidence" if evidence else "--at"
+        raise BadInput([Fault(COMMAND_LINE, option, f"with list {kind}", "it is for list materials")])
     columns = {"rules": ("rule", "what it does"), "models": ("model", "what it describes")}
     columns |= {"materials": ("material", "what it is"), "quantities": ("quantity", "what it is")}
-    print(described(columns[kind], _listed(kind)))
+    rows = _materials(evidence, at) if kind == "materials" else _listed(kind)
+    found = [row for row in rows if text.lower() in " ".join(row).lower()]
+    if not found:
+        raise BadInput([Fault(COMMAND_LINE, "list", f"no {kind} like that", f"mixsim list {kind} shows all")])
+    print(described(columns[kind], found))
     return ANSWERED
 
 
@@ -70,8 +88,14 @@ def show(
             metavar="NAME", help="A rule, model, material or quantity; or a recipe, for its numbers."
         ),
     ],
+    out: Annotated[
+        str,
+        typer.Option("--out", metavar="FILE", help="Write the spectrum of a material: a table or a plot."),
+    ] = "",
 ) -> int:
     """One of them in full; or every number of a recipe with its path."""
+    if out:
+        _write_material(name, out)
     if name.endswith(".toml") or Path(name).is_file():
         return _show_recipe(name)
     from mixsim.present import entries
@@ -89,8 +113,6 @@ def schema(
     out: Annotated[str, typer.Option("--out", metavar="FILE", help="Write it to a file (.json).")] = "",
 ) -> int:
     """JSON Schema of a recipe, for editors."""
-    import json
-
     from mixsim.recipe.schema import Schema
 
     document: dict[str, Any] = {"$schema": "https://json-schema.org/draft/2020-12/schema"}
@@ -126,6 +148,57 @@ def _listed(kind: str) -> Rows:
         for quantity in QUANTITIES.values():
             unit = f" [{quantity.unit}]" if quantity.unit else ""
             yield quantity.name, f"{quantity.summary}{unit}"
+
+
+def _materials(evidence: str, at: str) -> Rows:
+    """Materials of one kind of evidence, or that hold at a place of the spectrum."""
+    from typing import get_args
+
+    from mixsim.recipe import library
+    from mixsim.recipe.schema import Material
+    from mixsim.units import read
+
+    kinds = get_args(get_args(Material.model_fields["kind"].annotation)[0])
+    if evidence and evidence not in kinds:
+        allowed = f"one of {', '.join(kinds)}"
+        fault = Fault(COMMAND_LINE, "--evidence", repr(evidence), allowed, nearest(evidence, kinds))
+        raise BadInput([fault])
+    try:
+        place = read(at, "spectral").value if at else None
+    except Refusal as refusal:
+        raise BadInput(
+            [Fault(COMMAND_LINE, "--at", refusal.found, refusal.allowed, refusal.suggestion)]
+        ) from None
+    for name, content in library.definitions():
+        valid = content.get("valid")
+        ends = (
+            sorted(read(valid[end], "spectral").value for end in ("from", "to")) if valid else [0.0, math.inf]
+        )
+        if (not evidence or content["kind"] == evidence) and (place is None or ends[0] <= place <= ends[1]):
+            yield name, str(content["title"])
+
+
+def _write_material(name: str, out: str) -> None:
+    """Spectrum of a library material over the band in which it holds."""
+    from mixsim.analysis import predict
+    from mixsim.present.files import check, write
+    from mixsim.recipe import library, parse
+
+    check(out)
+    content = library.definition(name)
+    if content is None or "valid" not in content:
+        found = f"{name!r} has no spectrum" if content is None else f"{name} has no band of its own"
+        raise BadInput(
+            [Fault(COMMAND_LINE, "--out", found, "name a material of the library (mixsim list materials)")]
+        )
+    valid = content["valid"]
+    text = f"""
+        title = {json.dumps(content["title"], ensure_ascii=False)}
+        host.material = "{name}"
+        band = {{ from = "{valid["from"]}", to = "{valid["to"]}", points = 401, spacing = "log" }}
+    """
+    write(predict(parse(text)), out)
+    print(f"mixsim: wrote {out}", file=sys.stderr)
 
 
 def _show_recipe(name: str) -> int:

@@ -255,3 +255,27 @@ def test_the_program_alone_shows_its_help_and_version(run: Run) -> None:
     for command in COMMANDS:
         assert command in result.stdout
     assert run("--version").stdout == f"mixsim {mixsim.__version__}\n"
+
+
+def test_materials_are_listed_by_evidence_place_and_word(run: Run) -> None:
+    def names(*options: str) -> set[str]:
+        shown = run("list", "materials", *options).stdout.splitlines()[1:]
+        return {line.split("  ")[0] for line in shown if not line.startswith(" ")}
+
+    every = names()
+    assert len(every) == len(library.names()) >= 70
+    published = names("--evidence", "published")
+    assert "fused-silica" in published
+    assert "gold" not in published
+    microwave = names("--at", "10 GHz")
+    assert "epoxy" in microwave
+    assert "silicon" not in microwave
+    assert names("--text", "FERRITE") == {"nickel-zinc-ferrite"}
+    assert names("--text", "dry", "--at", "1 GHz") < names("--at", "1 GHz")
+
+
+def test_a_material_is_drawn_over_its_band(run: Run) -> None:
+    assert run("show", "gold", "--out", "gold.csv").exit_code == 0
+    lines = [line for line in Path("gold.csv").read_text().splitlines() if not line.startswith("#")]
+    assert len(lines) == 402
+    assert float(lines[1].split(",")[0]) == pytest.approx(0.248)
