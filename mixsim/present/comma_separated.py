@@ -16,7 +16,7 @@ import numpy as np
 from mixsim.analysis import Inversion, Prediction
 from mixsim.analysis.plain import provenance
 from mixsim.analysis.prediction import CONVENTION
-from mixsim.dispersion.table import AXES
+from mixsim.dispersion.table_text import AXES
 from mixsim.units import kind_of_axis
 
 _QUANTITIES = (
