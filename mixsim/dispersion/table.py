@@ -9,9 +9,10 @@ from typing import Any
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-from mixsim.dispersion.table_text import AXES, check_order, parse
+from mixsim.dispersion.table_text import AXES, DIMENSIONS, Content, check_order, parse
+from mixsim.dispersion.terms.conduction import conduction
 from mixsim.errors import Refusal
-from mixsim.units import kind_of_axis, show, spectral_from
+from mixsim.units import from_unit, kind_of_axis, show, spectral_from
 
 _SLACK = 1e-12  # the end of a band, written in nm or eV, comes back from rad/s with its last digits changed
 
@@ -82,7 +83,7 @@ def read_table(text_or_path: str | Path) -> Table:
     unit, columns, values = held.unit, held.columns, held.values
     with np.errstate(over="ignore", divide="ignore", invalid="ignore"):
         omega = spectral_from(values[:, 0], unit)
-        permittivity = _permittivity(dict(zip(columns, values[:, 1:].T, strict=True)), held.sign)
+        permittivity = _permittivity(omega, _in_si(held), held.sign)
     for (number, cells), w, value in zip(held.rows, omega.tolist(), permittivity.tolist(), strict=True):
         if not (0 < w < np.inf and np.isfinite(value)):
             raise Refusal(f"line {number}: {', '.join(cells)}", "too large or too small to be a permittivity")
@@ -152,13 +153,26 @@ def interpolate(omega: ArrayLike, *, table: Table) -> NDArray[Any]:
     return _complex(value[..., 0], value[..., 1])[()]
 
 
-def _permittivity(columns: dict[str, NDArray[np.float64]], sign: int) -> NDArray[np.complex128]:
+def _in_si(held: Content) -> dict[str, NDArray[np.float64]]:
+    """Columns beside the axis by their names."""
+    columns = zip(held.columns, held.units, held.values[:, 1:].T, strict=True)
+    return {
+        name: from_unit(numbers, unit, DIMENSIONS[name]) if name in DIMENSIONS else numbers
+        for name, unit, numbers in columns
+    }
+
+
+def _permittivity(
+    omega: NDArray[np.float64], columns: dict[str, NDArray[np.float64]], sign: int
+) -> NDArray[np.complex128]:
     if "n" in columns:
         n, k = columns["n"], sign * columns.get("k", np.zeros_like(columns["n"]))
         return _complex(n * n - k * k, 2.0 * n * k)
     real = columns["permittivity_real"]
     if "loss_tangent" in columns:
         return _complex(real, real * columns["loss_tangent"])
+    if "conductivity" in columns:
+        return _complex(real, conduction(omega, conductivity=columns["conductivity"]).imag)
     return _complex(real, sign * columns["permittivity_imag"])
 
 

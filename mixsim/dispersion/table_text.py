@@ -9,11 +9,12 @@ The layout, separated by commas, semicolons or tabs::
 
 The first column is the axis (`wavelength`, `frequency`, `photon_energy`, `wavenumber` or
 `angular_frequency`) with its unit in brackets, rising or falling throughout. The others are `n` and
-perhaps `k`, or `permittivity_real` with `permittivity_imag` or `loss_tangent`. Decimals take a point.
+perhaps `k`, or `permittivity_real` with `permittivity_imag`, `loss_tangent` or `conductivity [S/m]`, which
+stands for the whole loss. Decimals take a point; between semicolons or tabs a comma will do, throughout.
 
 The convention line is never guessed. Under exp(+iwt) `k` and `permittivity_imag` of a lossy medium
-stand in the file as negative numbers, and their sign is turned on reading; `loss_tangent` is positive
-for a lossy medium under either convention and is never turned.
+stand in the file as negative numbers, and their sign is turned on reading; `loss_tangent` and
+`conductivity` are positive for a lossy medium under either convention and are never turned.
 """
 
 from __future__ import annotations
@@ -28,7 +29,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from mixsim.errors import Refusal, nearest
-from mixsim.units import accepted_units, kind_of_axis
+from mixsim.units import accepted_units, from_unit, kind_of_axis
 
 AXES = {
     "wavelength": "vacuum wavelength",
@@ -42,7 +43,9 @@ COLUMN_SETS = (
     ("n", "k"),
     ("permittivity_real", "permittivity_imag"),
     ("permittivity_real", "loss_tangent"),
+    ("permittivity_real", "conductivity"),
 )
+DIMENSIONS = {"conductivity": "conductivity"}  # of the columns that have one
 _COLUMNS = tuple(dict.fromkeys(name for names in COLUMN_SETS for name in names))
 _UNITS = {kind: [u for u in accepted_units("spectral") if kind_of_axis(u) == kind] for kind in AXES.values()}
 _HEADING = r"(?P<name>[^\[\]]*?)\s*(?:\[\s*(?P<unit>[^\]]*?)\s*\])?"
@@ -51,6 +54,7 @@ _STATED = r"(?i)#\s*convention\b"
 _CONVENTION = r"(?i)#\s*convention\s*[:=]?\s*exp\s*\(([+-])[ij](?:w|ω|omega)t\)"
 _SIGNS = "'# convention: exp(-iwt)' (lossy k above 0) or '# convention: exp(+iwt)' (lossy k below 0)"
 _POINT = "decimals take a point (1.47, not 1,47)"
+_COMMA = r"[+-]?[0-9]*,[0-9]+(?:[eE][+-]?[0-9]+)?"
 
 Row = tuple[int, list[str]]
 
@@ -67,6 +71,8 @@ class Content:
         Unit of the axis as written.
     columns
         Names of the other columns as written.
+    units
+        Their units as written, empty where they have none.
     rows
         Cells of each row, with the number of its line.
     values
@@ -76,6 +82,7 @@ class Content:
     sign: int
     unit: str
     columns: tuple[str, ...]
+    units: tuple[str, ...]
     rows: list[Row]
     values: NDArray[np.float64]
 
@@ -88,13 +95,13 @@ def parse(text_or_path: str | Path) -> Content:
         raise Refusal("line 1: it is empty", "a table has a convention line, a header and at least two rows")
     header, *rows = _cells([(number, line) for number, line in lines if _holds_data(line)])
     sign = _sign(lines, header)
-    unit, columns = _header(*header)
+    unit, columns, units = _header(*header)
     if len(rows) < 2:
         number = rows[0][0] if rows else header[0]
         count = "one row" if rows else "no rows"
         raise Refusal(f"line {number}: {count} below the header", "a table needs at least two")
     values = np.array([_numbers(number, cells, (unit, *columns)) for number, cells in rows])
-    return Content(sign, unit, columns, rows, values)
+    return Content(sign, unit, columns, units, rows, values)
 
 
 def _decoded(content: bytes) -> str:
@@ -147,11 +154,25 @@ def _cells(lines: Sequence[tuple[int, str]]) -> list[Row]:
         except csv.Error as error:
             raise Refusal(f"line {number}: {error}", "cells between separators, one row a line") from None
         rows.append((number, [cell.strip() for cell in cells]))
-    return rows
+    return rows if separator == "," else _with_points(rows)
 
 
-def _header(number: int, cells: Sequence[str]) -> tuple[str, tuple[str, ...]]:
-    """Unit of the axis, and names of the other columns."""
+def _with_points(rows: Sequence[Row]) -> list[Row]:
+    """Decimal commas turned into points; both in one table are refused: 1,500 may be a thousand."""
+    numbers = (cell for _, cells in rows[1:] for cell in cells if re.fullmatch(_NUMBER, cell))
+    pointed = next((cell for cell in numbers if "." in cell), None)
+    turned = [rows[0]]
+    for number, cells in rows[1:]:
+        commas = [cell for cell in cells if re.fullmatch(_COMMA, cell)]
+        if commas and pointed:
+            found = f"line {number}: {commas[0]!r} has a decimal comma, and {pointed!r} elsewhere a point"
+            raise Refusal(found, "one decimal sign throughout, and none between thousands")
+        turned.append((number, [cell.replace(",", ".") if cell in commas else cell for cell in cells]))
+    return turned
+
+
+def _header(number: int, cells: Sequence[str]) -> tuple[str, tuple[str, ...], tuple[str, ...]]:
+    """Unit of the axis, and names and units of the other columns."""
     if all(re.fullmatch(_NUMBER, cell) for cell in cells):
         raise Refusal(f"line {number}: no header row above the numbers", "such as 'wavelength [nm], n, k'")
     names, units = zip(*(_heading(number, cell) for cell in cells), strict=True)
@@ -168,13 +189,12 @@ def _header(number: int, cells: Sequence[str]) -> tuple[str, tuple[str, ...]]:
             raise Refusal(f"line {number}: unknown column {name!r}", allowed, nearest(name, _COLUMNS))
         if name in names[1:position]:
             raise Refusal(f"line {number}: column {name!r} stands twice", "each column stands once")
-        if given not in ("", "-", "1"):
-            raise Refusal(f"line {number}: unit {given!r} for column {name!r}", "it has no unit")
+        _column_unit(number, name, given)
     if not any(set(names[1:]) == set(columns) for columns in COLUMN_SETS):
         sets = "; or ".join(" and ".join(columns) for columns in COLUMN_SETS)
         held = ", ".join(names[1:]) or "nothing"
         raise Refusal(f"line {number}: {held} beside the axis", f"a table holds {sets}")
-    return unit, names[1:]
+    return unit, names[1:], units[1:]
 
 
 def _heading(number: int, cell: str) -> tuple[str, str]:
@@ -184,6 +204,20 @@ def _heading(number: int, cell: str) -> tuple[str, str]:
             f"line {number}: heading {cell!r}", "a name and its unit in brackets: 'wavelength [nm]'"
         )
     return heading["name"], heading["unit"] or ""
+
+
+def _column_unit(number: int, name: str, unit: str) -> None:
+    if name not in DIMENSIONS:
+        if unit not in ("", "-", "1"):
+            raise Refusal(f"line {number}: unit {unit!r} for column {name!r}", "it has no unit")
+        return
+    accepted = accepted_units(DIMENSIONS[name])
+    try:
+        from_unit(1.0, unit, DIMENSIONS[name])
+    except Refusal:
+        found = f"unit {unit!r} for column {name!r}" if unit else f"no unit for {name!r}"
+        better = f"{name} [{nearest(unit, accepted) or accepted[0]}]"
+        raise Refusal(f"line {number}: {found}", f"it takes {', '.join(accepted)}", better) from None
 
 
 def _axis_unit(number: int, name: str, unit: str) -> str:
@@ -214,7 +248,7 @@ def _numbers(number: int, cells: Sequence[str], headings: Sequence[str]) -> list
     for cell in cells:
         if re.fullmatch(_NUMBER, cell):
             continue
-        if re.fullmatch(r"[+-]?[0-9]*,[0-9]+(?:[eE][+-]?[0-9]+)?", cell):
+        if re.fullmatch(_COMMA, cell):
             raise Refusal(f"line {number}: {cell!r} has a decimal comma", _POINT, cell.replace(",", "."))
         if cell.lower().lstrip("+-") in ("nan", "inf", "infinity"):
             raise Refusal(f"line {number}: {cell!r} is not finite", "leave out the rows that hold no reading")
