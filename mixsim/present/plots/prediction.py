@@ -38,7 +38,7 @@ def draw(figure: Figure, answer: Prediction) -> None:
         loss(grid[1, column], answer, quantity)
         spectral_axis(grid[1, column], answer.axis.unit, answer.axis.spacing)
         real_part(grid[0, column], answer, quantity, width=1.0 / len(quantities))
-    headed(figure, answer.recipe.schema.title or "prediction", f"{answer.rule}{_loading(answer)}")
+    headed(figure, answer.recipe.schema.title or "prediction", _made_of(answer))
     cut = {name for axes in grid.flat for name in _off_scale(axes)}
     lines = {line.get_gid(): line for line in grid[0, 0].lines if line.get_gid()}
     labels = [line.get_label() + (", partly off scale" if gid in cut else "") for gid, line in lines.items()]
@@ -73,7 +73,8 @@ def _curves(axes: Axes, answer: Prediction, quantity: str, part: str, flat: floa
     """Mixture and references; the scale follows the mixture."""
     x, values = answer.axis.shown, getattr(getattr(answer, quantity), part)
     marker = marker_of(len(x))
-    spectra = {"mixture": values} if values.ndim == 1 else {"mixture ⊥": values[0], "mixture ∥": values[2]}
+    whole = answer.recipe.schema.host.material if _pure(answer) else "mixture"
+    spectra = {whole: values} if values.ndim == 1 else {"mixture ⊥": values[0], "mixture ∥": values[2]}
     for number, (name, curve) in enumerate(spectra.items()):
         axes.plot(
             x,
@@ -86,12 +87,15 @@ def _curves(axes: Axes, answer: Prediction, quantity: str, part: str, flat: floa
             ms=4,
             zorder=3,
         )
-    if quantity == "permittivity" and answer.pushed is not None:
-        _band(axes, x, values, getattr(answer.pushed, part))
     low, high = float(np.min(values)), float(np.max(values))
+    if quantity == "permittivity" and answer.pushed is not None:
+        std = getattr(answer.pushed, part)
+        _band(axes, x, values, std)
+        low, high = float(np.min(values - std)), float(np.max(values + std))
     reach = max(high - low, flat * 0.5 * abs(high + low))
     ends = low - BEYOND * reach, high + BEYOND * reach
-    for number, (name, reference) in enumerate(answer.constituents.items()):
+    references = {} if _pure(answer) else answer.constituents
+    for number, (name, reference) in enumerate(references.items()):
         curve = getattr(getattr(reference, quantity), part)
         if quantity == "permeability" and not np.any(reference.permeability != 1.0):
             continue
@@ -123,13 +127,22 @@ def _named(answer: Prediction, name: str) -> str:
     return name if name == material else f"{name} ({material})"
 
 
-def _loading(answer: Prediction) -> str:
+def _pure(answer: Prediction) -> bool:
+    """Whether the host is all there is: no inclusions, no dopants, no voids."""
+    held = {*answer.constituents, *answer.composition.volume_fractions, *answer.composition.number_densities}
+    return held == {"host"}
+
+
+def _made_of(answer: Prediction) -> str:
+    """Rule and loading, or the material alone."""
+    if _pure(answer):
+        return answer.recipe.schema.host.material
     volumes = [
         f"{name} {_short(float(volume))}"
         for name, volume in answer.composition.volume_fractions.items()
         if name != "host"
     ]
-    return f" · {', '.join(volumes)} by volume" if volumes else ""
+    return f"{answer.rule} · {', '.join(volumes)} by volume" if volumes else str(answer.rule)
 
 
 def _short(fraction: float) -> str:

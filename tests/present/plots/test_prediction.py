@@ -87,6 +87,16 @@ def test_a_metal_does_not_flatten_the_mixture() -> None:
     ]
 
 
+def test_a_material_alone_is_one_curve_with_its_doubt_in_view() -> None:
+    text = 'materials.foam.permittivity.infinity = "2.5 ± 0.5"\nhost.material = "foam"\n'
+    text += 'band.values = ["1 GHz", "2 GHz"]'
+    drawn = figure(mixsim.predict(mixsim.parse(text)))
+    low, high = drawn.axes[0].get_ylim()
+    assert low < 2.0 and high > 3.0
+    assert [text.get_text() for text in drawn.legends[0].get_texts()] == ["foam"]
+    assert "maxwell-garnett" not in drawn.get_suptitle()
+
+
 def test_a_far_limit_is_an_arrow(answers: Any) -> None:
     answer = answers.prediction("film", ("step = 0.3", "step = 30.0"))
     static, high = notes(figure(answer).axes[0])
