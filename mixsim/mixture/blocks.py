@@ -8,7 +8,7 @@ from itertools import product
 from typing import Any
 
 import numpy as np
-from numpy.typing import ArrayLike
+from numpy.typing import ArrayLike, NDArray
 
 from mixsim.errors import Refusal
 
@@ -33,7 +33,7 @@ class Axes:
     def __init__(
         self, defaults: Mapping[str, float], values: Mapping[str, ArrayLike], *, principal: bool
     ) -> None:
-        given = {path: np.asarray(value, dtype=float) for path, value in values.items()}
+        given = {path: numbers(path, value) for path, value in values.items()}
         try:
             self.batch: tuple[int, ...] = np.broadcast_shapes(*(array.shape for array in given.values()))
         except ValueError:
@@ -61,30 +61,57 @@ class Axes:
         return {**self.scalars, **picked}
 
     def _picked(self, array: Any, row: Row) -> Any:
-        own = row[len(self.batch) - array.ndim : len(self.batch)]
+        own = row[len(row) - array.ndim :]
         spread = (slice(None) if size == 1 else part for size, part in zip(array.shape, own, strict=True))
         return array[tuple(spread)]
 
 
-def blocks(shape: tuple[int, ...], frequencies: int) -> Iterator[tuple[slice, list[Row]]]:
-    """Windows of the frequency axis, each with the blocks of batch and principal axes to do in it.
+def numbers(name: str, value: ArrayLike) -> NDArray[np.float64]:
+    """A value as an array of floats.
+
+    Raises
+    ------
+    Refusal
+        Where it is no number and no array of real numbers.
+    """
+    try:
+        array = np.asarray(value)
+    except ValueError:  # lists of unequal length
+        array = np.asarray(None)
+    if array.dtype.kind not in "biuf":
+        raise Refusal(f"{name} = {value!r}", "a real number, or an array of them")
+    return array.astype(float, copy=False)
+
+
+def blocks(batch: tuple[int, ...], frequencies: int, *, principal: bool) -> Iterator[tuple[slice, list[Row]]]:
+    """Windows of the frequency axis, each with the blocks of the batch to do in it.
+
+    Parameters
+    ----------
+    batch
+        Shape of the batch.
+    frequencies
+        Length of the frequency axis.
+    principal
+        Whether three principal axes stand before it; a rule answers all three at once.
+
+    Yields
+    ------
+    window, rows
+        A slice of the frequency axis, and a tuple of slices of the batch axes for each block.
 
     Examples
     --------
-    >>> [(window, len(rows)) for window, rows in blocks((2,), 20000)]
+    >>> [(window, len(rows)) for window, rows in blocks((2,), 20000, principal=False)]
     [(slice(0, 16384, None), 2), (slice(16384, 20000, None), 2)]
     """
-    sizes: list[int] = []
-    room = _BLOCK
-    for size in (frequencies, *reversed(shape)):
-        sizes.append(max(1, min(size, room)))
-        room = max(1, room // sizes[-1])
-    if shape and shape[-1:] == (3,) and sizes[1] < 3:
-        sizes[1] = 3  # principal axes come from a rule together
-    windows, *others = (
-        [slice(start, min(start + step, size)) for start in range(0, size, step)]
-        for size, step in zip((frequencies, *reversed(shape)), sizes, strict=True)
-    )
-    rows = [tuple(reversed(parts)) for parts in product(*others)]
+    room = _BLOCK // 3 if principal else _BLOCK
+    parts: list[list[slice]] = []
+    for size in (frequencies, *reversed(batch)):
+        step = max(1, min(size, room))
+        room //= step
+        parts.append([slice(start, min(start + step, size)) for start in range(0, size, step)])
+    windows, *others = parts
+    rows = [tuple(reversed(block)) for block in product(*others)]
     for window in windows:
         yield window, rows

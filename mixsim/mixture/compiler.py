@@ -21,9 +21,9 @@ from mixsim.mixture.mixture import HOST, Constituent, Mixture
 from mixsim.mixture.spectra import (
     VACUUM,
     BoundTerm,
-    ConstantLoss,
     Doped,
     Index,
+    Level,
     LocalPlasma,
     Measured,
     Spectrum,
@@ -141,7 +141,7 @@ class _Compiler:
         """A data sheet's pair at one frequency, as a causal spectrum or as a constant."""
         given: dict[str, Input] = {key: Leafed(f"{path}.{key}") for key in ("value", "loss_tangent")}
         if response.model == "constant":
-            return ConstantLoss(**given)
+            return Level(Derived(_level_from_pair, given))
         given |= {
             "at": Leafed(f"{path}.at"),
             "low": self._maybe(f"{path}.low") or Fixed(read("1 kHz", "spectral").value),
@@ -241,3 +241,8 @@ def _wants_concentration(content: Any) -> bool:
 def _level_from_susceptibility(*, susceptibility: Any) -> Any:
     """ε∞ = 1 + χ."""
     return 1.0 + susceptibility
+
+
+def _level_from_pair(*, value: Any, loss_tangent: Any) -> Any:
+    """ε = ε′ + iε′ tan δ."""
+    return value + 1j * (value * loss_tangent)

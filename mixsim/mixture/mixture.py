@@ -13,11 +13,11 @@ from numpy.typing import ArrayLike
 from mixsim.composition import Basis, Loading, volume_fractions
 from mixsim.errors import Refusal, nearest
 from mixsim.mixing import SPHERE, Depolarisation, Rule, aligned_spheroid, random_spheroid, rule_named
-from mixsim.mixture.blocks import Axes, blocks
+from mixsim.mixture.blocks import Axes, blocks, numbers
 from mixsim.mixture.inputs import Input, Values
 from mixsim.mixture.response import Array, Composition, Limits, Response
-from mixsim.mixture.spectra import VACUUM, Spectrum
-from mixsim.mixture.static import low_frequency
+from mixsim.mixture.spectra import VACUUM, Spectrum, held
+from mixsim.mixture.static import LowFrequency, low_frequency
 from mixsim.units import VACUUM_PERMITTIVITY
 
 HOST, VOIDS = "host", "voids"
@@ -112,31 +112,33 @@ class Mixture:
         what does not depend on a varied leaf is computed once. Values are not held to the ranges of the
         recipe here: whoever varies them does that.
         """
-        axis = np.asarray(omega, dtype=float)
-        if axis.ndim != 1:
-            raise Refusal(f"omega of shape {axis.shape}", "one axis of angular frequencies, shape (N,)")
+        axis = _frequencies(omega)
         axes = self._axes(values)
         shape = (*axes.shape, axis.size)
-        permittivity = np.empty(shape, dtype=complex)
-        magnetic = self.magnetic
-        permeability = np.empty(shape, dtype=complex) if magnetic else np.broadcast_to(1.0 + 0.0j, shape)
+        quantities = ("permittivity", "permeability") if self.magnetic else ("permittivity",)
+        answers = {quantity: np.empty(shape, dtype=complex) for quantity in quantities}
         # a loss-free resonance is not finite: the answer says so, not numpy
         with np.errstate(all="ignore"):
-            self._fill(axes, axis, permittivity, permeability if magnetic else None)
-        return Response(permittivity, permeability)
+            self._fill(axes, axis, answers)
+        unity = np.broadcast_to(1.0 + 0.0j, shape)
+        return Response(answers["permittivity"], answers.get("permeability", unity))
 
-    def _fill(self, axes: Axes, axis: Array, permittivity: Array, permeability: Array | None) -> None:
-        """Evaluate block by block into arrays of the whole answer."""
-        for window, rows in blocks(axes.shape, axis.size):
+    def _fill(self, axes: Axes, axis: Array, answers: Mapping[str, Array]) -> None:
+        """Evaluate block by block into arrays of the whole answer, by name of the quantity."""
+        for window, rows in blocks(axes.batch, axis.size, principal=self.aligned):
             here = axis[window]
-            electric_fixed = self._fixed("permittivity", axes, here)
-            magnetic_fixed = {} if permeability is None else self._fixed("permeability", axes, here)
+            held_here = {
+                quantity: [
+                    held(getattr(phase, quantity), axes.scalars, here, axes.varied) for phase in self.phases
+                ]
+                for quantity in answers
+            }
             for row in rows:
-                x, place = axes.values(row), (*row, window)
+                x = axes.values(row)
+                place: Any = (*row, ..., window)
                 composed = self._composed(x)
-                permittivity[place] = self._mixed("permittivity", x, here, composed, electric_fixed)
-                if permeability is not None:
-                    permeability[place] = self._mixed("permeability", x, here, composed, magnetic_fixed)
+                for quantity, spectra in held_here.items():
+                    answers[quantity][place] = self._mixed([of(x) for of in spectra], composed)
 
     def limits(self, values: Mapping[str, ArrayLike]) -> Limits:
         """Exact static and high-frequency limits of the mixture, conductors included.
@@ -157,27 +159,30 @@ class Mixture:
             Where a path is unknown or shapes do not fit.
         """
         axes = self._axes(values)
-        x = axes.values()
-        fractions, shapes = self._composed(x)
+        with np.errstate(all="ignore"):
+            x = axes.values()
+            composed = self._composed(x)
 
-        def mix(phases: Sequence[Any]) -> Any:
-            return self.rule.function(phases, fractions=fractions, depolarisations=shapes)
+            def mix(phases: Sequence[Any]) -> Array:
+                return np.asarray(self._mixed(phases, composed), dtype=complex)
+
+            def both(spectra: Sequence[Spectrum]) -> tuple[LowFrequency, Array]:
+                rates, plateaus = zip(*(spectrum.low(x) for spectrum in spectra), strict=True)
+                return low_frequency(mix, rates, plateaus), mix([spectrum.high(x) for spectrum in spectra])
+
+            low, high = both([phase.permittivity for phase in self.phases])
+            static_permeability = high_permeability = np.asarray(1.0 + 0.0j)
+            if self.magnetic:
+                magnetic, high_permeability = both([phase.permeability for phase in self.phases])
+                static_permeability = magnetic.static
 
         def full(limit: Any) -> Array:
             spread = np.broadcast_to(np.asarray(limit), (*axes.shape, 1))
             return spread[..., 0].copy()
 
-        electric = [phase.permittivity for phase in self.phases]
-        low = low_frequency(mix, *zip(*(phase.low(x) for phase in electric), strict=True))
-        static_permeability: Any = 1.0 + 0.0j
-        high_permeability: Any = 1.0 + 0.0j
-        if self.magnetic:
-            magnetic = [phase.permeability for phase in self.phases]
-            static_permeability = low_frequency(mix, *zip(*(m.low(x) for m in magnetic), strict=True)).static
-            high_permeability = np.asarray(mix([m.high(x) for m in magnetic]), dtype=complex)
         return Limits(
             static=full(low.static),
-            high_frequency=full(np.asarray(mix([phase.high(x) for phase in electric]), dtype=complex)),
+            high_frequency=full(high),
             conductivity=full(low.rate * VACUUM_PERMITTIVITY),
             plateau=full(low.plateau),
             static_permeability=full(static_permeability),
@@ -244,13 +249,14 @@ class Mixture:
         responses
             By name, each of shape (N,).
         """
-        axis, x = np.asarray(omega, dtype=float), self.defaults
-        return {
-            phase.name: Response(
-                np.asarray(phase.permittivity.at(x, axis)), np.asarray(phase.permeability.at(x, axis))
-            )
-            for phase in (self.host, *self.inclusions)
-        }
+        axis, x = _frequencies(omega), self.defaults
+        with np.errstate(all="ignore"):
+            return {
+                phase.name: Response(
+                    np.asarray(phase.permittivity.at(x, axis)), np.asarray(phase.permeability.at(x, axis))
+                )
+                for phase in (self.host, *self.inclusions)
+            }
 
     def with_rule(self, name: str) -> Mixture:
         """The same constituents under another rule."""
@@ -282,23 +288,10 @@ class Mixture:
                 raise Refusal(f"unknown path {path!r}", "a path of the recipe", nearest(path, self.defaults))
         return Axes(self.defaults, values, principal=self.aligned)
 
-    def _fixed(self, quantity: str, axes: Axes, omega: Array) -> dict[str, Any]:
-        """Spectra of the phases that no varied leaf touches, at some frequencies."""
-        spectra = {phase.name: getattr(phase, quantity) for phase in self.phases}
-        return {
-            name: spectrum.at(axes.scalars, omega)
-            for name, spectrum in spectra.items()
-            if not spectrum.paths & axes.varied
-        }
-
-    def _mixed(self, quantity: str, x: Values, omega: Array, composed: Any, fixed: Mapping[str, Any]) -> Any:
+    def _mixed(self, phases: Sequence[Any], composed: tuple[tuple[Any, ...], list[Depolarisation]]) -> Any:
+        if len(phases) == 1 and self.density is None:
+            return phases[0]  # it fills the volume, whatever the rule
         fractions, shapes = composed
-        phases = [
-            fixed[phase.name] if phase.name in fixed else getattr(phase, quantity).at(x, omega)
-            for phase in self.phases
-        ]
-        if len(phases) == 1:
-            return phases[0]
         return self.rule.function(phases, fractions=fractions, depolarisations=shapes)
 
     def _composed(self, x: Values) -> tuple[tuple[Any, ...], list[Depolarisation]]:
@@ -326,3 +319,10 @@ class Mixture:
         if not phase.aligned:
             return random_spheroid(ratio)
         return aligned_spheroid(ratio[..., 0] if ratio.ndim else ratio)
+
+
+def _frequencies(omega: ArrayLike) -> Array:
+    axis = numbers("omega", omega)
+    if axis.ndim != 1:
+        raise Refusal(f"omega of shape {axis.shape}", "one axis of angular frequencies, shape (N,)")
+    return axis

@@ -39,7 +39,8 @@ class Limits:
     conductivity
         Conductivity at dc [S/m]; zero where the mixture insulates.
     plateau
-        Real level beside the conduction as ω → 0 [-]; that of the static permittivity where it insulates.
+        Real level beside the conduction as ω → 0 [-]; that of the static permittivity where it insulates,
+        infinite where conductors in an insulator are at their percolation threshold.
     static_permeability, high_frequency_permeability
         The same limits of the permeability [-].
 

@@ -7,7 +7,7 @@ extrapolated to dc in silence.
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass
 from functools import cached_property
 from typing import Any, Protocol
@@ -15,9 +15,12 @@ from typing import Any, Protocol
 import numpy as np
 
 from mixsim.dispersion import IndexModel, Table, Term, interpolate
-from mixsim.mixture.inputs import Input, Values, paths_of
+from mixsim.mixture.inputs import Fixed, Input, Values, paths_of
 
 UNKNOWN = float("nan")
+
+Here = Callable[[Values], Any]
+"""A spectrum at some frequencies: what is left of it is a function of the leaves."""
 
 
 class Spectrum(Protocol):
@@ -38,48 +41,26 @@ class Spectrum(Protocol):
 
 
 @dataclass(frozen=True, eq=False)
-class Constant:
-    """The same at every frequency: vacuum, or a material without magnetism."""
-
-    value: float = 1.0
-    paths: frozenset[str] = frozenset()
-
-    def at(self, x: Values, omega: Any) -> Any:
-        return np.asarray(self.value + 0.0 * omega, dtype=complex)
-
-    def low(self, x: Values) -> tuple[Any, Any]:
-        return 0.0, self.value
-
-    def high(self, x: Values) -> Any:
-        return self.value
-
-
-VACUUM = Constant()
-
-
-@dataclass(frozen=True, eq=False)
-class ConstantLoss:
-    """A data sheet's pair taken to hold at every frequency: handy in a narrow band, and not causal."""
+class Level:
+    """The same at every frequency: vacuum, or a data sheet's pair that is taken to hold all over the band."""
 
     value: Input
-    loss_tangent: Input
 
-    @cached_property
+    @property
     def paths(self) -> frozenset[str]:
-        return paths_of((self.value, self.loss_tangent))
+        return self.value.paths
 
     def at(self, x: Values, omega: Any) -> Any:
-        return self._level(x) + 0.0 * omega
+        return np.asarray(self.value(x) + 0.0 * omega, dtype=complex)
 
     def low(self, x: Values) -> tuple[Any, Any]:
-        return 0.0, self._level(x)
+        return 0.0, self.value(x)
 
     def high(self, x: Values) -> Any:
-        return self._level(x)
+        return self.value(x)
 
-    def _level(self, x: Values) -> Any:
-        value = self.value(x)
-        return value + 1j * (value * self.loss_tangent(x))
+
+VACUUM = Level(Fixed(1.0))
 
 
 @dataclass(frozen=True, eq=False)
@@ -118,22 +99,12 @@ class TermSum:
         return paths_of((self.level, *self.terms))
 
     def at(self, x: Values, omega: Any) -> Any:
-        level = self.level(x)
         if not self.terms:
-            return np.asarray(level + 0.0 * omega, dtype=complex)
-        first, *others = (term.at(x, omega) for term in self.terms)
-        total = _added(np.asarray(first), level)
-        for other in others:
-            total = _added(total, other)
-        return total
+            return Level(self.level).at(x, omega)
+        return _sum(self.level(x), (term.at(x, omega) for term in self.terms))
 
     def low(self, x: Values) -> tuple[Any, Any]:
-        rate: Any = 0.0
-        plateau = self.level(x)
-        for term in self.terms:
-            more_rate, more_plateau = term.low(x)
-            rate, plateau = rate + more_rate, plateau + more_plateau
-        return rate, plateau
+        return _low_sum((0.0, self.level(x)), self.terms, x)
 
     def high(self, x: Values) -> Any:
         return self.level(x)
@@ -151,17 +122,10 @@ class Doped:
         return paths_of((self.host, *self.terms))
 
     def at(self, x: Values, omega: Any) -> Any:
-        total = self.host.at(x, omega)
-        for term in self.terms:
-            total = total + term.at(x, omega)
-        return total
+        return _sum(self.host.at(x, omega), (term.at(x, omega) for term in self.terms))
 
     def low(self, x: Values) -> tuple[Any, Any]:
-        rate, plateau = self.host.low(x)
-        for term in self.terms:
-            more_rate, more_plateau = term.low(x)
-            rate, plateau = rate + more_rate, plateau + more_plateau
-        return rate, plateau
+        return _low_sum(self.host.low(x), self.terms, x)
 
     def high(self, x: Values) -> Any:
         return self.host.high(x)
@@ -259,9 +223,40 @@ class LocalPlasma:
         return self.plasma(x) * (around + 2.0) / 3.0
 
 
-def _added(total: Any, more: Any) -> Any:
-    """Sum, in the memory of the first where it fits."""
-    if np.broadcast_shapes(total.shape, np.shape(more)) == total.shape and total.ndim:
-        total += more
-        return total
-    return total + more
+def held(part: Spectrum | BoundTerm, x: Values, omega: Any, varied: frozenset[str]) -> Here:
+    """A spectrum at some frequencies as a function of the leaves that vary.
+
+    What depends on none of them is computed now: all of it, or those of its terms.
+    """
+    if not part.paths & varied:
+        known = part.at(x, omega)
+        return lambda _: known
+    if isinstance(part, TermSum) and part.terms:
+        start: Here = part.level
+    elif isinstance(part, Doped):
+        start = held(part.host, x, omega, varied)
+    else:
+        return lambda x: part.at(x, omega)
+    terms = [held(term, x, omega, varied) for term in part.terms]
+    return lambda x: _sum(start(x), (term(x) for term in terms))
+
+
+def _sum(start: Any, terms: Iterable[Any]) -> Any:
+    """Sum of polarisations; writes to no array that it was given."""
+    first, *others = terms
+    total = np.asarray(start + first)
+    for term in others:
+        if total.ndim and np.broadcast_shapes(total.shape, np.shape(term)) == total.shape:
+            total += term  # in the cache, and without another array
+        else:
+            total = total + term
+    return total
+
+
+def _low_sum(start: tuple[Any, Any], terms: Iterable[BoundTerm], x: Values) -> tuple[Any, Any]:
+    """Sum of behaviours as ω → 0."""
+    rate, plateau = start
+    for term in terms:
+        more_rate, more_plateau = term.low(x)
+        rate, plateau = rate + more_rate, plateau + more_plateau
+    return rate, plateau

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from pathlib import Path
+
 import mpmath
 import numpy as np
 import pytest
@@ -25,6 +27,13 @@ permittivity.terms.s = {{ model = "conduction", conductivity = "{grain} S/m" }}
 
 def two(rule: str, fraction: float, host: float, grain: float) -> mixsim.mixture.Mixture:  # type: ignore[name-defined]
     return mixsim.parse(TWO.format(rule=rule, fraction=fraction, host=host, grain=grain)).compile()
+
+
+def metal(rule: str, fraction: float, host: float, collisions: float) -> mixsim.mixture.Mixture:  # type: ignore[name-defined]
+    """Grains of free carriers, by their collision rate in rad/s."""
+    carriers = f'{{ model = "drude", plasma = "9 eV", damping = "{collisions} rad/s" }}'
+    text = TWO.format(rule=rule, fraction=fraction, host=host, grain=0)
+    return mixsim.parse(f"{text}permittivity.terms.carriers = {carriers}\n").compile()
 
 
 def exact(rule: str, f: float, host: float, grain: float) -> tuple[float, float]:
@@ -73,13 +82,65 @@ def test_above_the_threshold_the_mixture_conducts() -> None:
     # σ_eff = σ_g(3f − 1)/2 + …: the level is ε_g ∂σ/∂σ_g + ε_h ∂σ/∂σ_h at σ_h = 0
     slope_host = (2 - 1.5 + (2 * 0.5 * (2 - 1.5) + 8) / (2 * 0.5)) / 4
     assert limits.plateau == pytest.approx(8.0 * 0.25 + 3.0 * slope_host, rel=1e-9)
-    at = two("bruggeman", 1 / 3, 0, 2.0).limits({})
-    assert np.isnan(at.static)
+
+
+@pytest.mark.parametrize("collisions", [1e14, 1e8, 0.0])
+def test_at_the_very_threshold_there_is_no_level_and_no_conduction(collisions: float) -> None:
+    """ε = √(ε_h ε_g/2) there: with ε_g ∝ i/ω both parts grow as ω^(−1/2), slower than any conduction."""
+    compiled = metal("bruggeman", 1 / 3, 0, collisions)
+    limits = compiled.limits({})
+    assert np.isnan(limits.static)
+    assert (limits.conductivity, limits.plateau) == (0.0, np.inf)
+    around = {"inclusions.g.volume_fraction": [1 / 3 - 1e-6, 1 / 3 + 1e-6]}
+    below, above = compiled.limits(around).static
+    assert below.real == pytest.approx(1e6, rel=1e-9)
+    assert np.isnan(above)
 
 
 def test_insulating_grains_in_a_conductor() -> None:
     limits = two("maxwell-garnett", 0.2, 1e-2, 0).limits({})
     assert limits.conductivity == pytest.approx(1e-2 * 2 * 0.8 / (2 + 0.2), rel=1e-12)
+
+
+@pytest.mark.parametrize("host", [1e-16, 1e-20, 1e-24, 1e-30])
+@pytest.mark.parametrize("collisions", [1e14, 1e8])
+def test_the_best_insulator_around_a_metal_still_conducts(host: float, collisions: float) -> None:
+    """A fluoropolymer leaks 1e-23 S/m or so, forty decades below cold metal, and has no static limit."""
+    limits = metal("maxwell-garnett", 0.1, host, collisions).limits({})
+    assert np.isnan(limits.static)
+    assert limits.conductivity == pytest.approx(host * 1.2 / 0.9, rel=1e-12)
+    assert limits.plateau == pytest.approx(3.0 * 1.2 / 0.9, rel=1e-12)
+
+
+@pytest.mark.parametrize("orientation", ["aligned", "random"])
+def test_conducting_spheroids_by_their_factors(orientation: str) -> None:
+    """Perfect conductors: ε_h (1 + <1/N> f/(1 − f)), axis by axis where they are aligned."""
+    shape = f'shape = {{ kind = "spheroid", aspect_ratio = 3.0 }}, orientation = "{orientation}" }}'
+    text = TWO.format(rule="maxwell-garnett", fraction=0.2, host=0, grain=5.0)
+    compiled = mixsim.parse(text.replace("0.2 }", f"0.2, {shape}")).compile()
+    squared = 1 - 1 / 9
+    along = (1 - squared) / squared * (np.arctanh(squared**0.5) / squared**0.5 - 1)
+    inverse = np.array([2 / (1 - along), 2 / (1 - along), 1 / along])
+    static = 3.0 * (1 + 0.25 * (inverse if orientation == "aligned" else inverse.mean()))
+    limits = compiled.limits({})
+    assert limits.static == pytest.approx(static, rel=1e-12)
+    assert not np.any(limits.conductivity)
+    low, high = np.moveaxis(compiled.response({}, np.array([1e-3, 1e30])).permittivity, -1, 0)
+    assert low == pytest.approx(limits.static, rel=1e-9)
+    assert high == pytest.approx(limits.high_frequency, rel=1e-9)
+
+
+def test_a_table_has_no_limits_unless_they_are_stated(tmp_path: Path) -> None:
+    (tmp_path / "m.csv").write_text(
+        "# convention: exp(-iwt)\nwavelength [nm],n,k\n400,1.5,0\n600,1.49,0\n800,1.48,0\n"
+    )
+    text = 'host.material = "m"\nmaterials.m.table = "m.csv"\n'
+    silent = mixsim.parse(text, folder=tmp_path).compile().limits({})
+    assert np.isnan([silent.static, silent.high_frequency, silent.plateau]).all()
+    assert silent.conductivity == 0.0
+    stated = mixsim.parse(f"{text}materials.m.static = 3.0\n", folder=tmp_path).compile().limits({})
+    assert stated.static == 3.0
+    assert np.isnan(stated.high_frequency)
 
 
 def test_a_batch_may_conduct_in_part() -> None:
@@ -95,13 +156,14 @@ def test_a_batch_may_conduct_in_part() -> None:
 
 
 def test_carriers_without_collisions_screen_too() -> None:
-    text = TWO.format(rule="bruggeman", fraction=0.2, host=0, grain=0) + (
-        'permittivity.terms.free = { model = "drude", plasma = "1 eV", damping = "0 eV" }\n'
-    )
-    assert mixsim.parse(text).compile().limits({}).static == pytest.approx(3.0 / 0.4, rel=1e-12)
-    through = mixsim.parse(text).compile().limits({"inclusions.g.volume_fraction": 0.6})
+    compiled = metal("bruggeman", 0.2, 0, 0.0)
+    assert compiled.limits({}).static == pytest.approx(3.0 / 0.4, rel=1e-12)
+    through = compiled.limits({"inclusions.g.volume_fraction": 0.6})
     assert np.isnan(through.static)
     assert through.conductivity == np.inf
+    # in a lossy host they are one more perfect conductor
+    leaking = metal("maxwell-garnett", 0.2, 1e-3, 0.0).limits({})
+    assert leaking.conductivity == pytest.approx(1e-3 * 1.4 / 0.8, rel=1e-12)
 
 
 @pytest.mark.parametrize("rule", ["maxwell-garnett", "bruggeman"])
