@@ -239,7 +239,7 @@ def _not_passive(
             yield Caution("not-passive", f"materials.{materials[name]}", message)
     where = "" if found else _gain(axis, response)
     if where:
-        message = f"{where}, as no passive medium has; grains of different shapes in one host can do that"
+        message = f"{where}, as no passive medium has; several kinds of grain, not all spheres, can do that"
         yield Caution("not-passive", "mixing.rule", message)
 
 

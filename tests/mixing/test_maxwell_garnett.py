@@ -67,7 +67,7 @@ def test_many_phases_and_shapes_are_the_printed_sum(
     pairs = [[(1 / 3, 1.0)], [(1 / 3, 1.0)], [(cross, 2 / 3), (axis, 1 / 3)]]
     z = maxwell_garnett(phases, fractions=fractions, depolarisations=[SPHERE, SPHERE, random_spheroid(m)])
     assert z == pytest.approx(naive(phases, fractions, pairs), rel=1e-7)
-    # only of spheres: metallic grains of different factors in one host can turn loss into gain
+    # only of spheres: several kinds of metallic grain, not all spheres, can turn loss into gain
     assert maxwell_garnett(phases, fractions=fractions).imag >= 0.0
 
 

@@ -1,7 +1,8 @@
 """No model and no rule makes light: ε″ ≥ 0 and μ″ ≥ 0 for any passive constituents, through the evaluator.
 
-Spheres of any number of kinds, and one kind of spheroid, are safe. Maxwell Garnett for metallic grains of
-*different* shapes in one host is no structure that could be built, and can turn loss into gain.
+Spheres of any number of kinds, and one kind of spheroid, are safe. Maxwell Garnett for *several* kinds of
+metallic grain in one host, not all of them spheres, is no structure that could be built, and can turn loss
+into gain, even where two metals share one shape.
 """
 
 from __future__ import annotations
