@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import json
-import math
 import sys
 from collections.abc import Iterator, Sequence
 from pathlib import Path
@@ -62,15 +61,18 @@ def list_(
     """What there is: rules, models, materials or quantities."""
     from mixsim.present.columns import described
 
-    if not kind:
+    filters = {"--text": text, "--evidence": evidence, "--at": at}
+    given = [option for option, value in filters.items() if value]
+    if not kind and not given:
         print("\n".join(KINDS))
         return ANSWERED
+    if not kind:
+        raise BadInput([Fault(COMMAND_LINE, given[0], "without a kind", "mixsim list materials, for one")])
     if kind not in KINDS:
         fault = Fault(COMMAND_LINE, "list", repr(kind), f"one of {', '.join(KINDS)}", nearest(kind, KINDS))
         raise BadInput([fault])
-    if kind != "materials" and (evidence or at):
-        option = "--evidence" if evidence else "--at"
-        raise BadInput([Fault(COMMAND_LINE, option, f"with list {kind}", "it is for list materials")])
+    if kind != "materials" and given[-1:] not in ([], ["--text"]):
+        raise BadInput([Fault(COMMAND_LINE, given[-1], f"with list {kind}", "it is for list materials")])
     columns = {"rules": ("rule", "what it does"), "models": ("model", "what it describes")}
     columns |= {"materials": ("material", "what it is"), "quantities": ("quantity", "what it is")}
     rows = _materials(evidence, at) if kind == "materials" else _listed(kind)
@@ -170,11 +172,8 @@ def _materials(evidence: str, at: str) -> Rows:
             [Fault(COMMAND_LINE, "--at", refusal.found, refusal.allowed, refusal.suggestion)]
         ) from None
     for name, content in library.definitions():
-        valid = content.get("valid")
-        ends = (
-            sorted(read(valid[end], "spectral").value for end in ("from", "to")) if valid else [0.0, math.inf]
-        )
-        if (not evidence or content["kind"] == evidence) and (place is None or ends[0] <= place <= ends[1]):
+        low, high = library.band(content)
+        if (not evidence or content["kind"] == evidence) and (place is None or low <= place <= high):
             yield name, str(content["title"])
 
 
@@ -185,19 +184,13 @@ def _write_material(name: str, out: str) -> None:
     from mixsim.recipe import library, parse
 
     check(out)
-    content = library.definition(name)
-    if content is None or "valid" not in content:
-        found = f"{name!r} has no spectrum" if content is None else f"{name} has no band of its own"
-        raise BadInput(
-            [Fault(COMMAND_LINE, "--out", found, "name a material of the library (mixsim list materials)")]
+    if name not in library.names():
+        allowed = "a material of the library (mixsim list materials)"
+        fault = Fault(
+            COMMAND_LINE, "--out", f"{name!r} has no spectrum", allowed, nearest(name, library.names())
         )
-    valid = content["valid"]
-    text = f"""
-        title = {json.dumps(content["title"], ensure_ascii=False)}
-        host.material = "{name}"
-        band = {{ from = "{valid["from"]}", to = "{valid["to"]}", points = 401, spacing = "log" }}
-    """
-    write(predict(parse(text)), out)
+        raise BadInput([fault])
+    write(predict(parse(library.alone(name))), out)
     print(f"mixsim: wrote {out}", file=sys.stderr)
 
 

@@ -89,6 +89,8 @@ CASES: dict[str, tuple[list[str], list[str]]] = {
     "materials at no place": (["list", "materials", "--at", "3 kg"], ["--at", "'kg'"]),
     "rules at a place": (["list", "rules", "--at", "3 nm"], ["--at", "list materials"]),
     "nothing with a word": (["list", "rules", "--text", "xyz"], ["no rules like that"]),
+    "a filter without a kind": (["list", "--evidence", "practice"], ["--evidence", "mixsim list materials"]),
+    "a material misspelt": (["show", "goold", "--out", "b.png"], ["'goold'", "did you mean 'gold'?"]),
     "a rule drawn": (["show", "bruggeman", "--out", "b.png"], ["'bruggeman' has no spectrum"]),
     "unknown name": (["show", "brugeman"], ["'brugeman'", "did you mean 'bruggeman'?"]),
     "a recipe to show that is not there": (["show", "none.toml"], ["none.toml: no such file"]),
