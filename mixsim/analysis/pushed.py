@@ -8,9 +8,10 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
+from mixsim.analysis.uncertainty.first_order import halves, pairs
+from mixsim.analysis.uncertainty.inputs import uncertain_leaves
 from mixsim.mixture import Mixture
 from mixsim.recipe import Recipe
-from mixsim.recipe.agreement import of_mixture
 
 Floats = NDArray[np.float64]
 
@@ -34,11 +35,6 @@ class Pushed:
     imag: Floats
     static: Floats
     high_frequency: Floats
-
-
-def stated(recipe: Recipe) -> dict[str, float]:
-    """Standard uncertainties that the recipe states for numbers of the mixture, by path [SI]."""
-    return {path: leaf.std for path, leaf in recipe.leaves.items() if leaf.std and of_mixture(path)}
 
 
 def pushed(recipe: Recipe, mixture: Mixture, omega: Floats) -> Pushed | None:
@@ -65,27 +61,18 @@ def pushed(recipe: Recipe, mixture: Mixture, omega: Floats) -> Pushed | None:
     ----------
     JCGM 100:2008, 5.1.
     """
-    spreads = stated(recipe)
-    if not spreads:
+    inputs = uncertain_leaves(recipe)
+    if not inputs:
         return None
-    count = len(spreads)
-    values: dict[str, Any] = {}
-    for place, (path, std) in enumerate(spreads.items()):
-        centre, allowed = recipe.leaves[path].value, recipe.ranges[path]
-        column = np.full(2 * count, centre)
-        least = np.nextafter(allowed.minimum, np.inf) if allowed.exclusive else allowed.minimum
-        column[2 * place : 2 * place + 2] = np.clip([centre + std, centre - std], least, allowed.maximum)
-        values[path] = column
+    values = pairs(inputs)
     response, limits = mixture.response(values, omega).permittivity, mixture.limits(values)
 
     def spread(answers: Any) -> Any:
-        halves = 0.5 * (answers[0::2] - answers[1::2])
-        return np.sqrt(np.sum(halves**2, axis=0))
+        return np.sqrt(np.sum(halves(answers) ** 2, axis=0))
 
-    halves = 0.5 * (response[0::2] - response[1::2])
-    felt = np.any(halves != 0.0, axis=tuple(range(1, halves.ndim)))
-    felt |= np.any((limits.static[0::2] != limits.static[1::2]).reshape(count, -1), axis=-1)
-    paths = tuple(path for path, matters in zip(spreads, felt, strict=True) if matters)
+    moved = halves(response), halves(limits.static)
+    felt = np.any([np.any((part != 0.0).reshape(len(inputs), -1), axis=-1) for part in moved], axis=0)
+    paths = tuple(path for path, matters in zip(inputs, felt, strict=True) if matters)
     if not paths:
         return None
     return Pushed(

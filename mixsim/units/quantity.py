@@ -51,6 +51,11 @@ class Leaf:
     dimension: str
     written: str
 
+    @property
+    def rectangular(self) -> bool:
+        """Whether ± was given as limits, none of the values between likelier than another."""
+        return self.std is not None and re.search(r"\(\s*limits\s*\)\s*$", self.written) is not None
+
 
 def read(written: str | int | float, dimension: str) -> Leaf:
     """Leaf of a quantity as written in a recipe.

@@ -11,7 +11,8 @@ from mixsim.analysis.inversion.answer import MonteCarlo
 from mixsim.analysis.inversion.decide import Solution
 from mixsim.analysis.inversion.model import ReadingModel
 from mixsim.analysis.inversion.solver import covariance, gauss_newton, jacobian
-from mixsim.analysis.pushed import stated
+from mixsim.analysis.uncertainty.first_order import effects
+from mixsim.analysis.uncertainty.inputs import Uncertain, draw, uncertain_leaves
 from mixsim.recipe import Recipe
 
 Floats = NDArray[np.float64]
@@ -80,45 +81,33 @@ def doubt_of(recipe: Recipe, model: ReadingModel, solution: Solution, seed: int)
         if scaled[i] > _UNIFORM:
             weak = f"the readings narrow {unknown.path} no further than the range that was given"
     std = scaled * model.slopes(solution.place)
-    check = _monte_carlo(recipe, model, solution.place, stds, std, numbers, seed)
+    check = _monte_carlo(model, solution.place, stds, std, numbers, seed)
     return Doubt(std, cov / np.outer(scaled, scaled), check, weak, "", tuple(numbers))
 
 
-def _numbers(recipe: Recipe, model: ReadingModel, place: Floats) -> tuple[dict[str, float], Floats]:
+def _numbers(recipe: Recipe, model: ReadingModel, place: Floats) -> tuple[dict[str, Uncertain], Floats]:
     """Numbers of the recipe with a ± that the readings feel, and what one ± of each does to the readings."""
-    free = {unknown.path for unknown in model.unknowns}
-    found: dict[str, float] = {}
-    effects = []
-    for path, std in stated(recipe).items():
-        if path in free:
-            continue
-        value = recipe.leaves[path].value
-        ends = [model.with_others({path: np.asarray(value + side * std)})(place) for side in (1.0, -1.0)]
-        effect = 0.5 * (ends[0] - ends[1])
-        if np.isfinite(effect).all() and effect.any():
-            found[path] = std
-            effects.append(effect)
-    return found, np.array(effects).T.reshape(len(model.readings), len(found))
+    inputs = uncertain_leaves(recipe, without=[unknown.path for unknown in model.unknowns])
+    if not inputs:
+        return {}, np.zeros((len(model.readings), 0))
+    moved = effects(lambda x: model.with_others(x)(place), inputs)
+    felt = np.asarray(np.isfinite(moved).all(axis=1) & moved.any(axis=1))
+    found = {path: number for (path, number), matters in zip(inputs.items(), felt, strict=True) if matters}
+    return found, moved[felt].T
 
 
 def _monte_carlo(
-    recipe: Recipe,
     model: ReadingModel,
     place: Floats,
     stds: Floats,
     std: Floats,
-    numbers: dict[str, float],
+    numbers: dict[str, Uncertain],
     seed: int,
 ) -> MonteCarlo:
     random = np.random.default_rng(seed)
     centre = np.array([reading.value for reading in model.readings])
     targets = centre + stds * random.standard_normal((_DRAWS, len(stds)))
-    others = {}
-    for path, spread in numbers.items():
-        allowed = recipe.ranges[path]
-        drawn = recipe.leaves[path].value + spread * random.standard_normal(_DRAWS)
-        least = np.nextafter(allowed.minimum, np.inf) if allowed.exclusive else allowed.minimum
-        others[path] = np.clip(drawn, least, allowed.maximum)
+    others = draw(numbers, _DRAWS, random)
     places, inside = gauss_newton(model.with_others(others), targets, 1.0 / stds, place)
     values = model.values(places)
     ends = np.percentile(values, [2.5, 97.5], axis=0)
