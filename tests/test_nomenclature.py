@@ -17,6 +17,7 @@ from mixsim.dispersion import (
     descriptions,
     infinity_from_pair,
     interpolate,
+    kramers_kronig,
     step_from_pair,
 )
 from mixsim.mixing import RULES
@@ -32,6 +33,7 @@ def formulas() -> Iterator[Callable[..., Any]]:
         yield from (route.function for route in routes if route.function is not None)
     yield from (model.function for model in INDEX_MODELS.values())
     yield from (descriptions.width_from_wavelength, interpolate, infinity_from_pair, step_from_pair)
+    yield kramers_kronig
     for rule in RULES.values():
         given = (rule.function, rule.fraction_from, rule.inclusion_from)
         yield from (function for function in given if function is not None)
