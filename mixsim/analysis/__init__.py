@@ -9,10 +9,10 @@ if TYPE_CHECKING:
     from mixsim.analysis.auditing import Audit, audit
     from mixsim.analysis.band import Axis, Varied, axis_of, varied
     from mixsim.analysis.caution import Caution
-    from mixsim.analysis.inversion.answer import Estimate, Inversion, Reading, Unknown
-    from mixsim.analysis.inversion.asked import freed
+    from mixsim.analysis.inversion.answer import Estimate, Inversion, Reading
     from mixsim.analysis.inversion.inverting import invert
     from mixsim.analysis.prediction import Prediction, predict, sweep
+    from mixsim.analysis.unknowns import Unknown, freed
 
 _HOMES = {
     "Audit": "auditing",
@@ -22,11 +22,11 @@ _HOMES = {
     "Inversion": "inversion.answer",
     "Prediction": "prediction",
     "Reading": "inversion.answer",
-    "Unknown": "inversion.answer",
+    "Unknown": "unknowns",
     "Varied": "band",
     "audit": "auditing",
     "axis_of": "band",
-    "freed": "inversion.asked",
+    "freed": "unknowns",
     "invert": "inversion.inverting",
     "predict": "prediction",
     "sweep": "prediction",

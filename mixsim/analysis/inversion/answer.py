@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 
 from mixsim.analysis.caution import Caution
 from mixsim.analysis.plain import plain, provenance
+from mixsim.analysis.unknowns import Unknown
 from mixsim.recipe import Recipe
 
 Verdict = Literal["answered", "impossible", "undecided"]
@@ -35,23 +36,6 @@ class Reading:
     value: float
     std: float | None
     written: str
-
-
-@dataclass(frozen=True)
-class Unknown:
-    """One leaf to find.
-
-    Attributes
-    ----------
-    path
-        Of the leaf.
-    low, high
-        Range in which to look [SI].
-    """
-
-    path: str
-    low: float
-    high: float
 
 
 @dataclass(frozen=True)

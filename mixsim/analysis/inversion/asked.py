@@ -1,13 +1,14 @@
-"""What an inversion is asked: the readings and the unknowns, from the recipe or in its place."""
+"""The readings that an inversion is asked about, from the recipe or in its place."""
 
 from __future__ import annotations
 
 from collections.abc import Sequence
 
-from mixsim.analysis.inversion.answer import Reading, Unknown
+from mixsim.analysis.inversion.answer import Reading
+from mixsim.analysis.unknowns import Unknown
 from mixsim.errors import BadInput, Fault
 from mixsim.recipe import COMMAND_LINE, Recipe
-from mixsim.units import Leaf, read
+from mixsim.units import Leaf
 
 MOST_UNKNOWNS = 2
 KINDS = ("static", "high_frequency")
@@ -53,43 +54,8 @@ def _fault(recipe: Recipe, kind: str, given: dict[str, Leaf | None], found: str,
     return Fault(COMMAND_LINE, "--" + kind.replace("_", "-"), found, allowed)
 
 
-def unknowns_of(recipe: Recipe, free: Sequence[Unknown] | None) -> tuple[Unknown, ...]:
-    """The unknowns given, else those of the recipe.
-
-    Raises
-    ------
-    BadInput
-        Where there is none, or more than two readings can tell.
-    """
-    unknowns = list(free or ())
-    if not unknowns:
-        for path, limits in recipe.schema.unknowns.items():
-            low, high = sorted(read(limit, recipe.leaves[path].dimension).value for limit in limits)
-            unknowns.append(Unknown(path, low, high))
-    if not unknowns:
-        allowed = 'give a range, such as "inclusions.ato.volume_fraction" = ["0 %", "30 %"]'
-        raise BadInput([recipe.fault("unknowns", "nothing to find", allowed)])
-    paths = [unknown.path for unknown in unknowns]
-    if len(set(paths)) < len(paths):
-        raise BadInput([Fault(COMMAND_LINE, "--free", f"{paths[0]} is freed twice", "once each")])
-    if len(paths) > MOST_UNKNOWNS:
-        found = f"{len(paths)} unknowns: {', '.join(paths)}"
+def few_enough(recipe: Recipe, unknowns: Sequence[Unknown]) -> None:
+    """Refuse more unknowns than two readings can tell."""
+    if len(unknowns) > MOST_UNKNOWNS:
+        found = f"{len(unknowns)} unknowns: {', '.join(unknown.path for unknown in unknowns)}"
         raise BadInput([recipe.fault("unknowns", found, "static and high_frequency tell two at most")])
-    return tuple(unknowns)
-
-
-def freed(
-    recipe: Recipe, path: str, low: str | float, high: str | float, *, option: str = "--free"
-) -> Unknown:
-    """An unknown with its range as they would stand in the recipe.
-
-    Raises
-    ------
-    BadInput
-        Where path or range cannot be used.
-    """
-    ends = sorted(recipe.read(path, end, option=option).value for end in (low, high))
-    if ends[0] == ends[1]:
-        found = f"{path}: range {low} to {high} is empty"
-        raise BadInput([Fault(COMMAND_LINE, option, found, "the two ends differ")])
-    return Unknown(path, ends[0], ends[1])

@@ -12,7 +12,8 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
-from mixsim.analysis.inversion.answer import Reading, Unknown
+from mixsim.analysis.inversion.answer import Reading
+from mixsim.analysis.unknowns import Unknown
 from mixsim.mixture import Mixture
 from mixsim.mixture.mixture import Constituent
 from mixsim.mixture.spectra import Spectrum

@@ -9,10 +9,11 @@ import numpy as np
 from numpy.typing import NDArray
 
 from mixsim.analysis.inversion import explain
-from mixsim.analysis.inversion.answer import Reading, Unknown, Verdict
+from mixsim.analysis.inversion.answer import Reading, Verdict
 from mixsim.analysis.inversion.closed_form import closed_form
 from mixsim.analysis.inversion.model import ReadingModel, grid
 from mixsim.analysis.inversion.solver import crossings, least_squares, towards_edges, valleys
+from mixsim.analysis.unknowns import Unknown
 from mixsim.mixture import Mixture
 from mixsim.recipe import Recipe
 

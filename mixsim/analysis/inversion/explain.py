@@ -7,9 +7,10 @@ from collections.abc import Sequence
 import numpy as np
 from numpy.typing import NDArray
 
-from mixsim.analysis.inversion.answer import Reading, Unknown
+from mixsim.analysis.inversion.answer import Reading
 from mixsim.analysis.inversion.model import ReadingModel, grid
 from mixsim.analysis.inversion.solver import crossings
+from mixsim.analysis.unknowns import Unknown
 from mixsim.errors import Refusal
 from mixsim.mixing import hashin_shtrikman, rule_named
 from mixsim.mixture import VOIDS, Mixture

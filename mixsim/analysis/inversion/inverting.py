@@ -10,13 +10,14 @@ from numpy.typing import NDArray
 
 from mixsim.analysis.caution import Caution
 from mixsim.analysis.inversion import explain
-from mixsim.analysis.inversion.answer import Estimate, Inversion, Reading, Residual, RuleAnswer, Unknown
-from mixsim.analysis.inversion.asked import readings_of, unknowns_of
+from mixsim.analysis.inversion.answer import Estimate, Inversion, Reading, Residual, RuleAnswer
+from mixsim.analysis.inversion.asked import few_enough, readings_of
 from mixsim.analysis.inversion.decide import Solution, solve
 from mixsim.analysis.inversion.doubt import Doubt, doubt_of
 from mixsim.analysis.inversion.model import ReadingModel
 from mixsim.analysis.rules import applicable_rules
 from mixsim.analysis.suspicion import suspicions
+from mixsim.analysis.unknowns import Unknown, unknowns_of
 from mixsim.errors import BadInput
 from mixsim.mixture import Mixture
 from mixsim.recipe import Recipe
@@ -81,6 +82,7 @@ def invert(
     """
     readings = readings_of(recipe, static=static, high_frequency=high_frequency)
     unknowns = unknowns_of(recipe, free)
+    few_enough(recipe, unknowns)
     mixture = recipe.compile()
     if mixture.aligned:
         allowed = "a reading would have to say along which axis; orientation = 'random' has one level"

@@ -8,14 +8,14 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
-from mixsim.analysis.inversion.answer import Reading, Unknown
+from mixsim.analysis.inversion.answer import Reading
+from mixsim.analysis.unknowns import Ranges, Unknown
 from mixsim.mixture import HOST, Mixture
 
 Floats = NDArray[np.float64]
-_WIDE = 50.0  # ratio of the ends from which a range is gone through by ratio
 
 
-class ReadingModel:
+class ReadingModel(Ranges):
     """What static and high-frequency readings the mixture gives for some values of the unknowns.
 
     Parameters
@@ -37,36 +37,9 @@ class ReadingModel:
         readings: Sequence[Reading],
         others: Mapping[str, Floats] | None = None,
     ) -> None:
-        self.mixture, self.unknowns, self.readings = mixture, tuple(unknowns), tuple(readings)
+        super().__init__(unknowns)
+        self.mixture, self.readings = mixture, tuple(readings)
         self.others = dict(others or {})
-        self._log = [u.low > 0.0 and u.high / u.low > _WIDE for u in unknowns]
-
-    def values(self, t: Floats) -> Floats:
-        """Values of the unknowns [SI] at scaled places, shape (..., unknowns)."""
-        columns = [
-            u.low * (u.high / u.low) ** t[..., i] if log else u.low + (u.high - u.low) * t[..., i]
-            for i, (u, log) in enumerate(zip(self.unknowns, self._log, strict=True))
-        ]
-        return np.stack(columns, axis=-1)
-
-    def places(self, values: Floats) -> Floats:
-        """Scaled places of some values [SI], shape (..., unknowns)."""
-        columns = [
-            np.log(values[..., i] / u.low) / np.log(u.high / u.low)
-            if log
-            else (values[..., i] - u.low) / (u.high - u.low)
-            for i, (u, log) in enumerate(zip(self.unknowns, self._log, strict=True))
-        ]
-        return np.stack(columns, axis=-1)
-
-    def slopes(self, t: Floats) -> Floats:
-        """Derivatives of the values by their scaled places, shape (..., unknowns)."""
-        values = self.values(t)
-        columns = [
-            values[..., i] * np.log(u.high / u.low) if log else np.full(t.shape[:-1], u.high - u.low)
-            for i, (u, log) in enumerate(zip(self.unknowns, self._log, strict=True))
-        ]
-        return np.stack(columns, axis=-1)
 
     def with_others(self, others: Mapping[str, Floats]) -> ReadingModel:
         """The same with other numbers of the recipe."""
