@@ -12,7 +12,8 @@ from mixsim.analysis.inversion import explain
 from mixsim.analysis.inversion.answer import Reading, Verdict
 from mixsim.analysis.inversion.closed_form import closed_form
 from mixsim.analysis.inversion.model import ReadingModel, grid
-from mixsim.analysis.inversion.solver import crossings, least_squares, towards_edges, valleys
+from mixsim.analysis.inversion.scan import crossings, towards_edges, valleys
+from mixsim.analysis.least_squares import least_squares
 from mixsim.analysis.unknowns import Unknown
 from mixsim.mixture import Mixture
 from mixsim.recipe import Recipe

@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 from mixsim.analysis.inversion.answer import MonteCarlo
 from mixsim.analysis.inversion.decide import Solution
 from mixsim.analysis.inversion.model import ReadingModel
-from mixsim.analysis.inversion.solver import covariance, gauss_newton, jacobian
+from mixsim.analysis.least_squares import covariance, gauss_newton, jacobian
 from mixsim.analysis.uncertainty.first_order import effects
 from mixsim.analysis.uncertainty.inputs import Uncertain, draw, uncertain_leaves
 from mixsim.recipe import Recipe

@@ -9,7 +9,7 @@ from numpy.typing import NDArray
 
 from mixsim.analysis.inversion.answer import Reading
 from mixsim.analysis.inversion.model import ReadingModel, grid
-from mixsim.analysis.inversion.solver import crossings
+from mixsim.analysis.inversion.scan import crossings
 from mixsim.analysis.unknowns import Unknown
 from mixsim.errors import Refusal
 from mixsim.mixing import hashin_shtrikman, rule_named

@@ -51,7 +51,9 @@ class ReadingModel(Ranges):
 
     def at(self, values: Floats) -> Floats:
         """Readings at values [SI], shape (..., readings)."""
-        given = {**self.others, **{u.path: values[..., i] for i, u in enumerate(self.unknowns)}}
+        lead = values.ndim - 1
+        given = {path: _leading(other, lead) for path, other in self.others.items()}
+        given |= {u.path: values[..., i] for i, u in enumerate(self.unknowns)}
         limits = self.mixture.limits(given)
         levels = [np.real(getattr(limits, reading.kind)) for reading in self.readings]
         stacked = np.stack(levels, axis=-1)
@@ -74,6 +76,11 @@ class ReadingModel(Ranges):
                 level = np.real(phase.permittivity.high(x))
             levels[phase.name] = np.broadcast_to(level, (*t.shape[:-1], 1))[..., 0]
         return levels
+
+
+def _leading(other: Any, axes: int) -> Any:
+    """A number of the recipe, or its draws along the first of some axes."""
+    return np.reshape(other, (*np.shape(other), *[1] * (axes - np.ndim(other)))) if np.ndim(other) else other
 
 
 def grid(unknowns: int, points: int) -> Floats:
