@@ -18,6 +18,26 @@ from mixsim.units import SPEED_OF_LIGHT, VACUUM_PERMITTIVITY
 Array = NDArray[Any]
 
 
+def permittivity_real(omega: ArrayLike, permittivity: ArrayLike, permeability: ArrayLike) -> Array:
+    """Real part of the permittivity, ε′ [-]."""
+    return np.real(np.asarray(permittivity))
+
+
+def permittivity_imag(omega: ArrayLike, permittivity: ArrayLike, permeability: ArrayLike) -> Array:
+    """Imaginary part of the permittivity, ε″ [-], positive where power is lost."""
+    return np.imag(np.asarray(permittivity))
+
+
+def permeability_real(omega: ArrayLike, permittivity: ArrayLike, permeability: ArrayLike) -> Array:
+    """Real part of the permeability, μ′ [-]."""
+    return np.real(np.asarray(permeability))
+
+
+def permeability_imag(omega: ArrayLike, permittivity: ArrayLike, permeability: ArrayLike) -> Array:
+    """Imaginary part of the permeability, μ″ [-], positive where power is lost."""
+    return np.imag(np.asarray(permeability))
+
+
 def complex_index(omega: ArrayLike, permittivity: ArrayLike, permeability: ArrayLike) -> Array:
     """Complex refractive index n + ik.
 
@@ -169,6 +189,14 @@ class Quantity:
 QUANTITIES: Mapping[str, Quantity] = {
     quantity.name: quantity
     for quantity in (
+        Quantity("permittivity_real", "ε′", "", permittivity_real, "real part of the permittivity"),
+        Quantity(
+            "permittivity_imag", "ε″", "", permittivity_imag, "imaginary part of the permittivity, loss"
+        ),
+        Quantity("permeability_real", "μ′", "", permeability_real, "real part of the permeability"),
+        Quantity(
+            "permeability_imag", "μ″", "", permeability_imag, "imaginary part of the permeability, loss"
+        ),
         Quantity("index", "n", "", refractive_index, "refractive index, real part of √ε·√μ"),
         Quantity("extinction", "k", "", extinction, "extinction coefficient, imaginary part of √ε·√μ"),
         Quantity("loss_tangent", "tan δ", "", loss_tangent, "dielectric loss tangent ε″/ε′"),

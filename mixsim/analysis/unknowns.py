@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 
 from mixsim.errors import BadInput, Fault
 from mixsim.recipe import COMMAND_LINE, Recipe
+from mixsim.recipe.leaves import Span
 from mixsim.units import read
 
 Floats = NDArray[np.float64]
@@ -27,11 +28,22 @@ class Unknown:
         Of the leaf.
     low, high
         Range in which to look [SI].
+    sample
+        The one sample that it belongs to, or empty where all share it.
+    prior
+        What is known of it beforehand, value and standard uncertainty [SI], or None.
     """
 
     path: str
     low: float
     high: float
+    sample: str = ""
+    prior: tuple[float, float] | None = None
+
+    @property
+    def name(self) -> str:
+        """Its path, with the sample that it belongs to in front."""
+        return f"samples.{self.sample}.{self.path}" if self.sample else self.path
 
 
 class Ranges:
@@ -85,9 +97,7 @@ def unknowns_of(recipe: Recipe, free: Sequence[Unknown] | None) -> tuple[Unknown
     """
     unknowns = list(free or ())
     if not unknowns:
-        for path, limits in recipe.schema.unknowns.items():
-            low, high = sorted(read(limit, recipe.leaves[path].dimension).value for limit in limits)
-            unknowns.append(Unknown(path, low, high))
+        unknowns += [_of_span(recipe, path, span) for path, span in recipe.schema.unknowns.items()]
     if not unknowns:
         allowed = 'give a range, such as "inclusions.ato.volume_fraction" = ["0 %", "30 %"]'
         raise BadInput([recipe.fault("unknowns", "nothing to find", allowed)])
@@ -95,6 +105,23 @@ def unknowns_of(recipe: Recipe, free: Sequence[Unknown] | None) -> tuple[Unknown
     if len(set(paths)) < len(paths):
         raise BadInput([Fault(COMMAND_LINE, "--free", f"{paths[0]} is freed twice", "once each")])
     return tuple(unknowns)
+
+
+def of_samples(recipe: Recipe) -> tuple[Unknown, ...]:
+    """The unknowns that single samples of a recipe have for themselves."""
+    return tuple(
+        _of_span(recipe, path, span, sample.name)
+        for sample in recipe.schema.samples
+        for path, span in sample.unknowns.items()
+    )
+
+
+def _of_span(recipe: Recipe, path: str, span: Span, sample: str = "") -> Unknown:
+    dimension = recipe.leaves[path].dimension
+    low, high = sorted(read(end, dimension).value for end in (span.low, span.high))
+    known = None if span.prior is None else read(span.prior, dimension)
+    prior = (known.value, known.std) if known is not None and known.std else None
+    return Unknown(path, low, high, sample, prior)
 
 
 def freed(
@@ -107,7 +134,7 @@ def freed(
     BadInput
         Where path or range cannot be used.
     """
-    ends = sorted(recipe.read(path, end, option=option).value for end in (low, high))
+    ends = sorted(recipe.read(path, end, option=option, to_find=True).value for end in (low, high))
     if ends[0] == ends[1]:
         found = f"{path}: range {low} to {high} is empty"
         raise BadInput([Fault(COMMAND_LINE, option, found, "the two ends differ")])

@@ -9,12 +9,13 @@ from mixsim.composition import BASES, Basis, Loading, volume_fractions
 from mixsim.dispersion.descriptions import width_from_wavelength
 from mixsim.errors import Refusal, nearest
 from mixsim.recipe.faults import Finding
-from mixsim.recipe.leaves import Number
-from mixsim.recipe.schema import Inclusion, Schema
+from mixsim.recipe.leaves import Number, Span
+from mixsim.recipe.schema import Inclusion, Measured, Schema
 from mixsim.units import Leaf, kind_of_axis, read, written_unit
 
 OF_MIXTURE = "name one that the mixture depends on, not one of the band, of a validity or of the readings"
 _ROUNDING = 1e-12
+_ASIDE = ("band.", "measured.", "samples.")  # tables that the mixture does not depend on
 
 
 def disagreements(
@@ -50,7 +51,7 @@ def path_or_nearest(path: str, paths: Collection[str]) -> str | None:
 
 def of_mixture(path: str) -> bool:
     """Whether the mixture depends on the number at a path, so that it can be varied or found."""
-    return not path.startswith(("band.", "measured.")) and not re.match(r"materials\.[^.]+\.valid\.", path)
+    return not path.startswith(_ASIDE) and not re.match(r"materials\.[^.]+\.valid\.", path)
 
 
 def _in_order(start: Leaf, end: Leaf, path: str) -> Iterator[Finding]:
@@ -99,8 +100,15 @@ def _room(schema: Schema) -> Iterator[Finding]:
 
 
 def _unknowns(schema: Schema, leaves: Mapping[str, Leaf], ranges: Mapping[str, Number]) -> Iterator[Finding]:
-    for path, limits in schema.unknowns.items():
-        where = f"unknowns.{path}"
+    """Ranges of unknowns, those of single samples among them, and what is known beforehand."""
+    spans = [(f"unknowns.{path}", path, span) for path, span in schema.unknowns.items()]
+    for place, sample in enumerate(schema.samples):
+        where = f"samples.{place}.unknowns"
+        spans += [(f"{where}.{path}", path, span) for path, span in sample.unknowns.items()]
+        for path in set(sample.unknowns) & set(schema.unknowns):
+            found = f"{path} is an unknown of all samples and of {sample.name}"
+            yield f"{where}.{path}", Refusal(found, "one of the two")
+    for where, path, span in spans:
         if not of_mixture(path):
             yield where, Refusal(f"{path} is no number of the mixture", OF_MIXTURE)
             continue
@@ -108,23 +116,40 @@ def _unknowns(schema: Schema, leaves: Mapping[str, Leaf], ranges: Mapping[str, N
             suggestion = path_or_nearest(path, [known for known in leaves if of_mixture(known)])
             yield where, Refusal(f"unknown path {path!r}", "a path of a number in the recipe", suggestion)
             continue
-        try:
-            low, high = (read(limit, leaves[path].dimension) for limit in limits)
-        except Refusal as refusal:
-            yield where, refusal
-            continue
-        allowed = ranges[path]
-        for end in (low, high):
-            if not allowed.holds(end.value):
-                yield where, Refusal(f"{end.written!r} is out of range", f"must be {allowed.said()}")
-        if low.value == high.value:
-            yield where, Refusal(f"range {low.written!r} to {high.written!r} is empty", "the two ends differ")
+        yield from _span(where, span, leaves[path].dimension, ranges[path].to_find())
+
+
+def _span(where: str, span: Span, dimension: str, allowed: Number) -> Iterator[Finding]:
+    try:
+        low, high = (read(end, dimension) for end in (span.low, span.high))
+        prior = None if span.prior is None else read(span.prior, dimension)
+    except Refusal as refusal:
+        yield where, refusal
+        return
+    for end in (low, high):
+        if not allowed.holds(end.value):
+            yield where, Refusal(f"{end.written!r} is out of range", f"must be {allowed.said()}")
+    if low.value == high.value:
+        yield where, Refusal(f"range {low.written!r} to {high.written!r} is empty", "the two ends differ")
+    if prior is not None and not prior.std:
+        found = f"{prior.written!r} as what is known beforehand"
+        yield where, Refusal(found, "it needs a ± above zero")
 
 
 def _readings(schema: Schema) -> Iterator[Finding]:
-    measured = schema.measured
-    if measured is not None and measured.static is not None and measured.high_frequency is not None:
-        yield from _levels(measured.static, measured.high_frequency, "measured.static")
+    given: list[tuple[str, Measured]] = [("measured", schema.measured)] if schema.measured is not None else []
+    given += [(f"samples.{place}", sample) for place, sample in enumerate(schema.samples)]
+    for path, measured in given:
+        if measured.static is not None and measured.high_frequency is not None:
+            yield from _levels(measured.static, measured.high_frequency, f"{path}.static")
+        for place, reading in enumerate(measured.readings):
+            if len(reading.model_fields_set) < 2:
+                allowed = "name what was read there, such as permittivity"
+                yield f"{path}.readings.{place}", Refusal("a reading of nothing", allowed)
+    names = [sample.name for sample in schema.samples]
+    for place, name in enumerate(names):
+        if name in names[:place]:
+            yield f"samples.{place}.name", Refusal(f"{name!r} stands twice", "each sample has its own name")
 
 
 def _levels(static: Leaf, high_frequency: Leaf, path: str) -> Iterator[Finding]:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING, Any
 
 from pydantic import BaseModel
@@ -51,6 +51,10 @@ class Number:
         """Whether an SI value lies in the range."""
         above = value > self.minimum if self.exclusive else value >= self.minimum
         return above and value <= self.maximum
+
+    def to_find(self) -> Number:
+        """The range in which it may be looked for: a fraction below zero speaks against a model."""
+        return replace(self, minimum=-1.0) if self.dimension == "fraction" else self
 
     def said(self) -> str:
         """The range in words, to follow "must be"."""
@@ -101,8 +105,25 @@ class Number:
             raise refused(refusal) from None
 
 
+@dataclass(frozen=True)
+class Span:
+    """The range of an unknown as written: each end is read once the path is known.
+
+    Attributes
+    ----------
+    low, high
+        The ends.
+    prior
+        What is known of it beforehand, with its ±, or None.
+    """
+
+    low: str | float
+    high: str | float
+    prior: str | float | None = None
+
+
 class Ends:
-    """What a field takes that holds the two ends of a range: each is read once its path is known."""
+    """What a field takes that holds the two ends of a range, and perhaps what is known beforehand."""
 
     def __get_pydantic_core_schema__(self, source: Any, handler: GetCoreSchemaHandler) -> CoreSchema:
         return core_schema.no_info_plain_validator_function(self._validated)
@@ -110,24 +131,39 @@ class Ends:
     def __get_pydantic_json_schema__(
         self, schema: CoreSchema, handler: GetJsonSchemaHandler
     ) -> JsonSchemaValue:
+        number: JsonSchemaValue = {"type": ["string", "number"]}
         return {
-            "type": "array",
-            "items": {"type": ["string", "number"]},
-            "minItems": 2,
-            "maxItems": 2,
             "description": "the two ends of the range, for example ['0 %', '30 %']",
+            "anyOf": [
+                {"type": "array", "items": number, "minItems": 2, "maxItems": 2},
+                {
+                    "type": "object",
+                    "properties": {"low": number, "high": number, "prior": number},
+                    "required": ["low", "high"],
+                    "additionalProperties": False,
+                },
+            ],
         }
 
-    def _validated(self, written: Any) -> Any:
+    def _validated(self, written: Any) -> Span:
         like = "a range is a list of its two ends, such as ['0 %', '30 %']"
-        if isinstance(written, Mapping) and _single_list(written):
+        if isinstance(written, Span):
+            return written
+        if isinstance(written, Mapping) and "low" in written and "high" in written:
+            if stray := set(written) - {"low", "high", "prior"}:
+                allowed = "low, high and perhaps prior"
+                raise refused(Refusal(f"{sorted(stray)[0]} in a range", allowed))
+            ends = [written["low"], written["high"], *([written["prior"]] if "prior" in written else [])]
+        elif isinstance(written, Mapping) and _single_list(written):
             raise refused(Refusal("a path without quotes", 'its dots stand in quotes: "a.b.c" = [low, high]'))
-        if not isinstance(written, list) or len(written) != 2:
+        elif isinstance(written, list) and len(written) == 2:
+            ends = written
+        else:
             raise refused(Refusal(f"{as_toml(written)} where a range is needed", like))
-        for end in written:
+        for end in ends:
             if isinstance(end, bool) or not isinstance(end, str | int | float):
                 raise refused(Refusal(f"{as_toml(end)} as the end of a range", like))
-        return written
+        return Span(*ends)
 
 
 def refused(refusal: Refusal) -> PydanticCustomError:

@@ -46,6 +46,8 @@ class Recipe:
         The recipe as written.
     settings
         What the command line changed, path → value.
+    folder
+        Where the files that it names are looked for.
     """
 
     schema: Schema
@@ -55,6 +57,7 @@ class Recipe:
     file: str
     text: str
     settings: Mapping[str, Any]
+    folder: Path
 
     @cached_property
     def digest(self) -> str:
@@ -91,8 +94,10 @@ class Recipe:
         )
         return fault
 
-    def read(self, path: str, written: str | float, *, option: str) -> Leaf:
+    def read(self, path: str, written: str | float, *, option: str, to_find: bool = False) -> Leaf:
         """A number that an option gives for the leaf at a path, held to its dimension and range.
+
+        An end of a range in which to look for it (`to_find`) may lie below what the recipe itself takes.
 
         Raises
         ------
@@ -101,7 +106,8 @@ class Recipe:
         """
         self.leaf(path, option=option)
         try:
-            return self.ranges[path].leaf(parsed(written))
+            allowed = self.ranges[path].to_find() if to_find else self.ranges[path]
+            return allowed.leaf(parsed(written))
         except Refusal as refusal:
             found = f"{path}: {refusal.found}"
             fault = Fault(COMMAND_LINE, option, found, refusal.allowed, refusal.suggestion)
@@ -203,4 +209,4 @@ def parse(
     leaves, allowed = dict(walk(schema)), dict(ranges(schema))
     if wrong := list(disagreements(schema, leaves, allowed)):
         raise BadInput(faults_of(wrong, file=file, text=text, settings=changed))
-    return Recipe(schema, leaves, allowed, spectra, file, text, changed)
+    return Recipe(schema, leaves, allowed, spectra, file, text, changed, folder or Path())

@@ -12,7 +12,7 @@ from typing import TYPE_CHECKING, Annotated, Any, Literal
 from pydantic import BaseModel, ConfigDict, Field, create_model
 
 from mixsim.dispersion import INDEX_MODELS, TERMS, Parameter
-from mixsim.recipe.leaves import Ends, Number
+from mixsim.recipe.leaves import Ends, Number, Span
 from mixsim.units import Leaf
 
 NAME_PATTERN = r"^[A-Za-z0-9_-]+$"
@@ -20,12 +20,14 @@ Name = Annotated[str, Field(pattern=NAME_PATTERN)]
 
 Susceptibility = Annotated[Leaf, Number("number", minimum=-1.0, exclusive=True)]
 Positive = Annotated[Leaf, Number("number", minimum=0.0, exclusive=True)]
+Plain = Annotated[Leaf, Number("number")]
 NotNegative = Annotated[Leaf, Number("number", minimum=0.0)]
 Parts = Annotated[Leaf, Number("number", minimum=0.0)]
 Fraction = Annotated[Leaf, Number("fraction", minimum=0.0, maximum=1.0)]
 Spectral = Annotated[Leaf, Number("spectral", minimum=0.0, exclusive=True)]
 Length = Annotated[Leaf, Number("length", minimum=0.0, exclusive=True)]
 Density = Annotated[Leaf, Number("density", minimum=0.0, exclusive=True)]
+Conductivity = Annotated[Leaf, Number("conductivity")]
 MolarMass = Annotated[Leaf, Number("molar mass", minimum=0.0, exclusive=True)]
 NumberDensity = Annotated[Leaf, Number("number density", minimum=0.0)]
 
@@ -184,6 +186,24 @@ class Material(Section):
         default=None, description="stated static permittivity of an index or table"
     )
     high_frequency: Positive | None = None
+    ash_yield: NotNegative | None = Field(
+        default=None, description="mass left of it after burn-off over its mass: 0 burns away, above 1 gains"
+    )
+
+
+class Reading(Section):
+    """What was read on a sample at one frequency."""
+
+    at: Spectral
+    permittivity: Plain | None = Field(default=None, description="real part ε′")
+    permittivity_imag: Plain | None = Field(default=None, description="loss ε″")
+    loss_tangent: Plain | None = Field(default=None, description="ε″/ε′")
+    index: Plain | None = Field(default=None, description="refractive index n")
+    extinction: Plain | None = Field(default=None, description="extinction coefficient k")
+    permeability: Plain | None = Field(default=None, description="real part μ′")
+    permeability_imag: Plain | None = Field(default=None, description="loss μ″")
+    magnetic_loss_tangent: Plain | None = Field(default=None, description="μ″/μ′")
+    conductivity: Conductivity | None = Field(default=None, description="of all loss, ωε₀ε″")
 
 
 class Measured(Section):
@@ -191,6 +211,22 @@ class Measured(Section):
 
     static: Positive | None = Field(default=None, description="ε′ on the low-frequency plateau")
     high_frequency: Positive | None = Field(default=None, description="ε′ above all resonances named")
+    readings: list[Reading] = []
+    spectrum: str | None = Field(default=None, description="file of a measured spectrum")
+    noise: NotNegative | None = Field(
+        default=None, description="standard uncertainty of a spectrum without one, as a share of its modulus"
+    )
+    density: Density | None = None
+    ash: Fraction | None = Field(default=None, description="weight fraction left after burn-off")
+
+
+class Sample(Measured):
+    """One of several samples: what differs from the recipe, and what was read on it."""
+
+    name: Name
+    set: dict[str, str | float | bool] = Field(default={}, description="path → value on this sample")
+    unknowns: dict[str, Annotated[Span, Ends()]] = Field(default={}, description="of this sample alone")
+    calibrates: bool = Field(default=False, description="its loading is known: it teaches the rule")
 
 
 class Schema(Section):
@@ -205,4 +241,5 @@ class Schema(Section):
     mixing: Mixing = Mixing()
     materials: dict[Name, Material] = {}
     measured: Measured | None = None
-    unknowns: dict[str, Annotated[list[str | float], Ends()]] = {}
+    samples: list[Sample] = []
+    unknowns: dict[str, Annotated[Span, Ends()]] = {}

@@ -8,6 +8,7 @@ import pytest
 
 import mixsim
 from mixsim.recipe import library, load, parse
+from mixsim.recipe.leaves import Span
 from mixsim.units import SPEED_OF_LIGHT
 
 ROOT = Path(__file__).parents[2]
@@ -134,7 +135,9 @@ def test_tables_that_are_not_there_can_be_set() -> None:
 
 def test_a_range_to_find_can_be_set_by_its_path() -> None:
     setting = {"unknowns.inclusions.ato.volume_fraction": '["0 %", "9 %"]'}
-    assert parse(TEXT, settings=setting).schema.unknowns == {"inclusions.ato.volume_fraction": ["0 %", "9 %"]}
+    assert parse(TEXT, settings=setting).schema.unknowns == {
+        "inclusions.ato.volume_fraction": Span("0 %", "9 %")
+    }
 
 
 @pytest.mark.parametrize(
