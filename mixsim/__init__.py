@@ -16,7 +16,7 @@ from importlib import import_module
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
-    from mixsim.analysis import audit, invert, predict, sweep
+    from mixsim.analysis import audit, fit, invert, predict, sweep
     from mixsim.errors import BadInput, MixsimError, Refusal
     from mixsim.recipe import Recipe, load, parse
 
@@ -28,6 +28,7 @@ _HOMES = {
     "Recipe": "mixsim.recipe",
     "Refusal": "mixsim.errors",
     "audit": "mixsim.analysis",
+    "fit": "mixsim.analysis",
     "invert": "mixsim.analysis",
     "load": "mixsim.recipe",
     "parse": "mixsim.recipe",
@@ -42,6 +43,7 @@ __all__ = [
     "Refusal",
     "__version__",
     "audit",
+    "fit",
     "invert",
     "load",
     "parse",

@@ -9,6 +9,8 @@ if TYPE_CHECKING:
     from mixsim.analysis.auditing import Audit, audit
     from mixsim.analysis.band import Axis, Varied, axis_of, varied
     from mixsim.analysis.caution import Caution
+    from mixsim.analysis.fitting.answer import Fitted
+    from mixsim.analysis.fitting.fitting import fit
     from mixsim.analysis.inversion.answer import Estimate, Inversion, Reading
     from mixsim.analysis.inversion.inverting import invert
     from mixsim.analysis.prediction import Prediction, predict, sweep
@@ -19,6 +21,7 @@ _HOMES = {
     "Axis": "band",
     "Caution": "caution",
     "Estimate": "inversion.answer",
+    "Fitted": "fitting.answer",
     "Inversion": "inversion.answer",
     "Prediction": "prediction",
     "Reading": "inversion.answer",
@@ -26,6 +29,7 @@ _HOMES = {
     "Varied": "band",
     "audit": "auditing",
     "axis_of": "band",
+    "fit": "fitting.fitting",
     "freed": "unknowns",
     "invert": "inversion.inverting",
     "predict": "prediction",
@@ -38,6 +42,7 @@ __all__ = [
     "Axis",
     "Caution",
     "Estimate",
+    "Fitted",
     "Inversion",
     "Prediction",
     "Reading",
@@ -45,6 +50,7 @@ __all__ = [
     "Varied",
     "audit",
     "axis_of",
+    "fit",
     "freed",
     "invert",
     "predict",

@@ -9,7 +9,7 @@ from typing import Annotated
 import typer
 
 import mixsim
-from mixsim.cli import questions, reference
+from mixsim.cli import fitting, questions, reference
 from mixsim.cli.status import Command, Program
 
 app = typer.Typer(
@@ -18,7 +18,7 @@ app = typer.Typer(
     add_completion=False,
     rich_markup_mode=None,
     pretty_exceptions_enable=False,
-    help="Permittivity and permeability of dielectric mixtures from one recipe: predict, sweep, invert.",
+    help="Permittivity and permeability of dielectric mixtures from one recipe: predict, sweep, invert, fit.",
     epilog="\b\nExample:\n  mixsim draft nanoparticle-film --out recipe.toml",
 )
 
@@ -31,6 +31,7 @@ _COMMANDS: dict[str, tuple[Callable[..., int], str]] = {
         questions.invert,
         "invert recipe.toml --static '3.20 ± 0.01' --free inclusions.oxide.volume_fraction 0% 40%",
     ),
+    "fit": (fitting.fit, "fit recipe.toml sample.csv --noise 0.5%"),
     "audit": (questions.audit, "audit recipe.toml"),
     "list": (reference.list_, "list rules"),
     "show": (reference.show, "show bruggeman"),

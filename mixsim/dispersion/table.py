@@ -9,11 +9,12 @@ from typing import Any
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-from mixsim.dispersion.table_text import AXES, DIMENSIONS, Content, check_order, parse
+from mixsim.dispersion.table_text import AXES, DIMENSIONS, Content, check_order, doubted, parse
 from mixsim.dispersion.terms.conduction import conduction
 from mixsim.errors import Refusal
 from mixsim.units import from_unit, kind_of_axis, show, spectral_from
 
+_QUANTITY = {"n": "index", "k": "extinction"}  # columns that a quantity calls otherwise
 _SLACK = 1e-12  # the end of a band, written in nm or eV, comes back from rad/s with its last digits changed
 
 
@@ -153,13 +154,73 @@ def interpolate(omega: ArrayLike, *, table: Table) -> NDArray[Any]:
     return _complex(value[..., 0], value[..., 1])[()]
 
 
+@dataclass(frozen=True, eq=False)
+class Columns:
+    """The columns of a measured spectrum as they were read, in SI and in the convention exp(−iωt).
+
+    Attributes
+    ----------
+    omega
+        Angular frequency, ascending [rad/s].
+    values
+        What was read, by the name of its quantity.
+    stds
+        Standard uncertainty of those that state it.
+    """
+
+    omega: NDArray[np.float64]
+    values: dict[str, NDArray[np.float64]]
+    stds: dict[str, NDArray[np.float64]]
+
+
+def read_columns(text_or_path: str | Path) -> Columns:
+    """Read a measured spectrum as what was measured, with its uncertainty, rather than as a permittivity.
+
+    Parameters
+    ----------
+    text_or_path
+        As of `read_table`.
+
+    Returns
+    -------
+    columns
+        Its columns in SI and in the convention exp(−iωt).
+
+    Raises
+    ------
+    Refusal, OSError
+        As `read_table`.
+
+    Examples
+    --------
+    >>> text = "# convention: exp(+iwt)\\nfrequency [GHz], n, u(n), k\\n1, 2, 0.01, -0.1\\n2, 1.5, 0.01, 0\\n"
+    >>> columns = read_columns(text)
+    >>> columns.values["extinction"].tolist(), columns.stds["index"].tolist()
+    ([0.1, 0.0], [0.01, 0.01])
+    """
+    held = parse(text_or_path)
+    omega = spectral_from(held.values[:, 0], held.unit)
+    check_order(omega, held.rows)
+    order = np.argsort(omega)
+    values, stds = {}, {}
+    for name, numbers in _in_si(held).items():
+        of = doubted(name)
+        quantity = _QUANTITY.get(of or name, of or name)
+        if of is not None:
+            stds[quantity] = numbers[order]
+        else:
+            turned = held.sign if name == "k" or name.endswith("_imag") else 1
+            values[quantity] = turned * numbers[order] + 0.0  # never -0.0
+    return Columns(omega[order], values, stds)
+
+
 def _in_si(held: Content) -> dict[str, NDArray[np.float64]]:
     """Columns beside the axis by their names."""
-    columns = zip(held.columns, held.units, held.values[:, 1:].T, strict=True)
-    return {
-        name: from_unit(numbers, unit, DIMENSIONS[name]) if name in DIMENSIONS else numbers
-        for name, unit, numbers in columns
-    }
+    found = {}
+    for name, unit, numbers in zip(held.columns, held.units, held.values[:, 1:].T, strict=True):
+        dimension = DIMENSIONS.get(doubted(name) or name)
+        found[name] = numbers if dimension is None else from_unit(numbers, unit, dimension)
+    return found
 
 
 def _permittivity(

@@ -12,6 +12,8 @@ The first column is the axis (`wavelength`, `frequency`, `photon_energy`, `waven
 perhaps `k`, or `permittivity_real` with `permittivity_imag`, `loss_tangent` or `conductivity [S/m]`, which
 stands for the whole loss. Decimals take a point; between semicolons or tabs a comma will do, throughout.
 
+Beside a column may stand its standard uncertainty, as `u(n)`, in the same unit.
+
 The convention line is never guessed. Under exp(+iwt) `k` and `permittivity_imag` of a lossy medium
 stand in the file as negative numbers, and their sign is turned on reading; `loss_tangent` and
 `conductivity` are positive for a lossy medium under either convention and are never turned.
@@ -183,18 +185,29 @@ def _header(number: int, cells: Sequence[str]) -> tuple[str, tuple[str, ...], tu
             nearest(names[0], AXES),
         )
     unit = _axis_unit(number, names[0], units[0])
-    for position, (name, given) in enumerate(zip(names[1:], units[1:], strict=True), start=1):
+    for position, (heading, given) in enumerate(zip(names[1:], units[1:], strict=True), start=1):
+        name = doubted(heading) or heading
+        if name != heading and name in _COLUMNS and name not in names[1:]:
+            found = f"line {number}: {heading!r} without {name!r}"
+            raise Refusal(found, "an uncertainty stands beside its column")
         if name not in _COLUMNS:
             allowed = f"columns are {', '.join(_COLUMNS)}"
             raise Refusal(f"line {number}: unknown column {name!r}", allowed, nearest(name, _COLUMNS))
-        if name in names[1:position]:
-            raise Refusal(f"line {number}: column {name!r} stands twice", "each column stands once")
+        if heading in names[1:position]:
+            raise Refusal(f"line {number}: column {heading!r} stands twice", "each column stands once")
         _column_unit(number, name, given)
-    if not any(set(names[1:]) == set(columns) for columns in COLUMN_SETS):
+    held = [name for name in names[1:] if doubted(name) is None]
+    if not any(set(held) == set(columns) for columns in COLUMN_SETS):
         sets = "; or ".join(" and ".join(columns) for columns in COLUMN_SETS)
-        held = ", ".join(names[1:]) or "nothing"
-        raise Refusal(f"line {number}: {held} beside the axis", f"a table holds {sets}")
+        shown = ", ".join(held) or "nothing"
+        raise Refusal(f"line {number}: {shown} beside the axis", f"a table holds {sets}")
     return unit, names[1:], units[1:]
+
+
+def doubted(heading: str) -> str | None:
+    """Column whose standard uncertainty a heading says it holds, or None."""
+    match = re.fullmatch(r"u\(\s*(.*?)\s*\)", heading)
+    return match[1] if match else None
 
 
 def _heading(number: int, cell: str) -> tuple[str, str]:
@@ -259,6 +272,9 @@ def _numbers(number: int, cells: Sequence[str], headings: Sequence[str]) -> list
         raise Refusal(f"line {number}: {cells[0]!r} on the axis", "it must be above 0")
     if "n" in headings and (n := cells[headings.index("n")]).startswith("-"):
         raise Refusal(f"line {number}: {n!r} for n", "an index is not negative")
+    for heading, cell, value in zip(headings, cells, values, strict=True):
+        if doubted(heading) is not None and not value > 0.0:
+            raise Refusal(f"line {number}: {cell!r} for {heading}", "an uncertainty is above zero")
     return values
 
 

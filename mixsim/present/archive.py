@@ -12,20 +12,23 @@ from typing import Any
 
 import numpy as np
 
-from mixsim.analysis import Inversion, Prediction
+from mixsim.analysis import Fitted, Inversion, Prediction
 from mixsim.analysis.plain import provenance
 from mixsim.analysis.prediction import CONVENTION
 from mixsim.units import SPEED_OF_LIGHT
 
 
-def write_npz(answer: Prediction | Inversion, file: Path) -> None:
+def write_npz(answer: Prediction | Inversion | Fitted, file: Path) -> None:
     """Write the arrays of an answer."""
-    arrays = _inversion(answer) if isinstance(answer, Inversion) else _prediction(answer)
+    if isinstance(answer, Inversion):
+        arrays = _inversion(answer)
+    else:
+        arrays = _fitted(answer) if isinstance(answer, Fitted) else _prediction(answer)
     with file.open("wb") as stream:
         np.savez_compressed(stream, **arrays)
 
 
-def _origin(answer: Prediction | Inversion) -> dict[str, Any]:
+def _origin(answer: Prediction | Inversion | Fitted) -> dict[str, Any]:
     origin = provenance(answer.recipe)
     return {
         "title": np.array(answer.recipe.schema.title or ""),
@@ -74,28 +77,50 @@ def _by_name(key: str, values: Mapping[str, Any]) -> dict[str, Any]:
     return {f"{key}_names": np.array(list(values)), key: np.stack(list(values.values()))}
 
 
-def _inversion(answer: Inversion) -> dict[str, Any]:
-    def column(values: list[float | None]) -> Any:
-        return np.array([np.nan if value is None else value for value in values], dtype=float)
+def _column(values: list[float | None]) -> Any:
+    return np.array([np.nan if value is None else value for value in values], dtype=float)
 
+
+def _estimated(answer: Inversion | Fitted) -> dict[str, Any]:
+    """What an inversion and a fit have in common."""
     estimates = list(answer.estimates.values())
     ends = [estimate.interval or (None, None) for estimate in estimates]
     arrays = _origin(answer) | {
         "verdict": np.array(answer.verdict),
         "paths": np.array(list(answer.estimates)),
-        "value": column([estimate.value for estimate in estimates]),
-        "std": column([estimate.std for estimate in estimates]),
-        "interval_low": column([low for low, _ in ends]),
-        "interval_high": column([high for _, high in ends]),
+        "value": _column([estimate.value for estimate in estimates]),
+        "std": _column([estimate.std for estimate in estimates]),
+        "interval_low": _column([low for low, _ in ends]),
+        "interval_high": _column([high for _, high in ends]),
         "unit": np.array([estimate.unit for estimate in estimates]),
-        "readings": np.array([reading.kind for reading in answer.readings]),
-        "measured": column([reading.value for reading in answer.readings]),
-        "measured_std": column([reading.std for reading in answer.readings]),
     }
     if answer.correlation is not None:
         arrays["correlation"] = answer.correlation
-    if answer.family is not None:
-        arrays["family"] = np.stack([answer.family[path] for path in answer.estimates])
     if answer.solutions:
         arrays["solutions"] = np.array([[s[path] for path in answer.estimates] for s in answer.solutions])
+    return arrays
+
+
+def _fitted(answer: Fitted) -> dict[str, Any]:
+    arrays = _estimated(answer) | {
+        "samples": np.array([met.observation.sample for met in answer.met]),
+        "quantities": np.array([met.observation.quantity for met in answer.met]),
+    }
+    for place, met in enumerate(answer.met):
+        one = met.observation
+        if one.omega is not None:
+            arrays[f"omega_rad_s__{place}"] = one.omega
+        arrays[f"measured__{place}"], arrays[f"measured_std__{place}"] = one.values, one.std
+        arrays[f"fitted__{place}"] = met.predicted
+    return arrays
+
+
+def _inversion(answer: Inversion) -> dict[str, Any]:
+    arrays = _estimated(answer) | {
+        "readings": np.array([reading.kind for reading in answer.readings]),
+        "measured": _column([reading.value for reading in answer.readings]),
+        "measured_std": _column([reading.std for reading in answer.readings]),
+    }
+    if answer.family is not None:
+        arrays["family"] = np.stack([answer.family[path] for path in answer.estimates])
     return arrays

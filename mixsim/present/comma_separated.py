@@ -13,7 +13,7 @@ from typing import Any
 
 import numpy as np
 
-from mixsim.analysis import Inversion, Prediction
+from mixsim.analysis import Fitted, Inversion, Prediction
 from mixsim.analysis.plain import provenance
 from mixsim.analysis.prediction import CONVENTION
 from mixsim.dispersion.table_text import AXES
@@ -29,7 +29,7 @@ _QUANTITIES = (
 _CHUNK = 16384  # rows turned into text at a time
 
 
-def write_csv(answer: Prediction | Inversion, file: Path) -> None:
+def write_csv(answer: Prediction | Inversion | Fitted, file: Path) -> None:
     """Write the rows of an answer: one for each frequency (and varied value), or one for each unknown."""
     with file.open("w", encoding="utf-8", newline="") as stream:
         for line in _comments(answer):
@@ -38,12 +38,14 @@ def write_csv(answer: Prediction | Inversion, file: Path) -> None:
         writer = csv.writer(stream, lineterminator="\n")
         if isinstance(answer, Inversion):
             writer.writerows(_inversion(answer))
+        elif isinstance(answer, Fitted):
+            writer.writerows(_fitted(answer))
         else:
             for rows in _prediction(answer):
                 writer.writerows(rows)
 
 
-def _comments(answer: Prediction | Inversion) -> Iterator[str]:
+def _comments(answer: Prediction | Inversion | Fitted) -> Iterator[str]:
     recipe, origin = answer.recipe, provenance(answer.recipe)
     if recipe.schema.title:
         yield f"title: {recipe.schema.title}"
@@ -51,6 +53,17 @@ def _comments(answer: Prediction | Inversion) -> Iterator[str]:
     if isinstance(answer, Inversion):
         yield f"{answer.verdict}, {answer.method}"
         yield from (f"because: {reason}" for reason in answer.reasons)
+    elif isinstance(answer, Fitted):
+        yield answer.verdict
+        yield from (f"because: {reason}" for reason in answer.reasons)
+        for name, estimate in answer.estimates.items():
+            shown = (
+                ""
+                if estimate.value is None
+                else answer.recipe.show(estimate.path, estimate.value, estimate.std)
+            )
+            yield f"{name}: {shown or 'not narrowed'}"
+        yield f"convention: {CONVENTION}"
     else:
         yield f"convention: {CONVENTION}"
     yield from (f"caution, {caution.kind}: {caution.message}" for caution in answer.warnings)
@@ -107,6 +120,17 @@ def _columns(answer: Prediction) -> Iterator[tuple[str, Any]]:
     for name, unit, values in parts:
         for axis in range(3):
             yield f"{name} axis {axis + 1}{unit}", np.ascontiguousarray(values[..., axis, :])
+
+
+def _fitted(answer: Fitted) -> Iterator[Sequence[Any]]:
+    """One row for each reading."""
+    yield ("sample", "quantity", "frequency [Hz]", "measured", "std", "fitted", "off [std]", "from")
+    for met in answer.met:
+        one = met.observation
+        frequencies = [""] * len(one.values) if one.omega is None else (one.omega / (2.0 * np.pi)).tolist()
+        columns = one.values.tolist(), _cells(one.std), met.predicted.tolist(), met.standardised.tolist()
+        for frequency, *numbers in zip(frequencies, *columns, strict=True):
+            yield (one.sample, one.quantity, frequency, *numbers, one.source)
 
 
 def _inversion(answer: Inversion) -> Iterator[Sequence[Any]]:

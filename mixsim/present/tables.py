@@ -8,19 +8,15 @@ from typing import TYPE_CHECKING, Any
 import numpy as np
 
 from mixsim.present.columns import owned, paragraph, table, width
+from mixsim.present.phrases import NONE, cautions, chosen, number, rounded
 from mixsim.units import kind_of_axis, show
 
 if TYPE_CHECKING:
-    from mixsim.analysis import Audit, Caution, Estimate, Inversion, Prediction
+    from mixsim.analysis import Audit, Estimate, Inversion, Prediction
 
 ROWS = 9  # of a spectrum
 MOST_ROWS = 40  # of a sweep
-NONE = "–"
 NOISE = 1e-12  # share of |ε| below which a loss is rounding
-LARGE, HUGE = (
-    1e4,
-    1e7,
-)  # between which a number keeps its digits in front of the point, without a power of ten
 HIGHEST = "← highest ε″"
 VERDICTS = {
     "answered": "answered",
@@ -32,7 +28,7 @@ VERDICTS = {
 def prediction(answer: Prediction) -> str:
     """A prediction: composition, limits, a choice of the spectrum, cautions."""
     parts = [_head(answer), _composition(answer), _limits(answer), _spectrum(answer)]
-    return "\n\n".join([*parts, *_cautions(answer.warnings)])
+    return "\n\n".join([*parts, *cautions(answer.warnings)])
 
 
 def sweep(answer: Prediction) -> str:
@@ -42,14 +38,14 @@ def sweep(answer: Prediction) -> str:
     columns = _swept(answer)
     headings = [*[_stacked(item.path, item.unit) for item in answer.vary], *[name for name, _ in columns]]
     rows = []
-    for index in _chosen(count, MOST_ROWS):
+    for index in chosen(count, MOST_ROWS):
         here = np.unravel_index(index, shape)
         varied = [f"{item.shown[i]:.6g}" for item, i in zip(answer.vary, here, strict=True)]
-        rows.append([*varied, *[_number(values[here]) for _, values in columns]])
+        rows.append([*varied, *[number(values[here]) for _, values in columns]])
     parts = [_head(answer), table(headings, rows, left=0)]
     if count > MOST_ROWS:
         parts.append(f"{MOST_ROWS} of {count} rows; --out sweep.csv writes them all")
-    return "\n\n".join([*parts, *_cautions(answer.warnings)])
+    return "\n\n".join([*parts, *cautions(answer.warnings)])
 
 
 def _swept(answer: Prediction) -> list[tuple[str, Any]]:
@@ -99,7 +95,7 @@ def inversion(answer: Inversion) -> str:
         parts.append(f"pairs that fit\n{_family(answer)}")
     if len(answer.by_rule) > 1 and any(found.values for found in answer.by_rule):
         parts.append(f"under each rule that could apply\n{_by_rule(answer)}")
-    return "\n\n".join([*parts, *_cautions(answer.warnings)])
+    return "\n\n".join([*parts, *cautions(answer.warnings)])
 
 
 def audit(answer: Audit) -> str:
@@ -110,7 +106,7 @@ def audit(answer: Audit) -> str:
     else:
         head = f"{answer.file}: {count} fault{'s' if count > 1 else ''}"
     faults = [paragraph(str(fault), indent="  ") for fault in answer.faults]
-    return "\n\n".join(["\n".join([head, *faults]), *_cautions(answer.warnings)])
+    return "\n\n".join(["\n".join([head, *faults]), *cautions(answer.warnings)])
 
 
 def _head(answer: Prediction) -> str:
@@ -184,14 +180,14 @@ def _along(answer: Prediction, axis: int) -> str:
     headings = [f"{kind}\n[{answer.axis.unit}]", *[name for name, _ in columns], ""]
     loss = e.imag
     peak = int(np.argmax(loss))
-    chosen = set(_chosen(len(answer.omega), ROWS))
+    places = set(chosen(len(answer.omega), ROWS))
     marked = loss[peak] > NOISE * abs(e[peak]) and len(answer.omega) > 1
     if marked:
-        chosen.add(peak)
+        places.add(peak)
     rows = []
-    for i in sorted(chosen):
+    for i in sorted(places):
         mark = HIGHEST if marked and i == peak else ""
-        rows.append([f"{answer.axis.shown[i]:.5g}", *[_number(values[i]) for _, values in columns], mark])
+        rows.append([f"{answer.axis.shown[i]:.5g}", *[number(values[i]) for _, values in columns], mark])
     shown = _marked(headings, rows, HIGHEST)
     if marked and max(map(len, shown.splitlines())) > width():
         short = [[*row[:-1], HIGHEST[: len(row[-1]) and 1]] for row in rows]
@@ -220,15 +216,9 @@ def _estimate(answer: Inversion, estimate: Estimate) -> str:
 
 
 def _interval(answer: Inversion, path: str, interval: tuple[float, float]) -> str:
-    ends = [_round(answer.recipe.show(path, end)) for end in interval]
+    ends = [rounded(answer.recipe.show(path, end)) for end in interval]
     ends.sort(key=lambda text: float(text.split(" ")[0]))  # wavelengths fall where frequencies rise
     return " to ".join(ends)
-
-
-def _round(text: str) -> str:
-    """A shown quantity with four digits, which is all that an interval deserves."""
-    number, _, unit = text.partition(" ")
-    return f"{float(number):.4g} {unit}".rstrip()
 
 
 def _residuals(answer: Inversion) -> list[str]:
@@ -238,7 +228,7 @@ def _residuals(answer: Inversion) -> list[str]:
     rows = []
     for r in answer.residuals:
         off = NONE if r.standardised is None else f"{r.standardised:+.2f} standard uncertainties"
-        numbers = (_number(r.measured, digits=6), _number(r.predicted, digits=6))
+        numbers = (number(r.measured, digits=6), number(r.predicted, digits=6))
         rows.append([r.kind.replace("_", "-"), *numbers, off])
     return [table(["reading", "measured", "predicted", "off by"], rows)]
 
@@ -247,9 +237,9 @@ def _family(answer: Inversion) -> str:
     assert answer.family is not None
     values = list(answer.family.values())
     rows = []
-    for i in _chosen(len(values[0]), ROWS):
+    for i in chosen(len(values[0]), ROWS):
         pairs = zip(answer.family, values, strict=True)
-        rows.append([_round(answer.recipe.show(path, float(column[i]))) for path, column in pairs])
+        rows.append([rounded(answer.recipe.show(path, float(column[i]))) for path, column in pairs])
     return table([_stacked(path, "") for path in answer.family], rows, left=0)
 
 
@@ -259,22 +249,9 @@ def _by_rule(answer: Inversion) -> str:
         if found.values is None:
             rows.append([found.rule, *["no answer"] * len(answer.estimates)])
         else:
-            shown = [_round(answer.recipe.show(path, value)) for path, value in found.values.items()]
+            shown = [rounded(answer.recipe.show(path, value)) for path, value in found.values.items()]
             rows.append([found.rule, *shown])
     return table(["rule", *["\n".join(owned(path)) for path in answer.estimates]], rows)
-
-
-def _cautions(warnings: Sequence[Caution]) -> list[str]:
-    lines = []
-    for caution in warnings:
-        place = f"{caution.path}: " if caution.path else ""
-        lines.append(paragraph(f"caution, {caution.kind}: {place}{caution.message}"))
-    return lines
-
-
-def _chosen(count: int, rows: int) -> list[int]:
-    """Indices spread evenly, both ends among them."""
-    return sorted({round(i) for i in np.linspace(0, count - 1, min(rows, count))})
 
 
 def _axes(value: Any, std: Any = None) -> str:
@@ -283,20 +260,8 @@ def _axes(value: Any, std: Any = None) -> str:
         parts = [_axes(value[axis], None if std is None else std[axis]) for axis in (0, 2)]
         return f"{parts[0]} ⊥, {parts[1]} ∥"
     if std is None or not std > 0.0 or np.isnan(value):
-        return _number(value, digits=6)
+        return number(value, digits=6)
     return show(float(np.real(value)), "number", std=float(std))
-
-
-def _number(value: Any, *, digits: int = 4) -> str:
-    """A number of a table; a complex one with its imaginary part where it has one."""
-    if np.iscomplexobj(value):
-        if value.imag != 0.0 and not np.isnan(value):
-            return f"{value.real:.{digits}g} + {value.imag:.{digits}g}i"
-        value = value.real
-    if np.isnan(value):
-        return NONE
-    text = f"{float(value) + 0.0:.{digits}g}"
-    return f"{float(text):.0f}" if LARGE <= abs(float(text)) < HUGE else text
 
 
 def _stacked(path: str, unit: str) -> str:

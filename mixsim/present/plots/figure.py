@@ -4,19 +4,19 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from mixsim.analysis import Inversion, Prediction
+from mixsim.analysis import Fitted, Inversion, Prediction
 
 if TYPE_CHECKING:
     from matplotlib.figure import Figure
 
 
-def figure(answer: Prediction | Inversion) -> Figure:
+def figure(answer: Prediction | Inversion | Fitted) -> Figure:
     """Figure of an answer.
 
     Parameters
     ----------
     answer
-        A prediction, a sweep or an inversion.
+        A prediction, a sweep, an inversion or a fit.
 
     Returns
     -------
@@ -31,13 +31,15 @@ def figure(answer: Prediction | Inversion) -> Figure:
     from matplotlib.figure import Figure
     from matplotlib.layout_engine import ConstrainedLayoutEngine
 
-    from mixsim.present.plots import inversion, prediction, sweep
+    from mixsim.present.plots import fit, inversion, prediction, sweep
     from mixsim.present.plots.style import HEIGHT, WIDTH, settings
 
     with settings():
         drawn = Figure(figsize=(WIDTH, HEIGHT), layout=ConstrainedLayoutEngine(w_pad=0.07, wspace=0.03))
         if isinstance(answer, Inversion):
             inversion.draw(drawn, answer)
+        elif isinstance(answer, Fitted):
+            fit.draw(drawn, answer)
         elif answer.vary:
             sweep.draw(drawn, answer)
         else:

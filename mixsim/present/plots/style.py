@@ -100,10 +100,10 @@ def headed(figure: Figure, title: str, below: str) -> None:
     figure.suptitle("\n".join(lines), fontsize=10, color=INK, parse_math=False)
 
 
-def legend_below(figure: Figure, handles: Sequence[Any], labels: Sequence[str]) -> None:
+def legend_below(figure: Figure, handles: Sequence[Any], labels: Sequence[str]) -> Any:
     """Put a legend below the panels, in as many columns as fit."""
     fitting = (n for n in range(4, 1, -1) if _letters(labels, n) <= _LEGEND_LETTERS)
-    figure.legend(handles, labels, loc="outside lower center", ncols=next(fitting, 1))
+    return figure.legend(handles, labels, loc="outside lower center", ncols=next(fitting, 1))
 
 
 def _letters(labels: Sequence[str], columns: int) -> int:
