@@ -28,6 +28,7 @@ FILM = """
     permittivity.terms.carriers = { model = "drude", plasma = "1.55 eV", damping = "0.12 eV" }
     [unknowns]
 """
+CLEAR = 'materials.clear.index = { model = "constant", n = 1.5 }'
 BOTH = (
     f'"{LOADING}" = ["0 %", "15 %"]\n"{PLASMA}" = ["0.9 eV", "2.2 eV"]\n"{DAMPING}" = ["0.02 eV", "0.4 eV"]'
 )
