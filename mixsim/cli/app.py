@@ -31,7 +31,10 @@ _COMMANDS: dict[str, tuple[Callable[..., int], str]] = {
         questions.invert,
         "invert recipe.toml --static '3.20 ± 0.01' --free inclusions.oxide.volume_fraction 0% 40%",
     ),
-    "fit": (fitting.fit, "fit recipe.toml sample.csv --noise 0.5%"),
+    "fit": (
+        fitting.fit,
+        "fit recipe.toml sample.csv --free inclusions.oxide.volume_fraction 0% 40% --noise 0.5%",
+    ),
     "audit": (questions.audit, "audit recipe.toml"),
     "list": (reference.list_, "list rules"),
     "show": (reference.show, "show bruggeman"),

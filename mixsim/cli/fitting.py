@@ -57,7 +57,7 @@ def fit(
     out: Out = None,
     strict: Strict = False,
 ) -> int:
-    """Numbers of the recipe from spectra and readings on one or several samples.
+    """Numbers of the recipe from spectra and readings on samples.
 
     Exit status 3: the data cannot tell.
     """

@@ -20,7 +20,7 @@ from mixsim.recipe import drafts, library
 
 from .conftest import Run
 
-COMMANDS = ("draft", "predict", "sweep", "invert", "audit", "list", "show", "schema")
+COMMANDS = ("draft", "predict", "sweep", "invert", "fit", "audit", "list", "show", "schema")
 LOADING = "inclusions.filler.volume_fraction"
 CONFIGS = sorted((Path(__file__).parents[2] / "configs").glob("*.toml"))
 
@@ -233,8 +233,19 @@ def test_examples_of_the_helps_run_one_after_the_other(run: Run) -> None:
         assert command in ("", asked[0])
         if asked[0] == "draft":
             Path("recipe.toml").unlink(missing_ok=True)
+        if "sample.csv" in asked:
+            _measured(Path("sample.csv"))
         result = run(*asked)
         assert result.exit_code == 0, (example, result.stderr)
+
+
+def _measured(file: Path) -> None:
+    """What an invented spectrometer reads on the recipe as it stands, without noise."""
+    read = mixsim.predict(mixsim.load("recipe.toml"))
+    rows = np.stack([read.axis.shown, read.permittivity.real, read.permittivity.imag], axis=-1).tolist()
+    heading = f"wavelength [{read.axis.unit}], permittivity_real, permittivity_imag"
+    lines = ["# convention: exp(-iwt)", heading, *(", ".join(map(repr, row)) for row in rows)]
+    file.write_text("\n".join(lines), encoding="utf-8")
 
 
 def test_help_says_each_command_in_one_whole_line(run: Run) -> None:

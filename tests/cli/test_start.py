@@ -96,6 +96,7 @@ def test_public_names() -> None:
         "Refusal",
         "__version__",
         "audit",
+        "fit",
         "invert",
         "load",
         "parse",

@@ -10,7 +10,7 @@ import numpy as np
 import pytest
 
 import mixsim
-from mixsim.present import entries, tables
+from mixsim.present import entries, phrases, tables
 
 ROOT = Path(__file__).parents[2]
 PLACES = ("configs/*.toml", "examples/*/recipe.toml", "mixsim/recipe/drafts/*.toml")
@@ -137,7 +137,7 @@ def test_a_level_that_is_not_there_says_where_the_reason_stands() -> None:
     ],
 )
 def test_numbers(value: complex, shown: str) -> None:
-    assert tables._number(np.asarray(value)[()]) == shown
+    assert phrases.number(np.asarray(value)[()]) == shown
 
 
 def test_a_sweep_has_a_row_for_each_value_with_its_peak(answers: Any) -> None:
