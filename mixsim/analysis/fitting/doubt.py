@@ -54,8 +54,10 @@ class Doubt:
         Of the scaled places, shape (U, U), what the held numbers add included; NaN where there is none.
     statistical
         The same from the noise of the readings alone.
-    pushed
-        Share of each held number with a ± in the variance of each unknown, by path.
+    moved
+        What one ± of each held number that is felt does to the scaled places, by its name, shape (U,).
+    gain
+        What takes residuals to scaled places, shape (U, count).
     combinations
         Best fixed first.
     """
@@ -63,7 +65,8 @@ class Doubt:
     scale: float
     covariance: Floats
     statistical: Floats
-    pushed: Mapping[str, Floats]
+    moved: Mapping[str, Floats]
+    gain: Floats
     combinations: tuple[Combination, ...]
 
 
@@ -100,15 +103,13 @@ def doubt_of(model: FitModel, found: Fit, held: Mapping[str, Uncertain]) -> Doub
     felt = _effects(model, found, held)
     moved = gain @ felt if felt.shape[1] else np.zeros((len(model.unknowns), 0))
     covariance = statistical + moved @ moved.T
-    with np.errstate(invalid="ignore", divide="ignore"):
-        shares = moved**2 / np.diag(covariance)[:, np.newaxis]
-    matter = [i for i in range(len(held)) if felt[:, i].any()]
     names = list(held)
     return Doubt(
         scale,
         covariance,
         statistical,
-        {names[i]: shares[:, i] for i in matter},
+        {names[i]: moved[:, i] for i in range(len(held)) if felt[:, i].any()},
+        gain,
         _combinations(model, found, scale),
     )
 
@@ -117,7 +118,7 @@ def _effects(model: FitModel, found: Fit, held: Mapping[str, Uncertain]) -> Floa
     """What one ± of each held number does to the residuals, shape (count, held)."""
     if not held:
         return np.zeros((model.count, 0))
-    moved = halves(model.with_others(pairs(held)).residual(np.asarray(found.place)))
+    moved = halves(model.holding(pairs(held)).residual(np.asarray(found.place)))
     return np.nan_to_num(moved).T
 
 
@@ -166,7 +167,7 @@ def profile(model: FitModel, found: Fit, doubt: Doubt) -> list[tuple[float, floa
 
 def _costs(model: FitModel, found: Fit, index: int, values: Floats) -> Floats:
     """Least sum of squares with one unknown held at each of some values."""
-    alone = model.holding(index, values)
+    alone = model.holding({model.unknowns[index].name: values})
     if not alone.unknowns:
         return np.asarray(np.sum(alone.residual(np.empty((len(values), 0))) ** 2, axis=-1))
     start = np.delete(found.place, index)

@@ -20,7 +20,7 @@ from mixsim.analysis.observed.gather import samples_of
 from mixsim.analysis.observed.samples import Sample
 from mixsim.analysis.rules import applicable_rules
 from mixsim.analysis.suspicion import suspicions
-from mixsim.analysis.uncertainty.inputs import uncertain_leaves
+from mixsim.analysis.uncertainty.inputs import Uncertain, uncertain_leaves
 from mixsim.analysis.unknowns import Unknown, of_samples, unknowns_of
 from mixsim.errors import BadInput, Refusal
 from mixsim.recipe import Recipe
@@ -168,8 +168,7 @@ def _answered(
     seed: int,
 ) -> Fitted:
     best = fits[0]
-    free = {unknown.path for unknown in model.unknowns}
-    doubt = doubt_of(model, best, uncertain_leaves(recipe, without=free))
+    doubt = doubt_of(model, best, held_numbers(recipe, model))
     several = as_good(fits, doubt.scale)
     reasons = _reasons(model, best, doubt, several)
     quality = _quality(model, best, doubt)
@@ -199,6 +198,20 @@ def _answered(
         warnings=(*suspicions(recipe), *_cautions(model, best, quality, met)),
         seed=seed,
     )
+
+
+def held_numbers(recipe: Recipe, model: FitModel) -> dict[str, Uncertain]:
+    """Numbers with a ± that are not fitted, by name: those of the recipe, and those set for one sample."""
+    free = {unknown.path for unknown in model.unknowns}
+    everywhere = set.intersection(*(set(sample.uncertain) for sample in model.samples))
+    held = uncertain_leaves(recipe, without=free | everywhere)
+    for sample in model.samples:
+        held |= {
+            f"samples.{sample.name}.{path}": number
+            for path, number in sample.uncertain.items()
+            if path not in free
+        }
+    return held
 
 
 def _reasons(model: FitModel, best: Fit, doubt: Doubt, several: list[Fit]) -> tuple[str, ...]:
@@ -272,11 +285,12 @@ def _correlation(covariance: Floats) -> Floats | None:
 
 
 def _shares(model: FitModel, doubt: Doubt) -> dict[str, dict[str, float]]:
-    statistical = np.diag(doubt.statistical) / np.diag(doubt.covariance)
+    whole = np.diag(doubt.covariance)
+    statistical = np.diag(doubt.statistical) / whole
     return {
         unknown.name: {
             "readings": float(statistical[i]),
-            **{path: float(shares[i]) for path, shares in doubt.pushed.items()},
+            **{name: float(moved[i] ** 2 / whole[i]) for name, moved in doubt.moved.items()},
         }
         for i, unknown in enumerate(model.unknowns)
         if np.isfinite(statistical[i])

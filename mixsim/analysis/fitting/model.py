@@ -23,10 +23,9 @@ class FitModel(Ranges):
         Pieces and what was read on them.
     unknowns
         Leaves to find, of one sample or shared.
-    others
-        Numbers of the recipe that differ from it, path → number or array along the first axis.
-    fixed
-        Unknowns that are held, name → number or array along the first axis [SI].
+    held
+        Numbers that differ from the recipe: path, or `samples.NAME.` and path for those of one sample →
+        number, or array along the first axis [SI].
 
     Attributes
     ----------
@@ -40,12 +39,11 @@ class FitModel(Ranges):
         self,
         samples: Sequence[Sample],
         unknowns: Sequence[Unknown],
-        others: Mapping[str, Floats] | None = None,
-        fixed: Mapping[str, Floats] | None = None,
+        held: Mapping[str, Floats] | None = None,
     ) -> None:
         super().__init__(unknowns)
         self.samples = tuple(samples)
-        self.others, self.fixed = dict(others or {}), dict(fixed or {})
+        self.held = dict(held or {})
         observations = [one for sample in self.samples for one in sample.observations]
         self.target = np.concatenate([one.values for one in observations])
         self.std, self.scaled = weighed(observations)
@@ -56,33 +54,32 @@ class FitModel(Ranges):
         """How many numbers speak: readings, and what is known beforehand."""
         return len(self.target) + len(self._priors)
 
-    def with_others(self, others: Mapping[str, Floats]) -> FitModel:
-        """The same with other numbers of the recipe."""
-        return FitModel(self.samples, self.unknowns, others, self.fixed)
+    def holding(self, held: Mapping[str, Floats]) -> FitModel:
+        """The same with other numbers of the recipe, by name; an unknown among them is one no more."""
+        rest = [unknown for unknown in self.unknowns if unknown.name not in held]
+        return FitModel(self.samples, rest, {**self.held, **held})
 
-    def holding(self, index: int, values: Floats) -> FitModel:
-        """The same with one unknown held at each of some values [SI], which stand along the first axis."""
-        held = self.unknowns[index]
-        rest = [unknown for i, unknown in enumerate(self.unknowns) if i != index]
-        return FitModel(self.samples, rest, self.others, {**self.fixed, held.name: values})
+    def given(self, sample: Sample, values: Floats) -> dict[str, Floats]:
+        """Leaves of one sample that differ from its recipe, at values of the unknowns [SI].
+
+        What a sample sets stands: neither a shared unknown nor a shared number takes its place.
+        """
+        lead, own = values.ndim - 1, f"samples.{sample.name}."
+        found = {}
+        for name, value in self.held.items():
+            path = name.removeprefix(own)
+            if not path.startswith("samples.") and (path != name or path not in sample.changed):
+                found[path] = _leading(value, lead)
+        for i, unknown in enumerate(self.unknowns):
+            shared = not unknown.sample and unknown.path not in sample.changed
+            if shared or (unknown.sample and unknown.sample == sample.name):
+                found[unknown.path] = values[..., i]
+        return found
 
     def predicted(self, t: Floats) -> Floats:
         """What the mixture gives in place of the readings, shape (..., readings)."""
         values = self.values(t) if self.unknowns else np.empty((*t.shape[:-1], 0))
-        lead = values.ndim - 1
-        columns = []
-        for sample in self.samples:
-            given = {path: _leading(other, lead) for path, other in self.others.items()}
-            for name, value in self.fixed.items():
-                path = name.removeprefix(f"samples.{sample.name}.")
-                if not path.startswith("samples."):
-                    given[path] = _leading(value, lead)
-            given |= {
-                u.path: values[..., i]
-                for i, u in enumerate(self.unknowns)
-                if not u.sample or u.sample == sample.name
-            }
-            columns.append(sample.predicted(given))
+        columns = [sample.predicted(self.given(sample, values)) for sample in self.samples]
         shape = np.broadcast_shapes(*(column.shape[:-1] for column in columns))
         return np.concatenate([np.broadcast_to(c, (*shape, c.shape[-1])) for c in columns], axis=-1)
 

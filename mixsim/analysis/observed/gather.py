@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from pathlib import Path
 
 import numpy as np
@@ -11,12 +11,14 @@ from numpy.typing import NDArray
 from mixsim.analysis.observed.noise import modulus
 from mixsim.analysis.observed.observation import LIMITS, OF_PIECE, Observation
 from mixsim.analysis.observed.samples import Sample
+from mixsim.analysis.uncertainty.inputs import Uncertain, uncertain_leaves
 from mixsim.dispersion.table import read_columns
 from mixsim.errors import BadInput, Fault, Refusal
 from mixsim.mixture import HOST, Mixture
 from mixsim.recipe import COMMAND_LINE, Recipe
 from mixsim.recipe.recipe import parse
 from mixsim.recipe.schema import Measured
+from mixsim.recipe.schema import Sample as Measurement
 from mixsim.units import Leaf
 
 Floats = NDArray[np.float64]
@@ -60,8 +62,9 @@ def samples_of(recipe: Recipe, files: Sequence[Path] = (), noise: float | None =
     samples = []
     for place, given in enumerate(schema.samples):
         path = f"samples.{place}"
-        mixture = _with(recipe, path, given.set).compile()
-        sample = _sample(recipe, mixture, given, path, given.name, (), noise)
+        changed = _with(recipe, path, given.set)
+        own = {name: number for name, number in uncertain_leaves(changed).items() if name in given.set}
+        sample = _sample(recipe, changed.compile(), given, path, given.name, (), noise, own)
         if not sample.observations:
             found_nothing = recipe.fault(
                 path, f"nothing was read on {given.name}", "give readings or spectrum"
@@ -95,6 +98,7 @@ def _sample(
     name: str,
     files: Sequence[Path],
     noise: float | None,
+    uncertain: Mapping[str, Uncertain] | None = None,
 ) -> Sample:
     if noise is None and measured.noise is not None:
         noise = measured.noise.value
@@ -117,7 +121,10 @@ def _sample(
         allowed = "a reading would have to say along which axis; orientation = 'random' has one level"
         raise BadInput([recipe.fault("inclusions", "aligned grains have a level for each axis", allowed)])
     _can_give(recipe, mixture, observations, path)
-    return Sample(name, mixture, tuple(observations), _yields(recipe, mixture, observations, path))
+    yields = _yields(recipe, mixture, observations, path)
+    changed = measured.set if isinstance(measured, Measurement) else {}
+    teaches = isinstance(measured, Measurement) and measured.calibrates
+    return Sample(name, mixture, tuple(observations), yields, uncertain or {}, frozenset(changed), teaches)
 
 
 def _at(recipe: Recipe, path: str, files: Sequence[Path], file: Path, found: str) -> Fault:

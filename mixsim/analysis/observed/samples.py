@@ -11,6 +11,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from mixsim.analysis.observed.observation import LIMITS, Observation
+from mixsim.analysis.uncertainty.inputs import Uncertain
 from mixsim.errors import Refusal
 from mixsim.mixture import HOST, Mixture
 from mixsim.observables import QUANTITIES
@@ -32,12 +33,21 @@ class Sample:
         What was read.
     ash_yield
         Mass left of each constituent after burn-off over its mass, path of the leaf or number, by name.
+    uncertain
+        Numbers that differ on this sample and state a ±, by path.
+    changed
+        Paths of all that differ on this sample.
+    calibrates
+        Whether it is one whose loading is known.
     """
 
     name: str
     mixture: Mixture
     observations: tuple[Observation, ...]
     ash_yield: Mapping[str, str | float]
+    uncertain: Mapping[str, Uncertain]
+    changed: frozenset[str]
+    calibrates: bool
 
     @cached_property
     def count(self) -> int:
