@@ -16,7 +16,7 @@ from importlib import import_module
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
-    from mixsim.analysis import audit, fit, invert, predict, sweep
+    from mixsim.analysis import audit, fit, invert, judge, predict, sweep
     from mixsim.errors import BadInput, MixsimError, Refusal
     from mixsim.recipe import Recipe, load, parse
 
@@ -30,6 +30,7 @@ _HOMES = {
     "audit": "mixsim.analysis",
     "fit": "mixsim.analysis",
     "invert": "mixsim.analysis",
+    "judge": "mixsim.analysis",
     "load": "mixsim.recipe",
     "parse": "mixsim.recipe",
     "predict": "mixsim.analysis",
@@ -45,6 +46,7 @@ __all__ = [
     "audit",
     "fit",
     "invert",
+    "judge",
     "load",
     "parse",
     "predict",

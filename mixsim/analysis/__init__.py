@@ -13,6 +13,9 @@ if TYPE_CHECKING:
     from mixsim.analysis.fitting.fitting import fit
     from mixsim.analysis.inversion.answer import Estimate, Inversion, Reading
     from mixsim.analysis.inversion.inverting import invert
+    from mixsim.analysis.judging.answer import Judgement
+    from mixsim.analysis.judging.judging import judge
+    from mixsim.analysis.judging.lot import Lot, judge_lot
     from mixsim.analysis.prediction import Prediction, predict, sweep
     from mixsim.analysis.unknowns import Unknown, freed
 
@@ -23,6 +26,8 @@ _HOMES = {
     "Estimate": "inversion.answer",
     "Fitted": "fitting.answer",
     "Inversion": "inversion.answer",
+    "Judgement": "judging.answer",
+    "Lot": "judging.lot",
     "Prediction": "prediction",
     "Reading": "inversion.answer",
     "Unknown": "unknowns",
@@ -32,6 +37,8 @@ _HOMES = {
     "fit": "fitting.fitting",
     "freed": "unknowns",
     "invert": "inversion.inverting",
+    "judge": "judging.judging",
+    "judge_lot": "judging.lot",
     "predict": "prediction",
     "sweep": "prediction",
     "varied": "band",
@@ -44,6 +51,8 @@ __all__ = [
     "Estimate",
     "Fitted",
     "Inversion",
+    "Judgement",
+    "Lot",
     "Prediction",
     "Reading",
     "Unknown",
@@ -53,6 +62,8 @@ __all__ = [
     "fit",
     "freed",
     "invert",
+    "judge",
+    "judge_lot",
     "predict",
     "sweep",
     "varied",

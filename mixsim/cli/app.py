@@ -35,6 +35,11 @@ _COMMANDS: dict[str, tuple[Callable[..., int], str]] = {
         fitting.fit,
         "fit recipe.toml sample.csv --free inclusions.oxide.volume_fraction 0% 40% --noise 0.5%",
     ),
+    "judge": (
+        fitting.judge,
+        "judge recipe.toml sample.csv --free inclusions.oxide.volume_fraction 0% 40% --set "
+        "\"acceptance={of='inclusions.oxide.volume_fraction', lower='3 %', upper='5 %'}\"",
+    ),
     "audit": (questions.audit, "audit recipe.toml"),
     "list": (reference.list_, "list rules"),
     "show": (reference.show, "show bruggeman"),

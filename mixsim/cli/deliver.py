@@ -10,7 +10,11 @@ from mixsim.errors import BadInput, Fault
 from mixsim.recipe import COMMAND_LINE
 
 MOST_DIGITS = 18  # of a whole number that no memory could serve anyway
-_ROOMS = {"fit": "fit_table"}  # where a table stands that has a room of its own
+_ROOMS = {
+    "fit": "fit_table",
+    "judgement": "verdicts",
+    "lot": "verdicts",
+}  # where a table stands that has a room of its own
 
 if TYPE_CHECKING:
     from mixsim.analysis import Caution

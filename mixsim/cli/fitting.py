@@ -1,4 +1,4 @@
-"""Commands that set a recipe against measured spectra: fit."""
+"""Commands that set a recipe against what was measured: fit, judge."""
 
 from __future__ import annotations
 
@@ -11,12 +11,13 @@ import typer
 
 from mixsim.cli.deliver import MOST_DIGITS, check, deliver, whole
 from mixsim.cli.options import Json, Out, RecipeFile, RuleName, Set, Strict, recipe_from, words
-from mixsim.cli.status import ANSWERED, UNDECIDED
+from mixsim.cli.status import ANSWERED, NO, UNDECIDED
 from mixsim.errors import BadInput, Fault, Refusal
 from mixsim.recipe import COMMAND_LINE
 from mixsim.units import read
 
 MOST_STARTS = 1000
+_STATUS = {"pass": ANSWERED, "fail": NO, "undecided": UNDECIDED}
 
 
 def fit(
@@ -81,6 +82,56 @@ def fit(
     )
     deliver(answer, "fit", json=json, out=out, strict=strict)
     return ANSWERED if answer.identifiable else UNDECIDED
+
+
+def judge(
+    recipe: RecipeFile,
+    data: Annotated[
+        list[Path] | None, typer.Argument(metavar="DATA", help="Measured spectra (CSV) of one sample.")
+    ] = None,
+    lot: Annotated[
+        Path | None, typer.Option("--lot", metavar="FILE", help="A table (CSV) of readings, one row a piece.")
+    ] = None,
+    free: Annotated[
+        list[str] | None,
+        typer.Option(
+            "--free", metavar="PATH LOW HIGH", help="Find this number in a range; replaces [unknowns]."
+        ),
+    ] = None,
+    noise: Annotated[
+        str,
+        typer.Option(
+            "--noise", metavar="SHARE", help="Uncertainty of a spectrum without one, a share of its modulus."
+        ),
+    ] = "",
+    seed: Annotated[str, typer.Option("--seed", metavar="NUMBER", help="Of the places to start from.")] = "0",
+    settings: Set = None,
+    rule: RuleName = None,
+    json: Json = False,
+    out: Out = None,
+    strict: Strict = False,
+) -> int:
+    """Whether a piece passes its limits, and how sure that is.
+
+    Exit status 1: it fails; 3: undecided.
+    """
+    from mixsim.analysis import freed, judge_lot
+    from mixsim.analysis import judge as ask
+
+    check(out)
+    loaded = recipe_from(recipe, settings, rule)
+    unknowns = [freed(loaded, *words("--free", text, "PATH LOW HIGH")) for text in free or ()]
+    number = whole("--seed", seed, f"a whole number, 0 or above, of at most {MOST_DIGITS} digits")
+    if lot is not None:
+        if data:
+            allowed = "a lot holds its readings itself"
+            raise BadInput([Fault(COMMAND_LINE, "DATA", f"{str(data[0])!r} beside --lot", allowed)])
+        many = judge_lot(loaded, lot, free=unknowns)
+        deliver(many, "lot", json=json, out=out, strict=strict)
+        return _STATUS[many.decision]
+    answer = ask(loaded, data or (), free=unknowns, noise=_share(noise), seed=number)
+    deliver(answer, "judgement", json=json, out=out, strict=strict)
+    return _STATUS[answer.decision]
 
 
 def _share(text: str) -> float | None:

@@ -12,23 +12,39 @@ from typing import Any
 
 import numpy as np
 
-from mixsim.analysis import Fitted, Inversion, Prediction
+from mixsim.analysis import Fitted, Inversion, Judgement, Lot, Prediction
 from mixsim.analysis.plain import provenance
 from mixsim.analysis.prediction import CONVENTION
 from mixsim.units import SPEED_OF_LIGHT
 
 
-def write_npz(answer: Prediction | Inversion | Fitted, file: Path) -> None:
+def write_npz(answer: Prediction | Inversion | Fitted | Judgement | Lot, file: Path) -> None:
     """Write the arrays of an answer."""
-    if isinstance(answer, Inversion):
-        arrays = _inversion(answer)
-    else:
-        arrays = _fitted(answer) if isinstance(answer, Fitted) else _prediction(answer)
+    arrays = _inversion(answer) if isinstance(answer, Inversion) else _others(answer)
     with file.open("wb") as stream:
         np.savez_compressed(stream, **arrays)
 
 
-def _origin(answer: Prediction | Inversion | Fitted) -> dict[str, Any]:
+def _others(answer: Prediction | Fitted | Judgement | Lot) -> dict[str, Any]:
+    if isinstance(answer, Judgement | Lot):
+        return _verdicts(answer)
+    return _fitted(answer) if isinstance(answer, Fitted) else _prediction(answer)
+
+
+def _verdicts(answer: Judgement | Lot) -> dict[str, Any]:
+    pieces = answer.pieces if isinstance(answer, Judgement) else answer.rows
+    return _origin(answer) | {
+        "of": np.array(answer.measurand.name),
+        "limits": _column([answer.lower, answer.upper]),
+        "samples": np.array([piece.sample for piece in pieces]),
+        "decision": np.array([piece.decision for piece in pieces]),
+        "value": _column([piece.value for piece in pieces]),
+        "std": _column([piece.std for piece in pieces]),
+        "probability": _column([piece.probability for piece in pieces]),
+    }
+
+
+def _origin(answer: Prediction | Inversion | Fitted | Judgement | Lot) -> dict[str, Any]:
     origin = provenance(answer.recipe)
     return {
         "title": np.array(answer.recipe.schema.title or ""),

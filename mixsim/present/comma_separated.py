@@ -13,7 +13,8 @@ from typing import Any
 
 import numpy as np
 
-from mixsim.analysis import Fitted, Inversion, Prediction
+from mixsim.analysis import Fitted, Inversion, Judgement, Lot, Prediction
+from mixsim.analysis.judging.answer import Judged
 from mixsim.analysis.plain import provenance
 from mixsim.analysis.prediction import CONVENTION
 from mixsim.dispersion.table_text import AXES
@@ -29,7 +30,7 @@ _QUANTITIES = (
 _CHUNK = 16384  # rows turned into text at a time
 
 
-def write_csv(answer: Prediction | Inversion | Fitted, file: Path) -> None:
+def write_csv(answer: Prediction | Inversion | Fitted | Judgement | Lot, file: Path) -> None:
     """Write the rows of an answer: one for each frequency (and varied value), or one for each unknown."""
     with file.open("w", encoding="utf-8", newline="") as stream:
         for line in _comments(answer):
@@ -40,12 +41,14 @@ def write_csv(answer: Prediction | Inversion | Fitted, file: Path) -> None:
             writer.writerows(_inversion(answer))
         elif isinstance(answer, Fitted):
             writer.writerows(_fitted(answer))
+        elif isinstance(answer, Judgement | Lot):
+            writer.writerows(_verdicts(answer))
         else:
             for rows in _prediction(answer):
                 writer.writerows(rows)
 
 
-def _comments(answer: Prediction | Inversion | Fitted) -> Iterator[str]:
+def _comments(answer: Prediction | Inversion | Fitted | Judgement | Lot) -> Iterator[str]:
     recipe, origin = answer.recipe, provenance(answer.recipe)
     if recipe.schema.title:
         yield f"title: {recipe.schema.title}"
@@ -64,6 +67,8 @@ def _comments(answer: Prediction | Inversion | Fitted) -> Iterator[str]:
             )
             yield f"{name}: {shown or 'not narrowed'}"
         yield f"convention: {CONVENTION}"
+    elif isinstance(answer, Judgement | Lot):
+        yield f"{answer.measurand.name}: {answer.decision}"
     else:
         yield f"convention: {CONVENTION}"
     yield from (f"caution, {caution.kind}: {caution.message}" for caution in answer.warnings)
@@ -131,6 +136,16 @@ def _fitted(answer: Fitted) -> Iterator[Sequence[Any]]:
         columns = one.values.tolist(), _cells(one.std), met.predicted.tolist(), met.standardised.tolist()
         for frequency, *numbers in zip(frequencies, *columns, strict=True):
             yield (one.sample, one.quantity, frequency, *numbers, one.source)
+
+
+def _verdicts(answer: Judgement | Lot) -> Iterator[Sequence[Any]]:
+    """One row for each piece; a list of reasons in one cell."""
+    yield ("sample", "verdict", "value", "std", "probability", "as written", "reason")
+    for piece in answer.pieces if isinstance(answer, Judgement) else answer.rows:
+        numbers = ["" if number is None else number for number in (piece.value, piece.std, piece.probability)]
+        said = "" if piece.value is None else answer.measurand.show(piece.value, piece.std)
+        reason = "; ".join(piece.reasons) if isinstance(piece, Judged) else piece.reason
+        yield (piece.sample, piece.decision, *numbers, said, reason)
 
 
 def _inversion(answer: Inversion) -> Iterator[Sequence[Any]]:

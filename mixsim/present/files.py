@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from pathlib import Path
 
-from mixsim.analysis import Fitted, Inversion, Prediction
+from mixsim.analysis import Fitted, Inversion, Judgement, Lot, Prediction
 from mixsim.errors import Refusal
 from mixsim.present.atomic import check_place, refuse, write_whole
 from mixsim.present.json_text import json_text
@@ -24,13 +24,13 @@ def check(file: str | Path) -> None:
     check_place(Path(file), SUFFIXES)
 
 
-def write(answer: Prediction | Inversion | Fitted, file: str | Path) -> None:
+def write(answer: Prediction | Inversion | Fitted | Judgement | Lot, file: str | Path) -> None:
     """Write an answer to a file in the format that its suffix says.
 
     Parameters
     ----------
     answer
-        A prediction, a sweep, an inversion or a fit.
+        A prediction, a sweep, an inversion, a fit or verdicts.
     file
         .csv .json .npz for numbers; .png .svg .pdf for the plot. An existing file is replaced whole.
 
@@ -47,7 +47,7 @@ def write(answer: Prediction | Inversion | Fitted, file: str | Path) -> None:
         raise refuse(place, refusal.found, refusal.allowed) from None
 
 
-def _write(answer: Prediction | Inversion | Fitted, file: Path) -> None:
+def _write(answer: Prediction | Inversion | Fitted | Judgement | Lot, file: Path) -> None:
     suffix = file.suffix.lower()
     if suffix == ".json":
         file.write_text(json_text(answer), encoding="utf-8")
@@ -63,7 +63,7 @@ def _write(answer: Prediction | Inversion | Fitted, file: Path) -> None:
         _plot(answer, file, suffix)
 
 
-def _plot(answer: Prediction | Inversion | Fitted, file: Path, suffix: str) -> None:
+def _plot(answer: Prediction | Inversion | Fitted | Judgement | Lot, file: Path, suffix: str) -> None:
     from mixsim.present.plots import figure
     from mixsim.present.plots.style import RESOLUTION, settings
 

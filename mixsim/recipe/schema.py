@@ -218,6 +218,9 @@ class Measured(Section):
     )
     density: Density | None = None
     ash: Fraction | None = Field(default=None, description="weight fraction left after burn-off")
+    label: str | float | None = Field(
+        default=None, description="the loading that the bag says, basis unknown"
+    )
 
 
 class Sample(Measured):
@@ -227,6 +230,20 @@ class Sample(Measured):
     set: dict[str, str | float | bool] = Field(default={}, description="path → value on this sample")
     unknowns: dict[str, Annotated[Span, Ends()]] = Field(default={}, description="of this sample alone")
     calibrates: bool = Field(default=False, description="its loading is known: it teaches the rule")
+
+
+class Acceptance(Section):
+    """What a piece must be to pass."""
+
+    of: str = Field(description="a path, an inclusion's loading on any basis, or a quantity")
+    at: Spectral | None = Field(default=None, description="where, for a quantity of a frequency")
+    lower: str | float | None = None
+    upper: str | float | None = None
+    decision: Literal["guarded", "simple"] = "guarded"
+    coverage_factor: Positive | None = Field(
+        default=None, description="width of the guard band in standard uncertainties; 2 if left out"
+    )
+    model_uncertainty: Literal["rule-spread", "none"] = "rule-spread"
 
 
 class Schema(Section):
@@ -242,4 +259,5 @@ class Schema(Section):
     materials: dict[Name, Material] = {}
     measured: Measured | None = None
     samples: list[Sample] = []
+    acceptance: Acceptance | None = None
     unknowns: dict[str, Annotated[Span, Ends()]] = {}

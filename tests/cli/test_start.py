@@ -98,6 +98,7 @@ def test_public_names() -> None:
         "audit",
         "fit",
         "invert",
+        "judge",
         "load",
         "parse",
         "predict",

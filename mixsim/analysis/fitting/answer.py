@@ -49,8 +49,8 @@ class Quality:
     readings, unknowns
         How many there are.
     reduced
-        Sum of squared residuals over the degrees of freedom, near one where the stated ± are right; None
-        where there is no freedom, or no ± was stated.
+        Sum of squared residuals over the degrees of freedom, near one where the stated ± are right, those of
+        the held numbers included; None where there is no freedom, or no ± was stated.
     noise
         Standard deviation of the residuals where no ± was stated, as it weighs a permittivity; else None.
     aicc, bic

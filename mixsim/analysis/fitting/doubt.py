@@ -58,6 +58,8 @@ class Doubt:
         What one ± of each held number that is felt does to the scaled places, by its name, shape (U,).
     gain
         What takes residuals to scaled places, shape (U, count).
+    explained
+        Sum of squared residuals that is left when the held numbers may move within their ±.
     combinations
         Best fixed first.
     """
@@ -67,6 +69,7 @@ class Doubt:
     statistical: Floats
     moved: Mapping[str, Floats]
     gain: Floats
+    explained: float
     combinations: tuple[Combination, ...]
 
 
@@ -110,8 +113,19 @@ def doubt_of(model: FitModel, found: Fit, held: Mapping[str, Uncertain]) -> Doub
         statistical,
         {names[i]: moved[:, i] for i in range(len(held)) if felt[:, i].any()},
         gain,
+        _explained(found, felt) / scale**2,
         _combinations(model, found, scale),
     )
+
+
+def _explained(found: Fit, felt: Floats) -> float:
+    """rᵀ(1 + E Eᵀ)⁻¹r: residuals against their own noise and that of the held numbers together."""
+    square = float(np.sum(found.residual**2))
+    if not felt.shape[1]:
+        return square
+    seen = felt.T @ found.residual
+    within = np.eye(felt.shape[1]) + felt.T @ felt
+    return max(square - float(seen @ np.linalg.solve(within, seen)), 0.0)
 
 
 def _effects(model: FitModel, found: Fit, held: Mapping[str, Uncertain]) -> Floats:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
-from dataclasses import replace
+from dataclasses import dataclass, replace
 from pathlib import Path
 
 import numpy as np
@@ -103,24 +103,65 @@ def fit(
     >>> print(answer.verdict, recipe.show(estimate.path, estimate.value, estimate.std))
     answered 19.95 ± 0.32 %
     """
+    question = asked(recipe, data, free=free, noise=noise, prior=prior)
+    fits = solved(question, starts=starts, seed=seed, loss=loss, progress=progress)
+    answer = answered(question, fits, profiled=profiled, seed=seed)
+    if not compare:
+        return answer
+    return replace(answer, by_rule=_by_rule(question, fits[0], answer.quality, loss, starts, seed))
+
+
+@dataclass(frozen=True, eq=False)
+class Asked:
+    """What a fit is asked.
+
+    Attributes
+    ----------
+    recipe
+        A checked recipe.
+    model
+        Residuals of its samples as a function of the unknowns.
+    """
+
+    recipe: Recipe
+    model: FitModel
+
+
+def asked(
+    recipe: Recipe,
+    data: Sequence[str | Path] = (),
+    *,
+    free: Sequence[Unknown] | None = None,
+    noise: float | None = None,
+    prior: bool = False,
+) -> Asked:
+    """Readings and unknowns gathered and checked; as `fit`."""
     samples = samples_of(recipe, [Path(file) for file in data], noise)
-    unknowns = _unknowns(recipe, samples, free, prior)
-    model = _model(recipe, samples, unknowns)
+    model = _model(recipe, samples, _unknowns(recipe, free, prior))
     if prior:
         model = _model(recipe, samples, _felt(model))
-    unknowns = model.unknowns
-    if len(unknowns) > model.count:
-        found = f"{len(unknowns)} unknowns and {model.count} readings"
+    if len(model.unknowns) > model.count:
+        found = f"{len(model.unknowns)} unknowns and {model.count} readings"
         allowed = "no more unknowns than readings; free fewer, or say what is known beforehand"
         raise BadInput([recipe.fault("unknowns", found, allowed)])
+    return Asked(recipe, model)
+
+
+def solved(
+    question: Asked,
+    *,
+    starts: int = STARTS,
+    seed: int = 0,
+    loss: Loss = "linear",
+    progress: Callable[[int, int], None] | None = None,
+) -> list[Fit]:
+    """Every distinct best fit, best first; as `fit`."""
+    model = question.model
     with np.errstate(all="ignore"):
-        fits = solve(model, _own(model), starts=starts, seed=seed, loss=loss, progress=progress)
-        return _answered(recipe, model, fits, loss, starts, profiled, compare, seed)
+        return solve(model, _own(model), starts=starts, seed=seed, loss=loss, progress=progress)
 
 
-def _unknowns(
-    recipe: Recipe, samples: Sequence[Sample], free: Sequence[Unknown] | None, prior: bool
-) -> tuple[Unknown, ...]:
+def _unknowns(recipe: Recipe, free: Sequence[Unknown] | None, prior: bool) -> tuple[Unknown, ...]:
     own = () if free else of_samples(recipe)
     shared = () if own and not recipe.schema.unknowns else unknowns_of(recipe, free)
     unknowns = [*shared, *own]
@@ -157,16 +198,13 @@ def _own(model: FitModel) -> Floats:
     return model.places(np.where(inside, values, middle))
 
 
-def _answered(
-    recipe: Recipe,
-    model: FitModel,
-    fits: list[Fit],
-    loss: Loss,
-    starts: int,
-    profiled: bool,
-    compare: bool,
-    seed: int,
-) -> Fitted:
+def answered(question: Asked, fits: list[Fit], *, profiled: bool = False, seed: int = 0) -> Fitted:
+    """What some fits say, with its doubt; as `fit`."""
+    with np.errstate(all="ignore"):
+        return _answered(question.recipe, question.model, fits, profiled, seed)
+
+
+def _answered(recipe: Recipe, model: FitModel, fits: list[Fit], profiled: bool, seed: int) -> Fitted:
     best = fits[0]
     doubt = doubt_of(model, best, held_numbers(recipe, model))
     several = as_good(fits, doubt.scale)
@@ -179,7 +217,6 @@ def _answered(
             part = slice(start, start := start + len(one.values))
             off = (one.values - predicted[part]) / (model.std[part] * doubt.scale)
             met.append(Met(one, predicted[part], off))
-    by_rule = _by_rule(recipe, model, best, quality, loss, starts, seed) if compare else ()
     return Fitted(
         recipe=recipe,
         rule=model.samples[0].mixture.rule.name,
@@ -193,7 +230,7 @@ def _answered(
         met=tuple(met),
         shares=_shares(model, doubt),
         solutions=tuple(_named(model, found.place) for found in several) if len(several) > 1 else (),
-        by_rule=by_rule,
+        by_rule=(),
         profiled=profiled and not reasons,
         warnings=(*suspicions(recipe), *_cautions(model, best, quality, met)),
         seed=seed,
@@ -203,13 +240,14 @@ def _answered(
 def held_numbers(recipe: Recipe, model: FitModel) -> dict[str, Uncertain]:
     """Numbers with a ± that are not fitted, by name: those of the recipe, and those set for one sample."""
     free = {unknown.path for unknown in model.unknowns}
+    own = {(unknown.path, unknown.sample) for unknown in model.unknowns}
     everywhere = set.intersection(*(set(sample.uncertain) for sample in model.samples))
     held = uncertain_leaves(recipe, without=free | everywhere)
     for sample in model.samples:
         held |= {
             f"samples.{sample.name}.{path}": number
             for path, number in sample.uncertain.items()
-            if path not in free
+            if (path, sample.name) not in own
         }
     return held
 
@@ -242,7 +280,7 @@ def _quality(model: FitModel, best: Fit, doubt: Doubt) -> Quality:
     return Quality(
         readings=n,
         unknowns=len(model.unknowns),
-        reduced=square / freedom if freedom > 0 and not model.scaled else None,
+        reduced=doubt.explained / freedom if freedom > 0 and not model.scaled else None,
         noise=doubt.scale if model.scaled and freedom > 0 else None,
         aicc=level + 2 * k + (2 * k * (k + 1) / room if room > 0 else np.inf),
         bic=level + k * float(np.log(n)),
@@ -303,14 +341,16 @@ def _named(model: FitModel, place: Floats) -> dict[str, float]:
 
 
 def _by_rule(
-    recipe: Recipe, model: FitModel, best: Fit, quality: Quality, loss: Loss, starts: int, seed: int
+    question: Asked, best: Fit, quality: Quality, loss: Loss, starts: int, seed: int
 ) -> tuple[RuleFit, ...]:
+    recipe, model = question.recipe, question.model
     mixture = model.samples[0].mixture
     found = [RuleFit(mixture.rule.name, _named(model, best.place), quality)]
     for name in applicable_rules(recipe, mixture):
         samples = [replace(sample, mixture=sample.mixture.with_rule(name)) for sample in model.samples]
         other = FitModel(samples, model.unknowns)
-        fitted = solve(other, best.place, starts=starts, seed=seed, loss=loss)[0]
+        with np.errstate(all="ignore"):
+            fitted = solve(other, best.place, starts=starts, seed=seed, loss=loss)[0]
         found.append(
             RuleFit(name, _named(other, fitted.place), _quality(other, fitted, doubt_of(other, fitted, {})))
         )

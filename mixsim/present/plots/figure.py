@@ -4,19 +4,19 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from mixsim.analysis import Fitted, Inversion, Prediction
+from mixsim.analysis import Fitted, Inversion, Judgement, Lot, Prediction
 
 if TYPE_CHECKING:
     from matplotlib.figure import Figure
 
 
-def figure(answer: Prediction | Inversion | Fitted) -> Figure:
+def figure(answer: Prediction | Inversion | Fitted | Judgement | Lot) -> Figure:
     """Figure of an answer.
 
     Parameters
     ----------
     answer
-        A prediction, a sweep, an inversion or a fit.
+        A prediction, a sweep, an inversion, a fit or verdicts.
 
     Returns
     -------
@@ -31,7 +31,7 @@ def figure(answer: Prediction | Inversion | Fitted) -> Figure:
     from matplotlib.figure import Figure
     from matplotlib.layout_engine import ConstrainedLayoutEngine
 
-    from mixsim.present.plots import fit, inversion, prediction, sweep
+    from mixsim.present.plots import fit, inversion, prediction, sweep, verdict
     from mixsim.present.plots.style import HEIGHT, WIDTH, settings
 
     with settings():
@@ -40,6 +40,8 @@ def figure(answer: Prediction | Inversion | Fitted) -> Figure:
             inversion.draw(drawn, answer)
         elif isinstance(answer, Fitted):
             fit.draw(drawn, answer)
+        elif isinstance(answer, Judgement | Lot):
+            verdict.draw(drawn, answer)
         elif answer.vary:
             sweep.draw(drawn, answer)
         else:
