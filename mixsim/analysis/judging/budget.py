@@ -45,7 +45,7 @@ def budget(contributions: Mapping[str, float]) -> tuple[Source, ...]:
     """Sources by their contributions, largest first; those that do nothing are left out."""
     whole = sum(value**2 for value in contributions.values())
     found = [
-        Source(name, abs(value), value**2 / whole) for name, value in contributions.items() if value != 0.0
+        Source(name, abs(value), value**2 / whole) for name, value in contributions.items() if value**2 > 0.0
     ]
     return tuple(sorted(found, key=lambda source: -source.share))
 
