@@ -16,6 +16,7 @@ from mixsim.analysis.uncertainty.inputs import Uncertain
 Floats = NDArray[np.float64]
 
 UNIFORM = 12.0**-0.5  # standard deviation of not knowing anything, in scaled ranges
+_ROUNDING = 1e-12  # scatter of readings without noise
 _FIXED = 0.3  # relative standard uncertainty below which a combination counts as fixed
 _SINGULAR = 1e-10  # share of the largest singular value below which the data say nothing
 _HALF_WIDTH = 3.841459  # of 95 %, in squares of standard uncertainties
@@ -92,7 +93,8 @@ def doubt_of(model: FitModel, found: Fit, held: Mapping[str, Uncertain]) -> Doub
         to the residuals, and G = J⁺ takes residuals to places.
     """
     freedom = model.count - len(model.unknowns)
-    scale = float(np.sqrt(found.cost / freedom)) if model.scaled and freedom > 0 else 1.0
+    scatter = float(np.sqrt(found.cost / freedom)) if model.scaled and freedom > 0 else 1.0
+    scale = max(scatter, _ROUNDING)
     left, singular, right = np.linalg.svd(found.slopes, full_matrices=False)
     seen = singular > _SINGULAR * max(float(singular[0]), 1e-300)
     with np.errstate(divide="ignore"):
@@ -113,7 +115,7 @@ def doubt_of(model: FitModel, found: Fit, held: Mapping[str, Uncertain]) -> Doub
         statistical,
         {names[i]: moved[:, i] for i in range(len(held)) if felt[:, i].any()},
         gain,
-        _explained(found, felt) / scale**2,
+        _explained(found, felt),
         _combinations(model, found, scale),
     )
 
