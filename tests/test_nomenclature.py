@@ -37,7 +37,9 @@ def formulas() -> Iterator[Callable[..., Any]]:
     for rule in RULES.values():
         given = (rule.function, rule.fraction_from, rule.inclusion_from)
         yield from (function for function in given if function is not None)
-    yield from (mixing.wiener, mixing.hashin_shtrikman, mixing.spheroid_factors)
+    yield from (mixing.wiener, mixing.hashin_shtrikman)
+    yield from (mixing.spheroid_factors, mixing.ellipsoid_factors)
+    yield from (mixing.in_plane_grains, mixing.ordered_grains, mixing.ratios_about)
     yield composition.number_density_from_weight_fraction
     yield composition.number_density_from_mole_fraction
     yield from (q.function for q in observables.QUANTITIES.values())

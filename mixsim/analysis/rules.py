@@ -23,7 +23,7 @@ def conducts(mixture: Mixture, name: str) -> bool:
 
 def _applies(rule: Rule, recipe: Recipe, mixture: Mixture) -> bool:
     """Shapes, densities and contact must suit; molecules in vacuum are no alternative to grains in a host."""
-    if any(grain.aspect_ratio is not None for grain in mixture.inclusions) and not rule.takes_shapes:
+    if any(grain.shape is not None for grain in mixture.inclusions) and not rule.takes_shapes:
         return False
     if mixture.density is not None and rule.additive_only:
         return False

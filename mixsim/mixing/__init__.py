@@ -5,27 +5,47 @@ from __future__ import annotations
 from mixsim.mixing.bounds import hashin_shtrikman, wiener
 from mixsim.mixing.bruggeman import bruggeman
 from mixsim.mixing.depolarisation import (
+    DISC,
+    NEEDLE,
     SPHERE,
     Depolarisation,
-    aligned_spheroid,
-    random_spheroid,
+    Factors,
+    ellipsoid_factors,
     spheroid_factors,
 )
 from mixsim.mixing.lorentz_lorenz import lorentz_lorenz
 from mixsim.mixing.maxwell_garnett import maxwell_garnett
+from mixsim.mixing.orientation import (
+    aligned_grains,
+    aligned_spheroid,
+    in_plane_grains,
+    ordered_grains,
+    random_grains,
+    random_spheroid,
+    ratios_about,
+)
 from mixsim.mixing.registry import RULES, Rule, rule_named
 
 __all__ = [
+    "DISC",
+    "NEEDLE",
     "RULES",
     "SPHERE",
     "Depolarisation",
+    "Factors",
     "Rule",
+    "aligned_grains",
     "aligned_spheroid",
     "bruggeman",
+    "ellipsoid_factors",
     "hashin_shtrikman",
+    "in_plane_grains",
     "lorentz_lorenz",
     "maxwell_garnett",
+    "ordered_grains",
+    "random_grains",
     "random_spheroid",
+    "ratios_about",
     "rule_named",
     "spheroid_factors",
     "wiener",

@@ -81,7 +81,7 @@ RULES: Mapping[str, Rule] = {
         Rule(
             name="maxwell-garnett",
             function=maxwell_garnett,
-            summary="separate grains in a host, spheres or spheroids, random or aligned",
+            summary="separate grains in a host, ellipsoids of any kind, random or aligned",
             equation="(ε − ε_h)/(ε + 2ε_h) = Σ f_k (ε_k − ε_h)/(ε_k + 2ε_h) for spheres",
             assumptions="each grain sits in the host, apart from the others, small against the wavelength",
             dilute_limit=_CLAUSIUS_MOSSOTTI,

@@ -18,6 +18,7 @@ from mixsim.dispersion import (
 from mixsim.mixing import rule_named
 from mixsim.mixture.inputs import Derived, Fixed, Input, Leafed
 from mixsim.mixture.mixture import HOST, Constituent, Mixture
+from mixsim.mixture.shapes import Shape
 from mixsim.mixture.spectra import (
     VACUUM,
     BoundTerm,
@@ -94,8 +95,22 @@ class _Compiler:
             self._maybe(f"materials.{material}.density"),
             basis,
             Leafed(f"{path}.{basis}"),
-            self._maybe(f"{path}.shape.aspect_ratio"),
-            inclusion.orientation == "aligned",
+            self._shape(name),
+        )
+
+    def _shape(self, name: str) -> Shape | None:
+        inclusion, path = self.schema.inclusions[name], f"inclusions.{name}"
+        if inclusion.shape.kind == "sphere":
+            return None
+        places = {
+            **{key: f"{path}.shape.{key}" for key in ("aspect_ratio", "aspect_ratio_spread")},
+            **{f"axes.{i}": f"{path}.shape.axes.{i}" for i in range(3)},
+            "order_parameter": f"{path}.order_parameter",
+        }
+        numbers = {key: number for key, place in places.items() if (number := self._maybe(place))}
+        ordered = "order_parameter" in numbers
+        return Shape(
+            inclusion.shape.kind, "ordered" if ordered else inclusion.orientation or "random", numbers
         )
 
     def _permittivity(self, name: str) -> Spectrum:

@@ -12,10 +12,11 @@ from numpy.typing import ArrayLike
 
 from mixsim.composition import Basis, Loading, volume_fractions
 from mixsim.errors import Refusal, nearest
-from mixsim.mixing import SPHERE, Depolarisation, Rule, aligned_spheroid, random_spheroid, rule_named
+from mixsim.mixing import SPHERE, Depolarisation, Rule, rule_named
 from mixsim.mixture.blocks import Axes, blocks, numbers
 from mixsim.mixture.inputs import Input, Values
 from mixsim.mixture.response import Array, Composition, Limits, Response
+from mixsim.mixture.shapes import Shape
 from mixsim.mixture.spectra import VACUUM, Spectrum, held
 from mixsim.mixture.static import LowFrequency, low_frequency
 from mixsim.units import VACUUM_PERMITTIVITY
@@ -39,10 +40,8 @@ class Constituent:
         Density, where its material has one.
     basis, amount
         Its loading; None for host and voids.
-    aspect_ratio
-        Symmetry axis over cross axis of its grains; None for spheres.
-    aligned
-        Whether those axes are aligned.
+    shape
+        Shape of its grains and how they lie; None for spheres.
     """
 
     name: str
@@ -52,8 +51,7 @@ class Constituent:
     density: Input | None = None
     basis: Basis | None = None
     amount: Input | None = None
-    aspect_ratio: Input | None = None
-    aligned: bool = False
+    shape: Shape | None = None
 
 
 @dataclass(frozen=True, eq=False)
@@ -276,7 +274,7 @@ class Mixture:
     @property
     def aligned(self) -> bool:
         """Whether the answers have principal axes."""
-        return any(inclusion.aligned for inclusion in self.inclusions)
+        return any(grain.shape is not None and grain.shape.principal for grain in self.inclusions)
 
     @property
     def _names(self) -> list[str]:
@@ -295,7 +293,8 @@ class Mixture:
         return self.rule.function(phases, fractions=fractions, depolarisations=shapes)
 
     def _composed(self, x: Values) -> tuple[tuple[Any, ...], list[Depolarisation]]:
-        return self._fractions(x), [self._shape(phase, x) for phase in self.phases]
+        shapes = (phase.shape for phase in self.phases)
+        return self._fractions(x), [SPHERE if shape is None else shape(x) for shape in shapes]
 
     def _fractions(self, x: Values) -> tuple[Any, ...]:
         loadings = []
@@ -311,14 +310,6 @@ class Mixture:
             mixture_density=None if self.density is None else self.density(x),
         )
         return fractions if self.voids is not None else fractions[:-1]
-
-    def _shape(self, phase: Constituent, x: Values) -> Depolarisation:
-        if phase.aspect_ratio is None:
-            return SPHERE
-        ratio = np.asarray(phase.aspect_ratio(x))
-        if not phase.aligned:
-            return random_spheroid(ratio)
-        return aligned_spheroid(ratio[..., 0] if ratio.ndim else ratio)
 
 
 def _frequencies(omega: ArrayLike) -> Array:

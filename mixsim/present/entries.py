@@ -85,7 +85,7 @@ def _rule(rule: Rule) -> str:
 def _shapes(rule: Rule) -> str:
     if not rule.takes_shapes:
         return "spheres"
-    return f"spheres and spheroids, random{' or aligned' if rule.takes_aligned else ''}"
+    return f"any ellipsoid, turned at random{', aligned or in between' if rule.takes_aligned else ''}"
 
 
 def _term(term: Term) -> str:

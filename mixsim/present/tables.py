@@ -9,6 +9,7 @@ import numpy as np
 
 from mixsim.present.columns import owned, paragraph, table, width
 from mixsim.present.phrases import NONE, cautions, chosen, number, rounded
+from mixsim.present.principal import principal_axes
 from mixsim.units import kind_of_axis, show
 
 if TYPE_CHECKING:
@@ -55,10 +56,10 @@ def _swept(answer: Prediction) -> list[tuple[str, Any]]:
     at = f"{answer.axis.shown[place]:.5g} {answer.axis.unit}"
     if e.ndim == len(answer.vary) + 2:
         columns: list[tuple[str, Any]] = []
-        for label, axis in (("⊥", 0), ("∥", 2)):
-            columns.append((f"static\n{label}", limits.static[..., axis]))
-            columns.append((f"ε′ {label} at\n{at}", e[..., axis, place].real))
-            columns.append((f"ε″ {label} at\n{at}", e[..., axis, place].imag))
+        for axis in principal_axes(answer.recipe, e):
+            columns.append((f"static\n{axis.sign}", limits.static[..., axis.index]))
+            columns.append((f"ε′ {axis.sign} at\n{at}", e[..., axis.index, place].real))
+            columns.append((f"ε″ {axis.sign} at\n{at}", e[..., axis.index, place].imag))
         return columns
     columns = [("static", limits.static), ("high-\nfrequency", limits.high_frequency)]
     if np.any(limits.conductivity > 0.0):
@@ -135,18 +136,18 @@ def _limits(answer: Prediction) -> str:
     limits, unsure = answer.limits, answer.pushed
     said = any(caution.kind == "no-limit" for caution in answer.warnings)
     rows = [
-        ["static permittivity", _axes(limits.static, None if unsure is None else unsure.static)],
+        ["static permittivity", _axes(answer, limits.static, None if unsure is None else unsure.static)],
         [
             "high-frequency permittivity",
-            _axes(limits.high_frequency, None if unsure is None else unsure.high_frequency),
+            _axes(answer, limits.high_frequency, None if unsure is None else unsure.high_frequency),
         ],
     ]
     if answer.magnetic:
-        rows.append(["static permeability", _axes(limits.static_permeability)])
-        rows.append(["high-frequency permeability", _axes(limits.high_frequency_permeability)])
+        rows.append(["static permeability", _axes(answer, limits.static_permeability)])
+        rows.append(["high-frequency permeability", _axes(answer, limits.high_frequency_permeability)])
     if np.any(limits.conductivity > 0.0):
-        rows.append(["conductivity at dc", f"{_axes(limits.conductivity)} S/m"])
-        rows.append(["level beside it", _axes(limits.plateau)])
+        rows.append(["conductivity at dc", f"{_axes(answer, limits.conductivity)} S/m"])
+        rows.append(["level beside it", _axes(answer, limits.plateau)])
     rows = [[name, "none: see no-limit below" if said and level == NONE else level] for name, level in rows]
     shown = table(["", ""], rows, left=2)
     if unsure is not None and "±" in shown:
@@ -158,8 +159,8 @@ def _spectrum(answer: Prediction) -> str:
     """Some rows of the spectrum with the highest loss; along each axis where the grains are aligned."""
     if answer.permittivity.ndim == 1:
         return _along(answer, 0)
-    axes = (("⊥, across the aligned axis", 0), ("∥, along the aligned axis", 2))
-    return "\n\n".join(f"{label}\n{_along(answer, axis)}" for label, axis in axes)
+    axes = principal_axes(answer.recipe, answer.permittivity)
+    return "\n\n".join(f"{axis.said}\n{_along(answer, axis.index)}" for axis in axes)
 
 
 def _along(answer: Prediction, axis: int) -> str:
@@ -254,10 +255,14 @@ def _by_rule(answer: Inversion) -> str:
     return table(["rule", *["\n".join(owned(path)) for path in answer.estimates]], rows)
 
 
-def _axes(value: Any, std: Any = None) -> str:
+def _axes(answer: Prediction, value: Any, std: Any = None) -> str:
     """A level, or one for each principal axis, with its uncertainty where there is one."""
     if np.ndim(value):
-        parts = [_axes(value[axis], None if std is None else std[axis]) for axis in (0, 2)]
+        axes = principal_axes(answer.recipe, answer.permittivity)
+        own = [None if std is None else std[axis.index] for axis in axes]
+        parts = [_axes(answer, value[axis.index], u) for axis, u in zip(axes, own, strict=True)]
+        if len(axes) == 3:
+            return ", ".join(parts)
         return f"{parts[0]} ⊥, {parts[1]} ∥"
     if std is None or not std > 0.0 or np.isnan(value):
         return number(value, digits=6)

@@ -30,6 +30,7 @@ def disagreements(
             yield from _in_order(material.valid.from_, material.valid.to, f"materials.{name}.valid")
         if material.static is not None and material.high_frequency is not None:
             yield from _levels(material.static, material.high_frequency, f"materials.{name}.static")
+    yield from _flakes(schema)
     yield from _widths(leaves)
     yield from _doped(schema)
     yield from _room(schema)
@@ -167,6 +168,16 @@ def _widths(leaves: Mapping[str, Leaf]) -> Iterator[Finding]:
                 width_from_wavelength(leaf.value, resonance=resonance.value)
             except Refusal as refusal:
                 yield path, refusal
+
+
+def _flakes(schema: Schema) -> Iterator[Finding]:
+    """Flakes whose symmetry axes lie in a plane stand on edge, which is hardly what is meant."""
+    for name, inclusion in schema.inclusions.items():
+        ratio = inclusion.shape.aspect_ratio
+        if inclusion.orientation == "in-plane" and ratio is not None and ratio.value < 1.0:
+            found = f"flakes of aspect ratio {ratio.written} with their axes in a plane"
+            allowed = "flakes that lie flat are 'aligned'; for flakes on edge give an ellipsoid's axes"
+            yield f"inclusions.{name}.orientation", Refusal(found, allowed, "aligned")
 
 
 def _doped(schema: Schema) -> Iterator[Finding]:

@@ -10,15 +10,15 @@ import re
 from collections.abc import Iterable, Iterator, Mapping
 from typing import Any
 
-from mixsim.composition import BASES
 from mixsim.dispersion import TERMS
 from mixsim.errors import Refusal, nearest
 from mixsim.mixing import RULES
 from mixsim.recipe import library
 from mixsim.recipe.constituents import of_material, of_term
 from mixsim.recipe.faults import Finding
+from mixsim.recipe.grains import is_round, of_inclusion
 from mixsim.recipe.leaves import join
-from mixsim.recipe.raw import one_of, table, tables
+from mixsim.recipe.raw import table, tables
 from mixsim.recipe.schema import NAME_PATTERN
 
 CONCENTRATIONS = ("number_density", "weight_fraction", "mole_fraction")
@@ -31,7 +31,7 @@ def contradictions(raw: Mapping[str, Any]) -> Iterator[Finding]:
     for name, material in tables(raw, "materials"):
         yield from of_material(name, material)
     for name, inclusion in tables(raw, "inclusions"):
-        yield from _inclusion(f"inclusions.{name}", inclusion)
+        yield from of_inclusion(name, inclusion)
     for name, dopant in tables(raw, "dopants"):
         yield from _dopant(f"dopants.{name}", dopant, raw)
     yield from _names(raw)
@@ -49,28 +49,6 @@ def _band(band: Mapping[str, Any]) -> Iterator[Finding]:
         for key in ("from", "to"):
             if key not in band:
                 yield "band", Refusal(f"{key} is missing", "a band gives from and to, or values")
-
-
-def _inclusion(path: str, inclusion: Mapping[str, Any]) -> Iterator[Finding]:
-    name = path.split(".")[-1]
-    if name in ("host", "voids"):
-        yield path, Refusal(f"an inclusion called {name!r}", "answers call a phase so; choose another name")
-    yield from one_of(path, inclusion, tuple(BASES), "the loading")
-    shape = inclusion.get("shape")
-    if isinstance(shape, Mapping):
-        if shape.get("kind") == "spheroid" and "aspect_ratio" not in shape:
-            yield (
-                f"{path}.shape",
-                Refusal("aspect_ratio is missing", "a spheroid needs symmetry axis over cross axis"),
-            )
-        if shape.get("kind") == "sphere" and "aspect_ratio" in shape:
-            yield (
-                f"{path}.shape.aspect_ratio",
-                Refusal("a sphere with an aspect_ratio", "say kind = 'spheroid'"),
-            )
-    round_grain = not isinstance(shape, Mapping) or shape.get("kind") == "sphere"
-    if inclusion.get("orientation") == "aligned" and round_grain:
-        yield f"{path}.orientation", Refusal("aligned spheres", "only spheroids have an orientation")
 
 
 def _dopant(path: str, dopant: Mapping[str, Any], raw: Mapping[str, Any]) -> Iterator[Finding]:
@@ -165,12 +143,11 @@ def _rule(raw: Mapping[str, Any]) -> Iterator[Finding]:
         allowed = "the density of the mixture says how much is missing already"
         yield "voids", Refusal("voids beside a measured density", allowed)
     for inclusion, node in tables(raw, "inclusions"):
-        shape = node.get("shape")
-        if isinstance(shape, Mapping) and shape.get("kind") == "spheroid" and not rule.takes_shapes:
+        if not is_round(node) and not rule.takes_shapes:
             able = ", ".join(n for n, r in RULES.items() if r.takes_shapes)
             yield (
                 f"inclusions.{inclusion}.shape",
-                Refusal(f"spheroids with the rule {name}", f"{able} takes them"),
+                Refusal(f"grains that are not spheres with the rule {name}", f"{able} takes them"),
             )
 
 

@@ -169,6 +169,9 @@ def _plain_words(kind: str, value: Any, context: Mapping[str, Any], message: str
         return Refusal(f"{shown} where a text is needed", "one text in quotes")
     if kind == "list_type":
         return Refusal(f"{shown} where a list is needed", "values between [ and ], even where there is one")
+    if kind in ("too_short", "too_long") and context["actual_length"] and isinstance(value, list):
+        right = context["min_length" if kind == "too_short" else "max_length"]
+        return Refusal(f"a list of {context['actual_length']}", f"it holds {right}")
     if kind == "too_short":
         what = "table" if isinstance(value, Mapping) else "list"
         return Refusal(f"an empty {what}", f"it holds {context['min_length']} or more")

@@ -22,6 +22,7 @@ Susceptibility = Annotated[Leaf, Number("number", minimum=-1.0, exclusive=True)]
 Positive = Annotated[Leaf, Number("number", minimum=0.0, exclusive=True)]
 Plain = Annotated[Leaf, Number("number")]
 NotNegative = Annotated[Leaf, Number("number", minimum=0.0)]
+Order = Annotated[Leaf, Number("number", minimum=-0.5, maximum=1.0)]
 Parts = Annotated[Leaf, Number("number", minimum=0.0)]
 Fraction = Annotated[Leaf, Number("fraction", minimum=0.0, maximum=1.0)]
 Spectral = Annotated[Leaf, Number("spectral", minimum=0.0, exclusive=True)]
@@ -95,8 +96,15 @@ class Host(Section):
 class Shape(Section):
     """Shape of the grains of one inclusion."""
 
-    kind: Literal["sphere", "spheroid"]
+    kind: Literal["sphere", "spheroid", "ellipsoid", "needle", "disc"]
     aspect_ratio: Positive | None = Field(default=None, description="symmetry axis over cross axis")
+    aspect_ratio_spread: NotNegative | None = Field(
+        default=None,
+        description="log-normal: standard deviation of its logarithm, about the median by volume",
+    )
+    axes: Annotated[list[Positive], Field(min_length=3, max_length=3)] | None = Field(
+        default=None, description="of an ellipsoid, in any one measure; only their ratios matter"
+    )
 
 
 class Inclusion(Section):
@@ -108,7 +116,10 @@ class Inclusion(Section):
     weight_fraction: Fraction | None = Field(default=None, description="of the solids")
     phr: Parts | None = Field(default=None, description="parts by weight per hundred parts of host")
     shape: Shape = Shape(kind="sphere")
-    orientation: Literal["random", "aligned"] | None = None
+    orientation: Literal["random", "aligned", "in-plane"] | None = None
+    order_parameter: Order | None = Field(
+        default=None, description="<3 cos²θ − 1>/2 about the third axis, in place of an orientation"
+    )
     diameter: Length | None = Field(
         default=None, description="equivalent-volume diameter; the quasi-static limit is checked against it"
     )

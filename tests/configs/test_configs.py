@@ -91,3 +91,13 @@ def test_porous_silica_matches_crown_glass() -> None:
 
 def test_coolant_has_the_index_of_its_table() -> None:
     assert np.sqrt(at("glycerol-coolant", nm(589.3))[0]).real == pytest.approx(1.3841, abs=5e-4)
+
+
+def test_polarising_glass_darkens_along_the_draw_only() -> None:
+    """The longer an axis, the redder its band; in the red only the field along the draw is absorbed."""
+    grid = np.arange(400.0, 900.0)
+    across, through, along = absorption("polarising-glass", grid)
+    assert 600 < grid[np.argmax(along)] < 660
+    assert grid[np.argmax(through)] < grid[np.argmax(across)] < 450
+    red = int(np.argmax(along))
+    assert along[red] > 300 * across[red] > 300 * through[red]

@@ -2,21 +2,25 @@
 
 from __future__ import annotations
 
+import itertools
+from typing import Any
+
 import numpy as np
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 from scipy.integrate import quad
+from scipy.special import elliprd
 
 from mixsim.errors import Refusal
 from mixsim.mixing.depolarisation import (
     SPHERE,
-    aligned_spheroid,
+    ellipsoid_factors,
     only_spheres,
-    random_spheroid,
     same_length,
     spheroid_factors,
 )
+from mixsim.mixing.orientation import random_spheroid
 
 
 def axis_by_quadrature(m: float) -> float:
@@ -77,21 +81,68 @@ def test_factors_lie_between_zero_and_one_and_order_by_shape(m: float) -> None:
     assert (axis <= 1 / 3 + 1e-15) if m >= 1 else (axis >= 1 / 3 - 1e-15)
 
 
-def test_builders_keep_weights_and_place_the_principal_axes() -> None:
-    cross, axis = spheroid_factors(2.0)
-    assert random_spheroid(2.0) == ((cross, 2 / 3), (axis, 1 / 3))
-    ((factor, weight),) = aligned_spheroid(2.0)
-    assert weight == 1.0
-    np.testing.assert_array_equal(factor, [[cross], [cross], [axis]])
-    ((factor, _),) = aligned_spheroid(np.array([[2.0], [0.5]]))
-    assert factor.shape == (2, 3, 1)
-    np.testing.assert_array_equal(factor[0], [[cross], [cross], [axis]])
-    assert SPHERE == ((1 / 3, 1.0),)
+def by_quadrature(axes: tuple[float, float, float]) -> list[float]:
+    """The defining integral of each axis, with s = exp(t): its parts spread over the decades of the axes."""
+    product = float(np.prod(axes))
+
+    def factor(own: float) -> float:
+        def integrand(t: float) -> float:
+            s = np.exp(t)
+            roots = np.prod([np.sqrt(s + axis * axis) for axis in axes])
+            return 0.5 * product * s / ((s + own * own) * roots)
+
+        edges = [-60.0, *sorted({2 * np.log(axis) for axis in axes}), 60.0]
+        parts = itertools.pairwise(edges)
+        return sum(quad(integrand, *part, epsabs=1e-14, epsrel=1e-12, limit=200)[0] for part in parts)
+
+    return [factor(axis) for axis in axes]
+
+
+@pytest.mark.parametrize(
+    "axes", [(3.0, 2.0, 1.0), (1.0, 1.02, 0.99), (1.0, 30.0, 900.0), (1e-3, 1.0, 1.0), (7.0, 7.0, 1e-4)]
+)
+def test_ellipsoids_are_the_defining_integral_and_a_library_of_elliptic_integrals(axes: Any) -> None:
+    factors = ellipsoid_factors(*axes)
+    assert factors == pytest.approx(by_quadrature(axes), rel=1e-9)
+    squares = [axis * axis for axis in axes]
+    turns = [(squares[1], squares[2], squares[0]), (squares[2], squares[0], squares[1]), tuple(squares)]
+    library = [np.prod(axes) / 3.0 * elliprd(*turn) for turn in turns]
+    assert factors == pytest.approx(library, rel=3e-15)
+
+
+@given(st.floats(-50, 50), st.floats(-50, 50), st.floats(-3, 3))
+def test_ellipsoids_add_up_scale_and_fall_with_the_axis(first: float, second: float, size: float) -> None:
+    axes = np.array([10.0**first, 10.0**second, 1.0])
+    factors = np.array(ellipsoid_factors(*axes))
+    assert factors.sum() == pytest.approx(1.0, rel=1e-13)
+    np.testing.assert_allclose(ellipsoid_factors(*(axes * 10.0**size)), factors, rtol=1e-12)
+    order = np.argsort(axes)
+    assert np.all(np.diff(factors[order]) <= 1e-15)
+
+
+@pytest.mark.parametrize("ratio", [1e-6, 0.05, 0.999, 1.0, 1 + 1e-7, 1.05, 20.0, 1e5])
+def test_ellipsoids_hold_spheroids(ratio: float) -> None:
+    cross, axis = spheroid_factors(ratio)
+    assert ellipsoid_factors(1.0, 1.0, ratio) == pytest.approx((cross, cross, axis), rel=1e-11)
+
+
+def test_ellipsoids_near_the_sphere_and_in_batches() -> None:
+    """To first order N_a = 1/3 − 4/15 (δ_a − mean δ): the next order is some δ²."""
+    strain = np.array([[3e-8], [-1e-9], [2e-9]])
+    factors = np.array(ellipsoid_factors(*(1.0 + strain)))
+    expected = 1 / 3 - 0.4 * (strain - strain.mean())
+    np.testing.assert_allclose(factors, expected, rtol=0, atol=1e-15)
+    assert ellipsoid_factors([1.0, 2.0], 2.0, [[3.0], [4.0], [5.0]])[0].shape == (3, 2)
+    assert np.isnan(ellipsoid_factors(np.nan, 1.0, 2.0)).all()
 
 
 def test_refusals() -> None:
     with pytest.raises(Refusal, match=r"aspect ratio -2\.0"):
         spheroid_factors([1.0, -2.0])
+    with pytest.raises(Refusal, match=r"the axes \(1\.0, 0\.0, 2\.0\)"):
+        ellipsoid_factors(1.0, [3.0, 0.0], 2.0)
+    with pytest.raises(Refusal, match="1e100 apart"):
+        ellipsoid_factors(1.0, 1.0, 1e101)
     with pytest.raises(Refusal, match="2 phases, 1 fractions"):
         same_length([1.0, 2.0], [1.0], None)
     with pytest.raises(Refusal, match="under bruggeman"):

@@ -7,7 +7,7 @@ import numpy as np
 import pytest
 import reference
 
-from mixsim.mixing import spheroid_factors
+from mixsim.mixing import ellipsoid_factors, spheroid_factors
 
 
 def by_quadrature(aspect_ratio: float, *, cross: bool = False) -> float:
@@ -23,13 +23,19 @@ def by_quadrature(aspect_ratio: float, *, cross: bool = False) -> float:
         return float(mpmath.mpf(aspect_ratio) / 2 * mpmath.quad(integrand, edges))
 
 
-@reference.case("depolarisation")
+@reference.case("depolarisation", "prolate", "oblate")
 def test_print_and_quadrature(ref: reference.Row) -> None:
     cross, axis = spheroid_factors(np.array(ref["aspect_ratio"]))
     assert axis == pytest.approx(ref["axis"], abs=ref["tolerance"])
     assert 2 * cross + axis == pytest.approx(1.0, rel=1e-14)
     assert axis == pytest.approx([by_quadrature(m) for m in ref["aspect_ratio"]], rel=1e-12)
     assert cross == pytest.approx([by_quadrature(m, cross=True) for m in ref["aspect_ratio"]], rel=1e-12)
+
+
+@reference.case("depolarisation", "ellipsoids")
+def test_ellipsoids(ref: reference.Row) -> None:
+    for axes, factors in zip(ref["axes"], ref["factors"], strict=True):
+        assert ellipsoid_factors(*axes) == pytest.approx(factors, abs=ref["tolerance"])
 
 
 @pytest.mark.parametrize("away", [1e-12, 1e-8, 1e-4, 1e-3, 1e-2, -1e-8, -1e-3])

@@ -57,7 +57,7 @@ CASES: dict[str, Broken] = {
         SHAPE + '{ kind = "spheroid", aspect = 2.0 }',
         f"{GRAIN}.shape.aspect",
         "unknown key 'aspect'",
-        "kind, aspect_ratio",
+        "kind, aspect_ratio, aspect_ratio_spread, axes",
         "aspect_ratio",
     ),
     "key of a dopant": swap(

@@ -9,6 +9,7 @@ import numpy as np
 
 from mixsim.analysis import Prediction
 from mixsim.present.plots.style import INK, note
+from mixsim.present.principal import principal_axes
 
 if TYPE_CHECKING:
     from matplotlib.axes import Axes
@@ -81,7 +82,10 @@ def _numbers(answer: Prediction, suffix: str) -> dict[str, list[tuple[str, float
     found = {}
     for kind, _ in KINDS:
         values = getattr(answer.limits, kind + suffix).real
-        named = [("", values)] if np.ndim(values) == 0 else [("⊥", values[0]), ("∥", values[2])]
+        named = [("", values)]
+        if np.ndim(values):
+            principal = principal_axes(answer.recipe, answer.permittivity)
+            named = [(item.sign, values[item.index]) for item in principal]
         found[kind] = [(name, float(value)) for name, value in named if np.isfinite(value)]
     return found
 

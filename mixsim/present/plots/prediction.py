@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from typing import TYPE_CHECKING, Any
 
 import numpy as np
@@ -19,6 +19,7 @@ from mixsim.present.plots.style import (
     no_loss,
     spectral_axis,
 )
+from mixsim.present.principal import principal_axes
 from mixsim.units import show
 
 if TYPE_CHECKING:
@@ -62,9 +63,10 @@ def loss(axes: Axes, answer: Prediction, quantity: str = "permittivity") -> Axes
     return axes
 
 
-def _band(axes: Axes, x: Any, values: Any, std: Any) -> None:
+def _band(axes: Axes, x: Any, values: Any, std: Any, places: Sequence[int] | None) -> None:
     """One standard uncertainty on either side of the mixture, from the ± of the recipe."""
-    for number, axis in enumerate((0, 2) if values.ndim == 2 else (...,)):
+    drawn = (...,) if places is None else places
+    for number, axis in enumerate(drawn):
         ends = values[axis] - std[axis], values[axis] + std[axis]
         axes.fill_between(x, *ends, color=STRONG[number], alpha=0.2, lw=0, gid=f"unsure-{number}")
 
@@ -74,7 +76,11 @@ def _curves(axes: Axes, answer: Prediction, quantity: str, part: str, flat: floa
     x, values = answer.axis.shown, getattr(getattr(answer, quantity), part)
     marker = marker_of(len(x))
     whole = answer.recipe.schema.host.material if _pure(answer) else "mixture"
-    spectra = {whole: values} if values.ndim == 1 else {"mixture ⊥": values[0], "mixture ∥": values[2]}
+    spectra, places = {whole: values}, None
+    if values.ndim == 2:
+        principal = principal_axes(answer.recipe, answer.permittivity)
+        spectra = {f"mixture {item.sign}": values[item.index] for item in principal}
+        places = [item.index for item in principal]
     for number, (name, curve) in enumerate(spectra.items()):
         axes.plot(
             x,
@@ -90,7 +96,7 @@ def _curves(axes: Axes, answer: Prediction, quantity: str, part: str, flat: floa
     low, high = float(np.min(values)), float(np.max(values))
     if quantity == "permittivity" and answer.pushed is not None:
         std = getattr(answer.pushed, part)
-        _band(axes, x, values, std)
+        _band(axes, x, values, std, places)
         low, high = float(np.min(values - std)), float(np.max(values + std))
     reach = max(high - low, flat * 0.5 * abs(high + low))
     ends = low - BEYOND * reach, high + BEYOND * reach

@@ -17,7 +17,7 @@ if TYPE_CHECKING:
 
 WIDTH, HEIGHT, RESOLUTION = 6.3, 4.6, 200  # inches, inches, dots an inch
 INK, MUTED = "#1d2733", "#6f7a86"
-STRONG = ("#12436d", "#a8431f")  # dark blue and rust: far apart in lightness as well as in hue
+STRONG = ("#12436d", "#a8431f", "#5c9a6b")  # dark blue, rust, sage: apart in lightness as well as in hue
 DASHED: Any = (0, (5, 2))
 DOTTED: Any = (0, (1.5, 1.5))
 DASHES: tuple[Any, ...] = (DASHED, DOTTED, (0, (7, 2, 1.5, 2)), (0, (3, 1, 1, 1, 1, 1)))
