@@ -9,6 +9,7 @@ if TYPE_CHECKING:
     from mixsim.analysis.auditing import Audit, audit
     from mixsim.analysis.band import Axis, Varied, axis_of, varied
     from mixsim.analysis.caution import Caution
+    from mixsim.analysis.checks import Examined, Finding
     from mixsim.analysis.fitting.answer import Fitted
     from mixsim.analysis.fitting.fitting import fit
     from mixsim.analysis.inversion.answer import Estimate, Inversion, Reading
@@ -24,6 +25,8 @@ _HOMES = {
     "Axis": "band",
     "Caution": "caution",
     "Estimate": "inversion.answer",
+    "Examined": "checks",
+    "Finding": "checks",
     "Fitted": "fitting.answer",
     "Inversion": "inversion.answer",
     "Judgement": "judging.answer",
@@ -49,6 +52,8 @@ __all__ = [
     "Axis",
     "Caution",
     "Estimate",
+    "Examined",
+    "Finding",
     "Fitted",
     "Inversion",
     "Judgement",

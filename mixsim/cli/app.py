@@ -40,7 +40,7 @@ _COMMANDS: dict[str, tuple[Callable[..., int], str]] = {
         "judge recipe.toml sample.csv --free inclusions.oxide.volume_fraction 0% 40% --set "
         "\"acceptance={of='inclusions.oxide.volume_fraction', lower='3 %', upper='5 %'}\"",
     ),
-    "audit": (questions.audit, "audit recipe.toml"),
+    "audit": (questions.audit, "audit gold --out gold.png"),
     "list": (reference.list_, "list rules"),
     "show": (reference.show, "show bruggeman"),
     "schema": (reference.schema, "schema --out recipe.schema.json"),

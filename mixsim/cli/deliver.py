@@ -41,6 +41,12 @@ def deliver(answer: Any, table: str, *, json: bool, out: Sequence[str] | None, s
     """Write the files, then print; or, under `strict`, refuse an answer with cautions."""
     if strict and answer.warnings:
         raise BadInput([_as_fault(caution, answer.recipe.file) for caution in answer.warnings])
+    written(answer, out)
+    printed(answer, table, json=json)
+
+
+def written(answer: Any, out: Sequence[str] | None) -> None:
+    """Write the files."""
     if out:
         from mixsim.present.files import PLOTS, write
 
@@ -48,7 +54,6 @@ def deliver(answer: Any, table: str, *, json: bool, out: Sequence[str] | None, s
         for name in sorted(dict.fromkeys(out), key=lambda name: not name.lower().endswith(PLOTS)):
             write(answer, name)
             print(f"mixsim: wrote {name}", file=sys.stderr)
-    printed(answer, table, json=json)
 
 
 def printed(answer: Any, table: str, *, json: bool) -> None:

@@ -28,6 +28,12 @@ Out = Annotated[
         help="Write the answer to a file: .csv .json .npz .png .svg .pdf; may be repeated.",
     ),
 ]
+AuditOut = Annotated[
+    list[str] | None,
+    typer.Option(
+        "--out", metavar="FILE", help="Write it to a file: .csv .json .png .svg .pdf; may be repeated."
+    ),
+]
 Strict = Annotated[bool, typer.Option("--strict", help="Take cautions as errors.")]
 
 

@@ -6,8 +6,19 @@ from typing import Annotated
 
 import typer
 
-from mixsim.cli.deliver import MOST_DIGITS, check, deliver, printed, whole
-from mixsim.cli.options import Json, Out, RecipeFile, RuleName, Set, Strict, changed_by, recipe_from, words
+from mixsim.cli.deliver import MOST_DIGITS, check, deliver, printed, whole, written
+from mixsim.cli.options import (
+    AuditOut,
+    Json,
+    Out,
+    RecipeFile,
+    RuleName,
+    Set,
+    Strict,
+    changed_by,
+    recipe_from,
+    words,
+)
 from mixsim.cli.status import ANSWERED, NO, UNDECIDED
 from mixsim.errors import BadInput, Fault, Refusal
 from mixsim.recipe import COMMAND_LINE
@@ -111,19 +122,32 @@ def invert(
 
 
 def audit(
-    recipe: RecipeFile,
+    subject: Annotated[
+        str,
+        typer.Argument(
+            metavar="RECIPE|TABLE|MATERIAL",
+            help="A recipe (.toml), a measured table (.csv), or a material of the library.",
+        ),
+    ],
     settings: Set = None,
     rule: RuleName = None,
     json: Json = False,
+    out: AuditOut = None,
     strict: Strict = False,
 ) -> int:
-    """Everything that is wrong with a recipe, nothing computed.
+    """What is wrong with a recipe, a table or a material.
 
-    Exit status 1: it cannot be used.
+    Faults of a recipe; whether spectra are passive and causal, and more.
+
+    Exit status 1: it cannot be used, or something failed.
     """
     from mixsim.analysis import audit as ask
 
-    answer = ask(recipe, changed_by(settings, rule))
+    check(out)
+    answer = ask(subject, changed_by(settings, rule))
+    # a recipe with faults has no picture, and they must be read all the same
+    files = [name for name in out or () if not answer.faults or name.lower().endswith((".csv", ".json"))]
+    written(answer, files)
     printed(answer, "audit", json=json)
     return ANSWERED if answer.passed and not (strict and answer.warnings) else NO
 

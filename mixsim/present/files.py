@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from pathlib import Path
 
-from mixsim.analysis import Fitted, Inversion, Judgement, Lot, Prediction
+from mixsim.analysis import Audit, Fitted, Inversion, Judgement, Lot, Prediction
 from mixsim.errors import Refusal
 from mixsim.present.atomic import check_place, refuse, write_whole
 from mixsim.present.json_text import json_text
@@ -24,13 +24,13 @@ def check(file: str | Path) -> None:
     check_place(Path(file), SUFFIXES)
 
 
-def write(answer: Prediction | Inversion | Fitted | Judgement | Lot, file: str | Path) -> None:
+def write(answer: Prediction | Inversion | Fitted | Judgement | Lot | Audit, file: str | Path) -> None:
     """Write an answer to a file in the format that its suffix says.
 
     Parameters
     ----------
     answer
-        A prediction, a sweep, an inversion, a fit or verdicts.
+        A prediction, a sweep, an inversion, a fit, verdicts or an audit.
     file
         .csv .json .npz for numbers; .png .svg .pdf for the plot. An existing file is replaced whole.
 
@@ -47,15 +47,23 @@ def write(answer: Prediction | Inversion | Fitted | Judgement | Lot, file: str |
         raise refuse(place, refusal.found, refusal.allowed) from None
 
 
-def _write(answer: Prediction | Inversion | Fitted | Judgement | Lot, file: Path) -> None:
+def _write(answer: Prediction | Inversion | Fitted | Judgement | Lot | Audit, file: Path) -> None:
     suffix = file.suffix.lower()
-    if suffix == ".json":
+    if isinstance(answer, Audit) and suffix in (".csv", ".npz"):
+        if suffix == ".npz":
+            raise Refusal("an audit in .npz", f"one of .csv .json {' '.join(PLOTS)}")
+        from mixsim.present.audits import write_csv as write_findings
+
+        write_findings(answer, file)
+    elif suffix == ".json":
         file.write_text(json_text(answer), encoding="utf-8")
     elif suffix == ".csv":
+        assert not isinstance(answer, Audit)
         from mixsim.present.comma_separated import write_csv
 
         write_csv(answer, file)
     elif suffix == ".npz":
+        assert not isinstance(answer, Audit)
         from mixsim.present.archive import write_npz
 
         write_npz(answer, file)
@@ -63,7 +71,7 @@ def _write(answer: Prediction | Inversion | Fitted | Judgement | Lot, file: Path
         _plot(answer, file, suffix)
 
 
-def _plot(answer: Prediction | Inversion | Fitted | Judgement | Lot, file: Path, suffix: str) -> None:
+def _plot(answer: Prediction | Inversion | Fitted | Judgement | Lot | Audit, file: Path, suffix: str) -> None:
     from mixsim.present.plots import figure
     from mixsim.present.plots.style import RESOLUTION, settings
 

@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
+from mixsim.present.audits import findings, headline
 from mixsim.present.columns import owned, paragraph, table, width
 from mixsim.present.phrases import NONE, cautions, chosen, number, rounded
 from mixsim.present.principal import principal_axes
@@ -100,14 +101,11 @@ def inversion(answer: Inversion) -> str:
 
 
 def audit(answer: Audit) -> str:
-    """An audit: every fault, then every caution."""
+    """An audit: every fault, or every finding; then every caution."""
     count = len(answer.faults)
-    if answer.passed:
-        head = f"{answer.file}: sound, {answer.numbers} numbers, library materials included"
-    else:
-        head = f"{answer.file}: {count} fault{'s' if count > 1 else ''}"
+    head = f"{answer.file}: {count} fault{'s' if count > 1 else ''}" if count else headline(answer)
     faults = [paragraph(str(fault), indent="  ") for fault in answer.faults]
-    return "\n\n".join(["\n".join([head, *faults]), *cautions(answer.warnings)])
+    return "\n\n".join(["\n".join([head, *faults]), *findings(answer), *cautions(answer.warnings)])
 
 
 def _head(answer: Prediction) -> str:

@@ -52,7 +52,7 @@ def path_or_nearest(path: str, paths: Collection[str]) -> str | None:
 
 def of_mixture(path: str) -> bool:
     """Whether the mixture depends on the number at a path, so that it can be varied or found."""
-    return not path.startswith(_ASIDE) and not re.match(r"materials\.[^.]+\.valid\.", path)
+    return not path.startswith(_ASIDE) and not re.match(r"materials\.[^.]+\.(valid\.|saturation$)", path)
 
 
 def _in_order(start: Leaf, end: Leaf, path: str) -> Iterator[Finding]:

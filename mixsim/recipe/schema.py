@@ -191,6 +191,10 @@ class Material(Section):
     molar_mass: MolarMass | None = None
     permittivity: Response | None = None
     permeability: Response | None = None
+    saturation: Spectral | None = Field(
+        default=None,
+        description="γ µ₀ M_s of a magnetic material, 28 GHz for each tesla; for audit",
+    )
     index: Index | None = None
     table: str | None = None
     static: Positive | None = Field(

@@ -104,7 +104,7 @@ def test_sweep_is_judged_at_its_worst() -> None:
     assert np.all(np.isfinite(swept.permittivity))
 
 
-def test_audit_computes_nothing_and_asks_about_units(tmp_path: object) -> None:
+def test_audit_asks_about_units_and_lists_faults(tmp_path: object) -> None:
     file = tmp_path / "dye.toml"  # type: ignore[operator]
     file.write_text(DYE.format(resonance="590 cm^-1"))
     report = mixsim.audit(file)

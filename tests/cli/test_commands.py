@@ -290,3 +290,23 @@ def test_a_material_is_drawn_over_its_band(run: Run) -> None:
     lines = [line for line in Path("gold.csv").read_text().splitlines() if not line.startswith("#")]
     assert len(lines) == 402
     assert float(lines[1].split(",")[0]) == pytest.approx(0.248)
+
+
+def test_audit_of_a_table_and_of_a_material(run: Run) -> None:
+    done = run("audit", "gold", "--out", "gold.csv", "--out", "gold.json", "--out", "gold.png")
+    assert done.exit_code == 0 and done.stdout.startswith("gold: material, ")
+    assert "of,finding,verdict,why" in Path("gold.csv").read_text(encoding="utf-8")
+    assert json.loads(Path("gold.json").read_text(encoding="utf-8"))["passed"] is True
+    assert Path("gold.png").stat().st_size > 10_000
+    rows = "".join(f"{f},4,{-0.5 * f / 10}\n" for f in range(1, 21))
+    head = "# convention: exp(-iwt)\nfrequency [GHz], permittivity_real, permittivity_imag\n"
+    Path("gain.csv").write_text(head + rows, encoding="utf-8")
+    gain = run("audit", "gain.csv")
+    assert gain.exit_code == 1 and "negative first at 1 GHz" in re.sub(r"\s+", " ", gain.stdout)
+    assert answer(run, "audit", "gain.csv")["passed"] is False
+    assert run("audit", "goold").exit_code == 2
+    broken = run("audit", "recipe.toml", "--set", "mixing.rule=bruggman", "--out", "x.png", "--out", "x.json")
+    assert broken.exit_code == 1 and "bruggeman" in broken.stdout
+    assert Path("x.json").exists() and not Path("x.png").exists()
+    refused = run("audit", "gold", "--out", "gold.npz")
+    assert refused.exit_code == 2 and not Path("gold.npz").exists()

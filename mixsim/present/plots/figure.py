@@ -4,19 +4,19 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from mixsim.analysis import Fitted, Inversion, Judgement, Lot, Prediction
+from mixsim.analysis import Audit, Fitted, Inversion, Judgement, Lot, Prediction
 
 if TYPE_CHECKING:
     from matplotlib.figure import Figure
 
 
-def figure(answer: Prediction | Inversion | Fitted | Judgement | Lot) -> Figure:
+def figure(answer: Prediction | Inversion | Fitted | Judgement | Lot | Audit) -> Figure:
     """Figure of an answer.
 
     Parameters
     ----------
     answer
-        A prediction, a sweep, an inversion, a fit or verdicts.
+        A prediction, a sweep, an inversion, a fit, verdicts or an audit.
 
     Returns
     -------
@@ -26,17 +26,19 @@ def figure(answer: Prediction | Inversion | Fitted | Judgement | Lot) -> Figure:
     Raises
     ------
     Refusal
-        Where a sweep has more than two varied numbers, or principal axes.
+        Where a sweep has more than two varied numbers, or principal axes; or an audit looked at no spectrum.
     """
     from matplotlib.figure import Figure
     from matplotlib.layout_engine import ConstrainedLayoutEngine
 
-    from mixsim.present.plots import fit, inversion, prediction, sweep, verdict
+    from mixsim.present.plots import audit, fit, inversion, prediction, sweep, verdict
     from mixsim.present.plots.style import HEIGHT, WIDTH, settings
 
     with settings():
         drawn = Figure(figsize=(WIDTH, HEIGHT), layout=ConstrainedLayoutEngine(w_pad=0.07, wspace=0.03))
-        if isinstance(answer, Inversion):
+        if isinstance(answer, Audit):
+            audit.draw(drawn, answer)
+        elif isinstance(answer, Inversion):
             inversion.draw(drawn, answer)
         elif isinstance(answer, Fitted):
             fit.draw(drawn, answer)
