@@ -100,7 +100,7 @@ def residual(axes: Axes, examined: Examined) -> Axes:
         color=MUTED,
         alpha=0.25,
         lw=0,
-        label=f"allowed: noise, coarse rows, {TOLERANCE:.0%}",
+        label=f"allowed: noise, coarse rows, {100.0 * TOLERANCE:.0f} %",
     )
     axes.plot(x, 100.0 * found.residual.real / size, color=STRONG[0], lw=1.2)
     axes.axhline(0.0, color=MUTED, lw=0.7)
