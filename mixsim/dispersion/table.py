@@ -36,6 +36,8 @@ class Table:
         Time dependence as the file states it, `exp(-iwt)` or `exp(+iwt)`.
     source
         Name of the file, or "text".
+    permeability
+        Complex relative permeability [-], or None where the table holds none.
     """
 
     omega: NDArray[np.float64]
@@ -44,6 +46,7 @@ class Table:
     columns: tuple[str, ...]
     convention: str
     source: str
+    permeability: NDArray[np.complex128] | None = None
 
     @property
     def range_written(self) -> str:
@@ -84,22 +87,31 @@ def read_table(text_or_path: str | Path) -> Table:
     unit, columns, values = held.unit, held.columns, held.values
     with np.errstate(over="ignore", divide="ignore", invalid="ignore"):
         omega = spectral_from(values[:, 0], unit)
-        permittivity = _permittivity(omega, _in_si(held), held.sign)
-    for (number, cells), w, value in zip(held.rows, omega.tolist(), permittivity.tolist(), strict=True):
+        columns_in_si = _in_si(held)
+        permeability = _permeability(columns_in_si, held.sign)
+        permittivity = _permittivity(omega, columns_in_si, held.sign, permeability)
+    whole = permittivity if permeability is None else permittivity + permeability
+    for (number, cells), w, value in zip(held.rows, omega.tolist(), whole.tolist(), strict=True):
         if not (0 < w < np.inf and np.isfinite(value)):
             raise Refusal(f"line {number}: {', '.join(cells)}", "too large or too small to be a permittivity")
     check_order(omega, held.rows)
-    if omega[0] > omega[-1]:
-        omega, permittivity = omega[::-1].copy(), permittivity[::-1].copy()
-    omega.setflags(write=False)
-    permittivity.setflags(write=False)
+    rising = slice(None, None, 1 if omega[0] < omega[-1] else -1)
+    omega, permittivity = _frozen(omega[rising]), _frozen(permittivity[rising])
+    permeability = None if permeability is None else _frozen(permeability[rising])
     convention = "exp(-iwt)" if held.sign > 0 else "exp(+iwt)"
     source = text_or_path.name if isinstance(text_or_path, Path) else "text"
-    return Table(omega, permittivity, unit, columns, convention, source)
+    return Table(omega, permittivity, unit, columns, convention, source, permeability)
 
 
-def interpolate(omega: ArrayLike, *, table: Table) -> NDArray[Any]:
-    """Permittivity of a measured spectrum, monotone between its points.
+def _frozen(values: NDArray[Any]) -> NDArray[Any]:
+    """An array of its own that nobody can change."""
+    own = values.copy()
+    own.setflags(write=False)
+    return own
+
+
+def interpolate(omega: ArrayLike, *, table: Table, magnetic: bool = False) -> NDArray[Any]:
+    """Permittivity (or permeability) of a measured spectrum, monotone between its points.
 
     Parameters
     ----------
@@ -107,11 +119,13 @@ def interpolate(omega: ArrayLike, *, table: Table) -> NDArray[Any]:
         Angular frequency [rad/s].
     table
         The spectrum, as `read_table` gives it.
+    magnetic
+        Whether its permeability is meant, which is 1 where it holds none.
 
     Returns
     -------
-    permittivity
-        Complex relative permittivity [-].
+    value
+        Complex relative permittivity or permeability [-].
 
     Raises
     ------
@@ -145,7 +159,10 @@ def interpolate(omega: ArrayLike, *, table: Table) -> NDArray[Any]:
         asked = show(float(outside[0]), "spectral", table.unit)
         raise Refusal(f"{asked} lies outside the table {table.source}", f"it covers {table.range_written}")
     inside = np.clip(w, low, high)
-    rows = np.stack([table.permittivity.real, table.permittivity.imag], axis=-1)
+    column = table.permittivity
+    if magnetic:
+        column = np.ones_like(column) if table.permeability is None else table.permeability
+    rows = np.stack([column.real, column.imag], axis=-1)
     with np.errstate(over="ignore"):  # a step so small that its slope is as good as zero
         value = PchipInterpolator(table.omega, rows)(inside)
     left = np.clip(np.searchsorted(table.omega, inside, side="right") - 1, 0, len(rows) - 2)
@@ -223,12 +240,26 @@ def _in_si(held: Content) -> dict[str, NDArray[np.float64]]:
     return found
 
 
+def _permeability(columns: dict[str, NDArray[np.float64]], sign: int) -> NDArray[np.complex128] | None:
+    if "permeability_real" not in columns:
+        return None
+    real = columns["permeability_real"]
+    if "magnetic_loss_tangent" in columns:
+        return _complex(real, real * columns["magnetic_loss_tangent"])
+    return _complex(real, sign * columns["permeability_imag"])
+
+
 def _permittivity(
-    omega: NDArray[np.float64], columns: dict[str, NDArray[np.float64]], sign: int
+    omega: NDArray[np.float64],
+    columns: dict[str, NDArray[np.float64]],
+    sign: int,
+    permeability: NDArray[np.complex128] | None,
 ) -> NDArray[np.complex128]:
+    """From whichever columns there are; n + ik beside a permeability is √ε·√μ."""
     if "n" in columns:
         n, k = columns["n"], sign * columns.get("k", np.zeros_like(columns["n"]))
-        return _complex(n * n - k * k, 2.0 * n * k)
+        square = _complex(n * n - k * k, 2.0 * n * k)
+        return square if permeability is None else square / permeability
     real = columns["permittivity_real"]
     if "loss_tangent" in columns:
         return _complex(real, real * columns["loss_tangent"])

@@ -10,12 +10,15 @@ The layout, separated by commas, semicolons or tabs::
 The first column is the axis (`wavelength`, `frequency`, `photon_energy`, `wavenumber` or
 `angular_frequency`) with its unit in brackets, rising or falling throughout. The others are `n` and
 perhaps `k`, or `permittivity_real` with `permittivity_imag`, `loss_tangent` or `conductivity [S/m]`, which
-stands for the whole loss. Decimals take a point; between semicolons or tabs a comma will do, throughout.
+stands for the whole loss; beside them perhaps `permeability_real` with `permeability_imag` or
+`magnetic_loss_tangent`. Where both parts of the permittivity stand, columns that follow from them (`n`, `k`,
+`loss_tangent`, …) are skipped, so that a written prediction is a table too. Decimals take a point; between
+semicolons or tabs a comma will do, throughout.
 
 Beside a column may stand its standard uncertainty, as `u(n)`, in the same unit.
 
-The convention line is never guessed. Under exp(+iwt) `k` and `permittivity_imag` of a lossy medium
-stand in the file as negative numbers, and their sign is turned on reading; `loss_tangent` and
+The convention line is never guessed. Under exp(+iwt) `k`, `permittivity_imag` and `permeability_imag` of a
+lossy medium stand in the file as negative numbers, and their sign is turned on reading; loss tangents and
 `conductivity` are positive for a lossy medium under either convention and are never turned.
 """
 
@@ -47,8 +50,14 @@ COLUMN_SETS = (
     ("permittivity_real", "loss_tangent"),
     ("permittivity_real", "conductivity"),
 )
+MAGNETIC_SETS = (
+    ("permeability_real", "permeability_imag"),
+    ("permeability_real", "magnetic_loss_tangent"),
+)
 DIMENSIONS = {"conductivity": "conductivity"}  # of the columns that have one
-_COLUMNS = tuple(dict.fromkeys(name for names in COLUMN_SETS for name in names))
+_WHOLE = COLUMN_SETS[2]  # what the derived ones follow from
+_DERIVED = ("n", "k", "loss_tangent", "magnetic_loss_tangent", "absorption", "conductivity")
+_COLUMNS = tuple(dict.fromkeys(name for names in (*COLUMN_SETS, *MAGNETIC_SETS) for name in names))
 _UNITS = {kind: [u for u in accepted_units("spectral") if kind_of_axis(u) == kind] for kind in AXES.values()}
 _HEADING = r"(?P<name>[^\[\]]*?)\s*(?:\[\s*(?P<unit>[^\]]*?)\s*\])?"
 _NUMBER = r"[+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?"
@@ -97,6 +106,8 @@ def parse(text_or_path: str | Path) -> Content:
         raise Refusal("line 1: it is empty", "a table has a convention line, a header and at least two rows")
     header, *rows = _cells([(number, line) for number, line in lines if _holds_data(line)])
     sign = _sign(lines, header)
+    rows = _without_derived(header, rows)
+    header = (header[0], _kept(header[1], header[1]))
     unit, columns, units = _header(*header)
     if len(rows) < 2:
         number = rows[0][0] if rows else header[0]
@@ -173,6 +184,26 @@ def _with_points(rows: Sequence[Row]) -> list[Row]:
     return turned
 
 
+def _without_derived(header: Row, rows: Sequence[Row]) -> list[Row]:
+    """Rows without the columns that follow from both parts of the permittivity; their cells are counted."""
+    count = len(header[1])
+    for number, cells in rows:
+        if len(cells) != count:
+            found = f"line {number}: {len(cells)} cells ({', '.join(cells)}) below a header of {count}"
+            raise Refusal(found, f"one cell a column; {_POINT}")
+    return [(number, _kept(header[1], cells)) for number, cells in rows]
+
+
+def _kept(headings: Sequence[str], cells: Sequence[str]) -> list[str]:
+    """Cells of the columns that are read."""
+    names = [name.partition("[")[0].strip() for name in headings]
+    if not set(_WHOLE) <= set(names):
+        return list(cells)
+    magnetic = "permeability_real" in names and "permeability_imag" not in names
+    skipped = {name for name in _DERIVED if not (magnetic and name == "magnetic_loss_tangent")}
+    return [cell for name, cell in zip(names, cells, strict=True) if name not in skipped]
+
+
 def _header(number: int, cells: Sequence[str]) -> tuple[str, tuple[str, ...], tuple[str, ...]]:
     """Unit of the axis, and names and units of the other columns."""
     if all(re.fullmatch(_NUMBER, cell) for cell in cells):
@@ -197,8 +228,12 @@ def _header(number: int, cells: Sequence[str]) -> tuple[str, tuple[str, ...], tu
             raise Refusal(f"line {number}: column {heading!r} stands twice", "each column stands once")
         _column_unit(number, name, given)
     held = [name for name in names[1:] if doubted(name) is None]
-    if not any(set(held) == set(columns) for columns in COLUMN_SETS):
+    magnetic = {name for names in MAGNETIC_SETS for name in names}
+    electric = set(held) - magnetic
+    known = not set(held) & magnetic or any(set(held) & magnetic == set(names) for names in MAGNETIC_SETS)
+    if not known or not any(electric == set(columns) for columns in COLUMN_SETS):
         sets = "; or ".join(" and ".join(columns) for columns in COLUMN_SETS)
+        sets += "; beside them perhaps " + " or ".join(" and ".join(names) for names in MAGNETIC_SETS)
         shown = ", ".join(held) or "nothing"
         raise Refusal(f"line {number}: {shown} beside the axis", f"a table holds {sets}")
     return unit, names[1:], units[1:]
@@ -253,11 +288,6 @@ def _axis_unit(number: int, name: str, unit: str) -> str:
 
 
 def _numbers(number: int, cells: Sequence[str], headings: Sequence[str]) -> list[float]:
-    if len(cells) != len(headings):
-        raise Refusal(
-            f"line {number}: {len(cells)} cells ({', '.join(cells)}) below a header of {len(headings)}",
-            f"one cell a column; {_POINT}",
-        )
     for cell in cells:
         if re.fullmatch(_NUMBER, cell):
             continue

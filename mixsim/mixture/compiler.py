@@ -127,9 +127,9 @@ class _Compiler:
         return Index(model, inputs, None if permeability is VACUUM else permeability, *stated)
 
     def _permeability(self, name: str) -> Spectrum:
-        permeability = self.schema.materials[name].permeability
+        permeability, table = self.schema.materials[name].permeability, self.recipe.tables.get(name)
         if permeability is None:
-            return VACUUM
+            return VACUUM if table is None or table.permeability is None else Measured(table, magnetic=True)
         return self._response(permeability, f"materials.{name}.permeability")
 
     def _response(self, response: Any, path: str) -> Spectrum:

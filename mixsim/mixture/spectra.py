@@ -183,15 +183,16 @@ class Measured:
     """A measured table: interpolated inside its range, refused outside, without limits unless stated."""
 
     table: Table
-    static: Input | None
-    high_frequency: Input | None
+    static: Input | None = None
+    high_frequency: Input | None = None
+    magnetic: bool = False
 
     @cached_property
     def paths(self) -> frozenset[str]:
         return paths_of(given for given in (self.static, self.high_frequency) if given)
 
     def at(self, x: Values, omega: Any) -> Any:
-        return interpolate(omega, table=self.table)
+        return interpolate(omega, table=self.table, magnetic=self.magnetic)
 
     def low(self, x: Values) -> tuple[Any, Any]:
         return 0.0, UNKNOWN if self.static is None else self.static(x)

@@ -132,6 +132,9 @@ def tables(raw: Mapping[str, Any], folder: Path) -> tuple[dict[str, Table], list
         path = f"materials.{name}.table"
         try:
             read[name] = read_table(folder / file)
+            if read[name].permeability is not None and "permeability" in material:
+                found = f"permeability beside {file}, which holds one"
+                findings.append((f"materials.{name}.permeability", Refusal(found, "give one of them")))
         except FileNotFoundError:
             findings.append((path, Refusal(f"no such file {file!r}", "paths are relative to the recipe")))
         except Refusal as refusal:

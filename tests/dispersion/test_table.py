@@ -303,3 +303,65 @@ def test_outside_the_table_is_refused_in_its_own_unit(omega: object, asked: str)
     with pytest.raises(Refusal, match="it covers 400 nm to 700 nm") as caught:
         interpolate(omega, table=SPECTRUM)  # type: ignore[arg-type]
     assert caught.value.found == f"{asked} lies outside the table text"
+
+
+@pytest.mark.parametrize(
+    ("sign", "text"),
+    [
+        (
+            MINUS,
+            "permittivity_real, permittivity_imag, permeability_real, "
+            "permeability_imag\n1,4,1,2,0.5\n2,5,0,1,0\n",
+        ),
+        (
+            PLUS,
+            "permeability_imag, permittivity_real, permittivity_imag, "
+            "permeability_real\n1,-0.5,4,-1,2\n2,0,5,0,1\n",
+        ),
+        (
+            MINUS,
+            "permittivity_real, loss_tangent, permeability_real, "
+            "magnetic_loss_tangent\n1,4,0.25,2,0.25\n2,5,0,1,0\n",
+        ),
+    ],
+)
+def test_permeability_beside_permittivity(sign: str, text: str) -> None:
+    table = read_table(f"{sign}frequency [GHz], {text}")
+    assert table.permittivity.tolist() == [4 + 1j, 5]
+    assert table.permeability is not None and table.permeability.tolist() == [2 + 0.5j, 1]
+    assert not table.permeability.flags.writeable
+    middle = interpolate(1.5 * table.omega[0], table=table, magnetic=True)
+    assert 1.0 < middle.real < 2.0 and 0.0 < middle.imag < 0.5
+
+
+def test_an_index_beside_a_permeability_is_of_both() -> None:
+    """n² = εμ."""
+    table = read_table(MINUS + "frequency [GHz], n, k, permeability_real, permeability_imag\n"
+                       "1, 3, 0.5, 2, 0.5\n2, 3, 0, 1.5, 0\n")  # fmt: skip
+    assert table.permittivity[0] == pytest.approx((3 + 0.5j) ** 2 / (2 + 0.5j))
+    assert table.permittivity[1] == pytest.approx(6.0)
+
+
+def test_columns_that_follow_from_others_are_skipped() -> None:
+    """Whatever they hold, an empty cell too; their cells are counted nevertheless."""
+    head = "frequency [GHz], permittivity_real, permittivity_imag, n, absorption [1/m], loss_tangent\n"
+    table = read_table(MINUS + head + "1, 4, 1, -7, , 0.25\n2, 5, 0, 2, x, 0\n")
+    assert table.permittivity.tolist() == [4 + 1j, 5]
+    assert table.columns == ("permittivity_real", "permittivity_imag")
+    with pytest.raises(Refusal, match="line 4: 5 cells"):
+        read_table(MINUS + head + "1, 4, 1, 2, 1, 0\n2, 5, 0, 2, 0\n")
+    with pytest.raises(Refusal, match="permittivity_real, n beside the axis"):
+        read_table(MINUS + "frequency [GHz], permittivity_real, n\n1, 4, 2\n2, 4, 2\n")
+
+
+@pytest.mark.parametrize(
+    ("text", "found"),
+    [
+        ("n, k, permeability_real\n1,2,0,1\n2,2,0,1\n", "n, k, permeability_real beside the axis"),
+        ("n, u(k)\n1,2,1\n2,2,1\n", "'u\\(k\\)' without 'k'"),
+        ("n, u(n)\n1,2,0\n2,2,1\n", "'0' for u\\(n\\); an uncertainty is above zero"),
+    ],
+)
+def test_columns_that_lack_their_partner(text: str, found: str) -> None:
+    with pytest.raises(Refusal, match=found):
+        read_table(f"{MINUS}frequency [GHz], {text}")
