@@ -5,12 +5,14 @@ from __future__ import annotations
 from collections.abc import Iterator, Mapping, Sequence
 
 import numpy as np
+from numpy.typing import NDArray
 
 from mixsim.analysis.band import Axis, Varied
 from mixsim.analysis.caution import Caution
 from mixsim.analysis.rules import applicable_rules, conducts
 from mixsim.analysis.suspicion import suspicions
 from mixsim.mixture import HOST, VOIDS, Composition, Limits, Mixture, Response
+from mixsim.mixture.spectra import Measured
 from mixsim.observables import complex_index
 from mixsim.recipe import Recipe
 from mixsim.units import SPEED_OF_LIGHT, show, written_unit
@@ -39,6 +41,7 @@ def cautions(
     found = [
         *suspicions(recipe),
         *_ranges(recipe, mixture, axis),
+        *extended(mixture, axis.omega),
         *_sizes(recipe, axis, constituents, largest),
         *_not_finite(axis, response),
         *_not_causal(recipe, mixture, axis),
@@ -65,6 +68,24 @@ def _ranges(recipe: Recipe, mixture: Mixture, axis: Axis) -> Iterator[Caution]:
                 f"{name} is described from {valid.from_.written} to {valid.to.written}; the band "
                 f"{_span(axis)} leaves that",
             )
+
+
+def extended(mixture: Mixture, omega: NDArray[np.float64]) -> Iterator[Caution]:
+    """Tables that are asked for beyond their ends, and how well they obey causality themselves."""
+    for phase in mixture.phases:
+        spectrum = phase.permittivity
+        continued = spectrum.extension if isinstance(spectrum, Measured) else None
+        if continued is None or not continued.beyond(omega):
+            continue
+        covered = continued.table.range_written
+        share = continued.completion.misfit
+        yield Caution(
+            "extended",
+            f"materials.{phase.material}",
+            f"{phase.material} was measured from {covered}; beyond, a causal and passive continuation stands "
+            f"in its place: near the ends it is tied to the data (which obey Kramers–Kronig to {share:.1g}), "
+            f"far from them it is only one of many that are possible",
+        )
 
 
 def _span(axis: Axis) -> str:

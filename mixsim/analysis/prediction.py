@@ -235,7 +235,8 @@ def _reach(recipe: Recipe, mixture: Mixture, axis: Axis) -> None:
     """Refuse a band that a measured table does not cover: it is never extrapolated."""
     faults = []
     for name in dict.fromkeys(phase.material for phase in mixture.phases):
-        if (table := recipe.tables.get(name)) is not None:
+        continued = recipe.schema.materials[name].extension is not None if name in recipe.tables else False
+        if (table := recipe.tables.get(name)) is not None and not continued:
             try:
                 interpolate(axis.omega, table=table)
             except Refusal as refusal:

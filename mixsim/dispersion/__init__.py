@@ -8,7 +8,7 @@ from mixsim.dispersion.descriptions import width_from_wavelength
 from mixsim.dispersion.index import INDEX_MODELS, IndexModel
 from mixsim.dispersion.kramers_kronig import kramers_kronig
 from mixsim.dispersion.registry import Parameter, Route, Term
-from mixsim.dispersion.table import Table, interpolate, read_table
+from mixsim.dispersion.table import Table, interpolate, interpolate_permeability, read_table
 from mixsim.dispersion.terms import TERMS
 
 __all__ = [
@@ -23,6 +23,7 @@ __all__ = [
     "complete",
     "infinity_from_pair",
     "interpolate",
+    "interpolate_permeability",
     "kramers_kronig",
     "read_table",
     "step_from_pair",

@@ -110,8 +110,8 @@ def _frozen(values: NDArray[Any]) -> NDArray[Any]:
     return own
 
 
-def interpolate(omega: ArrayLike, *, table: Table, magnetic: bool = False) -> NDArray[Any]:
-    """Permittivity (or permeability) of a measured spectrum, monotone between its points.
+def interpolate(omega: ArrayLike, *, table: Table) -> NDArray[Any]:
+    """Permittivity of a measured spectrum, monotone between its points.
 
     Parameters
     ----------
@@ -119,13 +119,11 @@ def interpolate(omega: ArrayLike, *, table: Table, magnetic: bool = False) -> ND
         Angular frequency [rad/s].
     table
         The spectrum, as `read_table` gives it.
-    magnetic
-        Whether its permeability is meant, which is 1 where it holds none.
 
     Returns
     -------
-    value
-        Complex relative permittivity or permeability [-].
+    permittivity
+        Complex relative permittivity [-].
 
     Raises
     ------
@@ -150,6 +148,30 @@ def interpolate(omega: ArrayLike, *, table: Table, magnetic: bool = False) -> ND
     >>> print(f"{interpolate(1.5 * 2e9 * 3.141592653589793, table=table):.3f}")
     3.125+0.000j
     """
+    return _between(omega, table, table.permittivity)
+
+
+def interpolate_permeability(omega: ArrayLike, *, table: Table) -> NDArray[Any]:
+    """Permeability of a measured spectrum, as `interpolate`; 1 where it holds none.
+
+    Parameters
+    ----------
+    omega
+        Angular frequency [rad/s].
+    table
+        The spectrum, as `read_table` gives it.
+
+    Returns
+    -------
+    permeability
+        Complex relative permeability [-].
+    """
+    none = np.ones_like(table.permittivity)
+    return _between(omega, table, none if table.permeability is None else table.permeability)
+
+
+def _between(omega: ArrayLike, table: Table, column: NDArray[np.complex128]) -> NDArray[Any]:
+    """One column between its rows."""
     from scipy.interpolate import PchipInterpolator
 
     w = np.asarray(omega, dtype=float)
@@ -159,9 +181,6 @@ def interpolate(omega: ArrayLike, *, table: Table, magnetic: bool = False) -> ND
         asked = show(float(outside[0]), "spectral", table.unit)
         raise Refusal(f"{asked} lies outside the table {table.source}", f"it covers {table.range_written}")
     inside = np.clip(w, low, high)
-    column = table.permittivity
-    if magnetic:
-        column = np.ones_like(column) if table.permeability is None else table.permeability
     rows = np.stack([column.real, column.imag], axis=-1)
     with np.errstate(over="ignore"):  # a step so small that its slope is as good as zero
         value = PchipInterpolator(table.omega, rows)(inside)

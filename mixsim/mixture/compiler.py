@@ -15,6 +15,7 @@ from mixsim.dispersion import (
     step_from_pair,
     width_from_wavelength,
 )
+from mixsim.dispersion.extension import Extension
 from mixsim.mixing import rule_named
 from mixsim.mixture.inputs import Derived, Fixed, Input, Leafed
 from mixsim.mixture.mixture import HOST, Constituent, Mixture
@@ -119,17 +120,23 @@ class _Compiler:
             return self._response(material.permittivity, f"{path}.permittivity")
         stated = self._maybe(f"{path}.static"), self._maybe(f"{path}.high_frequency")
         if material.table is not None:
-            return Measured(self.recipe.tables[name], *stated)
+            return Measured(self.recipe.tables[name], *stated, extension=self._extension(name))
         assert material.index is not None
         permeability = self._permeability(name)
         model = INDEX_MODELS[material.index.model]
         inputs = self._index_inputs(model, material.index, f"{path}.index")
         return Index(model, inputs, None if permeability is VACUUM else permeability, *stated)
 
+    def _extension(self, name: str, *, magnetic: bool = False) -> Extension | None:
+        wanted = self.schema.materials[name].extension
+        return None if wanted is None else Extension(self.recipe.tables[name], magnetic)
+
     def _permeability(self, name: str) -> Spectrum:
         permeability, table = self.schema.materials[name].permeability, self.recipe.tables.get(name)
         if permeability is None:
-            return VACUUM if table is None or table.permeability is None else Measured(table, magnetic=True)
+            if table is None or table.permeability is None:
+                return VACUUM
+            return Measured(table, magnetic=True, extension=self._extension(name, magnetic=True))
         return self._response(permeability, f"materials.{name}.permeability")
 
     def _response(self, response: Any, path: str) -> Spectrum:

@@ -14,7 +14,8 @@ from typing import Any, Protocol
 
 import numpy as np
 
-from mixsim.dispersion import IndexModel, Table, Term, interpolate
+from mixsim.dispersion import IndexModel, Table, Term, interpolate, interpolate_permeability
+from mixsim.dispersion.extension import Extension
 from mixsim.mixture.inputs import Fixed, Input, Values, paths_of
 
 UNKNOWN = float("nan")
@@ -180,19 +181,26 @@ class Index:
 
 @dataclass(frozen=True, eq=False)
 class Measured:
-    """A measured table: interpolated inside its range, refused outside, without limits unless stated."""
+    """A measured table: interpolated inside its range, without limits unless stated.
+
+    Outside it is refused, or continued by its extension where the recipe asks for one.
+    """
 
     table: Table
     static: Input | None = None
     high_frequency: Input | None = None
     magnetic: bool = False
+    extension: Extension | None = None
 
     @cached_property
     def paths(self) -> frozenset[str]:
         return paths_of(given for given in (self.static, self.high_frequency) if given)
 
     def at(self, x: Values, omega: Any) -> Any:
-        return interpolate(omega, table=self.table, magnetic=self.magnetic)
+        if self.extension is not None:
+            return self.extension(omega)
+        value = interpolate_permeability if self.magnetic else interpolate
+        return value(omega, table=self.table)
 
     def low(self, x: Values) -> tuple[Any, Any]:
         return 0.0, UNKNOWN if self.static is None else self.static(x)

@@ -27,6 +27,8 @@ def of_material(name: str, material: Mapping[str, Any]) -> Iterator[Finding]:
             if key in material:
                 allowed = "it is for index models and tables; terms have exact limits of their own"
                 yield f"{path}.{key}", Refusal(f"{key} beside permittivity", allowed)
+    if "extension" in material and "table" not in material and "based_on" not in material:
+        yield f"{path}.extension", Refusal("extension without table", "it continues a measured table")
     yield from _index(f"{path}.index", table(material, "index"))
 
 

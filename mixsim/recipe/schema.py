@@ -197,6 +197,9 @@ class Material(Section):
     )
     index: Index | None = None
     table: str | None = None
+    extension: Literal["causal"] | None = Field(
+        default=None, description="continues a table beyond its ends; without it, nothing is known there"
+    )
     static: Positive | None = Field(
         default=None, description="stated static permittivity of an index or table"
     )

@@ -9,7 +9,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from mixsim.dispersion import Table, interpolate, read_table
+from mixsim.dispersion import Table, interpolate, interpolate_permeability, read_table
 from mixsim.errors import Refusal
 from mixsim.units import spectral_from
 
@@ -330,7 +330,7 @@ def test_permeability_beside_permittivity(sign: str, text: str) -> None:
     assert table.permittivity.tolist() == [4 + 1j, 5]
     assert table.permeability is not None and table.permeability.tolist() == [2 + 0.5j, 1]
     assert not table.permeability.flags.writeable
-    middle = interpolate(1.5 * table.omega[0], table=table, magnetic=True)
+    middle = interpolate_permeability(1.5 * table.omega[0], table=table)
     assert 1.0 < middle.real < 2.0 and 0.0 < middle.imag < 0.5
 
 

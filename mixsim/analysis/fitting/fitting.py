@@ -10,6 +10,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from mixsim.analysis.caution import Caution
+from mixsim.analysis.cautions import extended
 from mixsim.analysis.fitting.answer import Fitted, Met, Quality, RuleFit
 from mixsim.analysis.fitting.doubt import UNIFORM, Doubt, doubt_of, profile
 from mixsim.analysis.fitting.model import FitModel
@@ -232,7 +233,7 @@ def _answered(recipe: Recipe, model: FitModel, fits: list[Fit], profiled: bool, 
         solutions=tuple(_named(model, found.place) for found in several) if len(several) > 1 else (),
         by_rule=(),
         profiled=profiled and not reasons,
-        warnings=(*suspicions(recipe), *_cautions(model, best, quality, met)),
+        warnings=(*suspicions(recipe), *_extended(model), *_cautions(model, best, quality, met)),
         seed=seed,
     )
 
@@ -355,6 +356,11 @@ def _by_rule(
             RuleFit(name, _named(other, fitted.place), _quality(other, fitted, doubt_of(other, fitted, {})))
         )
     return tuple(sorted(found, key=lambda one: one.quality.aicc))
+
+
+def _extended(model: FitModel) -> list[Caution]:
+    found = (caution for sample in model.samples for caution in extended(sample.mixture, sample.omega))
+    return list(dict.fromkeys(found))
 
 
 def _cautions(model: FitModel, best: Fit, quality: Quality, met: Sequence[Met]) -> list[Caution]:
