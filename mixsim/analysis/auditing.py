@@ -94,7 +94,7 @@ def audit(subject: str | Path, settings: Mapping[str, Any] | None = None) -> Aud
     name, file = str(subject), Path(subject)
     if not file.is_file() and file.suffix.lower() not in (".toml", ".csv"):
         if settings:
-            raise BadInput([Fault(COMMAND_LINE, "--set", f"with the material {name}", "it is for a recipe")])
+            raise _only_recipes(f"the material {name}")
         if name in library.names():
             return _material(name)
         if not isinstance(subject, Path):
@@ -103,7 +103,7 @@ def audit(subject: str | Path, settings: Mapping[str, Any] | None = None) -> Aud
             raise BadInput([fault])
     if file.suffix.lower() == ".csv":
         if settings:
-            raise BadInput([Fault(COMMAND_LINE, "--set", f"with the table {name}", "it is for a recipe")])
+            raise _only_recipes(f"the table {name}")
         return _table(file, name)
     try:
         recipe = load(file, settings)
@@ -113,6 +113,11 @@ def audit(subject: str | Path, settings: Mapping[str, Any] | None = None) -> Aud
         return Audit(name, "recipe", error.faults, (), 0)
     findings, spectra = _of_recipe(recipe)
     return Audit(name, "recipe", (), suspicions(recipe), len(recipe.leaves), findings, spectra)
+
+
+def _only_recipes(what: str) -> BadInput:
+    found = f"something to set in {what}"
+    return BadInput([Fault(COMMAND_LINE, "audit", found, "--set and --rule are for a recipe")])
 
 
 def _material(name: str) -> Audit:

@@ -188,7 +188,7 @@ def test_what_is_none_of_the_three() -> None:
         mixsim.audit("golf")
     with pytest.raises(BadInput, match="no such file"):
         mixsim.audit("none.csv")
-    with pytest.raises(BadInput, match="it is for a recipe"):
+    with pytest.raises(BadInput, match="are for a recipe"):
         mixsim.audit("gold", {"mixing.rule": "bruggeman"})
 
 
