@@ -146,6 +146,13 @@ def _table(file: Path, name: str) -> Audit:
         raise BadInput([Fault(name, "", refusal.found, refusal.allowed, refusal.suggestion)]) from None
     rows = Subject(file.stem, "permittivity", table.omega, table.permittivity, table.unit, measured=True)
     findings, spectra = _of_spectrum(rows)
+    if table.permeability is not None:
+        magnetic = Subject(
+            rows.of, "permeability", table.omega, table.permeability, table.unit, measured=True
+        )
+        said, seen = _of_spectrum(magnetic)
+        findings += said
+        spectra += seen
     numbers = {"low_rad_s": float(table.omega[0]), "high_rad_s": float(table.omega[-1])}
     why = f"{table.omega.size} rows from {table.range_written}"
     findings.append(Finding("range", rows.of, "passed", numbers, why))
@@ -202,8 +209,9 @@ def _of_material(
     subjects = []
     for quantity in ("permittivity", *(["permeability"] if is_magnetic(phase) else [])):
         spectrum = getattr(phase, quantity)
-        if table is not None and quantity == "permittivity":
-            subjects.append(Subject(name, quantity, table.omega, table.permittivity, unit, measured=True))
+        rows = None if table is None else getattr(table, quantity)
+        if table is not None and rows is not None:
+            subjects.append(Subject(name, quantity, table.omega, rows, unit, measured=True))
             continue
         omega = np.geomspace(ends[0], ends[1], POINTS if ends[0] < ends[1] else 1)
         subjects.append(_sampled(name, quantity, spectrum, recipe, omega, unit))

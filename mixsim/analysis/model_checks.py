@@ -75,6 +75,10 @@ def f_sum(phase: Constituent, subject: Subject, recipe: Recipe) -> Finding:
 def snoek(phase: Constituent, recipe: Recipe, subject: Subject) -> Finding:
     """Static permeability and resonance, against the saturation magnetisation where a term tells it."""
     name, x = "Snoek product", {path: leaf.value for path, leaf in recipe.leaves.items()}
+    table = recipe.tables.get(phase.material)
+    if table is not None and table.permeability is not None:
+        why = "a table holds no static permeability"
+        return Finding(name, subject.of, "could not tell", {}, why)
     _, plateau = phase.permeability.low(x)
     step = float(np.real(plateau)) - 1.0
     wide = np.geomspace(subject.omega[0] * 1e-2, subject.omega[-1] * 1e2, 20_001)

@@ -91,6 +91,22 @@ def test_a_good_table_passes_and_a_spoilt_one_fails(tmp_path: Path) -> None:
     assert found(spoilt, "passivity").verdict == "passed" and not spoilt.passed
 
 
+def test_the_permeability_of_a_table_is_looked_at_too(tmp_path: Path) -> None:
+    frequency = np.geomspace(1.0, 100.0, 80)
+    value = 1.0 + 5.0 / (1.0 - 1j * frequency / 20.0)
+    head = "frequency [GHz], permittivity_real, permittivity_imag, permeability_real, permeability_imag\n"
+    for sign, verdict in ((1, "passed"), (-1, "failed")):
+        rows = [f"{f},9,0,{m.real},{sign * m.imag}" for f, m in zip(frequency, value, strict=True)]
+        file = tmp_path / "magnetic.csv"
+        file.write_text("# convention: exp(-iwt)\n" + head + "\n".join(rows) + "\n", encoding="utf-8")
+        text = 'host.material = "m"\nmaterials.m.table = "magnetic.csv"\n'
+        text += 'band = { from = "2 GHz", to = "50 GHz" }'
+        for answer in (mixsim.audit(file), audited(tmp_path, text)):
+            assert found(answer, "passivity of μ").verdict == verdict
+            assert found(answer, "Kramers–Kronig of μ").verdict == verdict
+            assert found(answer, "Kramers–Kronig").verdict == "passed"
+
+
 def test_a_table_in_a_recipe_must_cover_what_is_asked(tmp_path: Path) -> None:
     table(tmp_path, debye())
     text = 'host.material = "m"\nband = { from = "2 GHz", to = "HIGH" }\nmaterials.m.table = "sample.csv"\n'
