@@ -2,14 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Mapping, Sequence
+from collections.abc import Collection, Iterator, Mapping, Sequence
 
 import numpy as np
 from numpy.typing import NDArray
 
 from mixsim.analysis.band import Axis, Varied
 from mixsim.analysis.caution import Caution
-from mixsim.analysis.rules import applicable_rules, conducts
+from mixsim.analysis.rules import applicable_rules, conducts, threshold
 from mixsim.analysis.suspicion import suspicions
 from mixsim.mixture import HOST, VOIDS, Composition, Limits, Mixture, Response
 from mixsim.mixture.spectra import Measured
@@ -144,37 +144,45 @@ def _crowding(recipe: Recipe, mixture: Mixture, composition: Composition) -> Ite
             f"a loading of {show(total, 'fraction', '%')} lies above {RANDOM_PACKING:.0%}, the random close "
             f"packing of equal spheres: it takes a mix of sizes or pressing",
         )
-    rule, threshold = mixture.rule, mixture.rule.percolation
+    rule = mixture.rule
     conducting = {grain.name for grain in mixture.inclusions if conducts(mixture, grain.name)}
     if not conducting or conducts(mixture, HOST):
         return
+    starts_at = threshold(mixture, {name: fractions[name] for name in conducting})
     filled = sum(fractions[name] for name in conducting)
     what, percent = " and ".join(sorted(conducting)), show(filled, "fraction", "%")
     contacts = {name: recipe.schema.inclusions[name].contact for name in sorted(conducting)}
-    if threshold is not None and filled > 0.75 * threshold:
+    if starts_at is not None and filled > 0.75 * starts_at:
         yield Caution(
             "percolation",
             "mixing.rule",
-            f"{percent} of conducting {what} is near or above the threshold {threshold:.3g} of {rule.name}, "
-            f"where small changes of loading change everything; real grains percolate from {TOUCHING:g} on",
+            f"{percent} of conducting {what} is near or above the threshold {starts_at:.3g} of {rule.name}"
+            f"{_by_shape(mixture, conducting)}, "
+            f"where small changes of loading change everything; real spheres percolate from {TOUCHING:g} on",
         )
     for name, contact in contacts.items():
         path = f"inclusions.{name}.contact"
-        if contact == "touching" and threshold is None:
+        if contact == "touching" and starts_at is None:
             yield Caution(
                 "contact", path, f"{name} is said to touch, while {rule.name} keeps its grains apart"
             )
-        elif contact == "insulated" and threshold is not None and filled > threshold:
+        elif contact == "insulated" and starts_at is not None and filled > starts_at:
             yield Caution(
                 "contact", path, f"{name} is said to be insulated, while {rule.name} lets it conduct here"
             )
-        elif contact is None and threshold is None and filled > TOUCHING:
+        elif contact is None and starts_at is None and filled > TOUCHING:
             yield Caution(
                 "contact",
                 path,
                 f"{percent} of conducting {what}: random grains touch from about {TOUCHING:.0%} on, and "
                 f"{rule.name} keeps them apart; say contact = 'insulated' or 'touching'",
             )
+
+
+def _by_shape(mixture: Mixture, names: Collection[str]) -> str:
+    """A word where it is the shape of grains that sets the threshold."""
+    shaped = any(grain.shape is not None for grain in mixture.inclusions if grain.name in names)
+    return " for grains of this shape" if shaped else ""
 
 
 def _partial_volumes(composition: Composition) -> Iterator[Caution]:

@@ -2,9 +2,11 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
+
 import numpy as np
 
-from mixsim.mixing import RULES, Rule
+from mixsim.mixing import RULES, SPHERE, Rule
 from mixsim.mixture import Mixture
 from mixsim.recipe import Recipe
 
@@ -19,6 +21,36 @@ def conducts(mixture: Mixture, name: str) -> bool:
     """Whether a constituent conducts at dc, at the numbers of the recipe."""
     phase = next(phase for phase in mixture.phases if phase.name == name)
     return bool(np.any(np.asarray(phase.permittivity.low(mixture.defaults)[0]) > 0.0))
+
+
+def threshold(mixture: Mixture, fractions: Mapping[str, float]) -> float | None:
+    """Fraction from which some conducting inclusions conduct through the mixture, by their shapes.
+
+    Parameters
+    ----------
+    mixture
+        The mixture; its rule and its shapes, at the numbers of the recipe.
+    fractions
+        Volume fraction of each conducting inclusion, by name.
+
+    Returns
+    -------
+    threshold
+        Of the sum of these fractions [-]; None under a rule that keeps grains apart. Along the principal
+        axis that conducts first, where there are any.
+    """
+    rule = mixture.rule
+    if rule.percolation is None or rule.threshold_of is None:
+        return rule.percolation
+    grains = [grain for grain in mixture.inclusions if grain.name in fractions]
+    shapes = [SPHERE if grain.shape is None else grain.shape(mixture.defaults) for grain in grains]
+    with np.errstate(divide="ignore"):
+        each = [1.0 / rule.threshold_of(shape) for shape in shapes]
+    parts = [fractions[grain.name] for grain in grains]
+    if not sum(parts) > 0.0:
+        parts = [1.0] * len(grains)
+    inverse = sum((part * one for part, one in zip(parts, each, strict=True)), start=np.asarray(0.0))
+    return float(np.min(sum(parts) / inverse))
 
 
 def _applies(rule: Rule, recipe: Recipe, mixture: Mixture) -> bool:

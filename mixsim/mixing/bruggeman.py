@@ -1,6 +1,6 @@
-"""Bruggeman's symmetric effective medium: phases of spheres, none of which is the host.
+"""Bruggeman's symmetric effective medium: phases of spheres or ellipsoids, none of which is the host.
 
-The quadratic of two phases is solved in closed form; more phases go to `mixsim.mixing.fixed_point`.
+The quadratic of two phases of spheres is solved in closed form; all else goes to `mixsim.mixing.fixed_point`.
 """
 
 from __future__ import annotations
@@ -12,7 +12,7 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from mixsim.errors import Refusal
-from mixsim.mixing.depolarisation import Array, Depolarisation, only_spheres, same_length
+from mixsim.mixing.depolarisation import SPHERE, Array, Depolarisation, only_spheres, same_length
 from mixsim.mixing.fixed_point import fixed_point
 
 _BLOCK = 8192  # points a pass: the temporaries of the closed form then stay in the cache
@@ -36,20 +36,22 @@ def bruggeman(
     fractions
         Volume fraction of each phase, adding up to one [-].
     depolarisations
-        Spheres, or None [-].
+        Depolarisation factors and weights of each phase [-]. None: spheres.
     dimensions
-        3 for spheres, 2 for aligned round fibres with the field across them [-].
+        3 for grains of any shape, 2 for aligned round fibres with the field across them [-].
 
     Returns
     -------
     permittivity
         Relative permittivity of the mixture, complex [-]; its imaginary part is exactly zero where every
-        phase is real and positive.
+        phase is real and positive. Aligned grains give the three principal axes at the second-to-last
+        position.
 
     Raises
     ------
     Refusal
-        Where the arguments differ in number, a phase is not of spheres, or dimensions is neither 2 nor 3.
+        Where the arguments differ in number, dimensions is neither 2 nor 3, or 2 with grains that are not
+        round fibres.
 
     Notes
     -----
@@ -76,6 +78,16 @@ def bruggeman(
     spheres is 6 z² Σ f_k/(ε_k + 2z)² < 1. A tie, S imaginary and M real, is left only for a real negative
     ε₁/ε₂, and there the root with Im z > 0 is taken. ∎
 
+    Ellipsoids, N being the factors of the phase and < > the mean over the axes of its grains as they lie::
+
+        Σ f_k (ε_k − z) <1/(z + N_k (ε_k − z))> = 0
+
+    the symmetric form, in which the grains of each phase, the host's too, polarise in the mixture, each by
+    its own shape; the host's are spheres unless said otherwise. The other published form, of Polder and
+    van Santen, has z = ε_h + Σ f_k (ε_k − ε_h) <z/(z + N_k (ε_k − z))> and the host as what is left; both
+    are one for spheres, and agree to first order in f. Principal axes are solved one by one, with the factors
+    that the grain has in an isotropic surrounding.
+
     Where b and S oppose each other the root comes from the product of the two, z = 2 ε₁ε₂/(S − b).
     Valid for: grains of all phases that touch at random, small against the wavelength. The phase of
     highest conductivity percolates at f = 1/d, twice what random hard spheres show (0.16 in 3-D).
@@ -84,6 +96,7 @@ def bruggeman(
     ----------
     D. A. G. Bruggeman, "Berechnung verschiedener physikalischer Konstanten von heterogenen Substanzen",
     Ann. Phys. 416, 636 (1935).
+    T. G. Mackay and A. Lakhtakia, arXiv:1201.5818 (2012), on the formalisms of that name for ellipsoids.
 
     Examples
     --------
@@ -97,13 +110,56 @@ def bruggeman(
     """
     if dimensions not in (2, 3):
         raise Refusal(f"{dimensions!r} dimensions", "bruggeman knows 3 (spheres) and 2 (fibres seen across)")
-    only_spheres(same_length(phases, fractions, depolarisations), rule="bruggeman", dimensions=dimensions)
+    shapes = same_length(phases, fractions, depolarisations)
+    if dimensions == 2:
+        only_spheres(shapes, rule="bruggeman", dimensions=2)
+        shapes = [((0.5, 1.0),)] * len(shapes)
     values = [np.asarray(phase, dtype=complex) for phase in phases]
     volumes = [np.asarray(fraction, dtype=float) for fraction in fractions]
     with np.errstate(divide="ignore", invalid="ignore", over="ignore", under="ignore"):
-        if len(values) == 2:
+        if len(values) == 2 and all(shape is SPHERE or dimensions == 2 for shape in shapes):
             return _two_phases([*values, *volumes], dimensions)
-        return fixed_point(values, fractions=volumes, dimensions=dimensions)
+        kinds = [
+            (value, volume * np.asarray(weight), np.asarray(factor, dtype=float))
+            for value, volume, shape in zip(values, volumes, shapes, strict=True)
+            for factor, weight in shape
+        ]
+        each, shares, factors = zip(*kinds, strict=True)
+        return fixed_point(each, fractions=shares, factors=factors)
+
+
+def percolation_threshold(depolarisation: Depolarisation) -> Array:
+    """Fraction from which conducting grains among insulating spheres conduct through the mixture.
+
+    Parameters
+    ----------
+    depolarisation
+        Depolarisation factors and weights of the conducting grains [-].
+
+    Returns
+    -------
+    threshold
+        Volume fraction [-]; that along each principal axis, shape (..., 3, 1), where grains are aligned.
+
+    Notes
+    -----
+    There z vanishes beside the conductors and is infinite beside the insulators. The balance of the rule
+    becomes f <1/N> = (1 − f) <1/(1 − N)>, and the last mean is 3/2 for spheres::
+
+        f_c = (3/2) / (3/2 + <1/N>)
+
+    Valid for: one phase that conducts; several by the mean of 1/f_c, weighted with their fractions.
+
+    Examples
+    --------
+    >>> from mixsim.mixing import random_spheroid
+    >>> print(f"{percolation_threshold(random_spheroid(10.0)):.4f}")
+    0.0777
+    """
+    with np.errstate(divide="ignore"):
+        reach = sum((weight / np.asarray(factor) for factor, weight in depolarisation), start=np.asarray(0.0))
+        threshold: Array = 1.5 / (1.5 + reach)
+    return threshold
 
 
 def _two_phases(operands: list[Array], dimensions: int) -> Array:

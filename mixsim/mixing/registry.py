@@ -12,6 +12,7 @@ from mixsim.errors import Refusal, nearest
 from mixsim.mixing.bruggeman import bruggeman
 from mixsim.mixing.bruggeman import fraction_from as bruggeman_fraction
 from mixsim.mixing.bruggeman import inclusion_from as bruggeman_inclusion
+from mixsim.mixing.bruggeman import percolation_threshold as bruggeman_threshold
 from mixsim.mixing.depolarisation import Array
 from mixsim.mixing.lorentz_lorenz import fraction_from as lorentz_lorenz_fraction
 from mixsim.mixing.lorentz_lorenz import inclusion_from as lorentz_lorenz_inclusion
@@ -53,6 +54,8 @@ class Rule:
     percolation
         Fraction from which spheres of a conducting phase conduct through the mixture [-], or None where
         they never do below one.
+    threshold_of
+        ``(depolarisation)``: that fraction of grains of other shapes, or None.
     """
 
     name: str
@@ -71,6 +74,7 @@ class Rule:
     fraction_from: RuleFunction | None
     inclusion_from: RuleFunction | None
     percolation: float | None
+    threshold_of: Callable[..., Array] | None = None
 
 
 _CLAUSIUS_MOSSOTTI = "exact: ε_h (1 + 3 f (ε_i − ε_h)/(ε_i + 2 ε_h)) for spheres"
@@ -99,20 +103,21 @@ RULES: Mapping[str, Rule] = {
         Rule(
             name="bruggeman",
             function=bruggeman,
-            summary="phases of spheres on the same footing, in contact at random",
-            equation="Σ f_k (ε_k − ε)/(ε_k + 2ε) = 0",
+            summary="phases on the same footing, in contact at random; spheres or ellipsoids of any kind",
+            equation="Σ f_k (ε_k − ε) <1/(ε + N_k (ε_k − ε))> = 0, host and voids as spheres",
             assumptions="no phase is the host; grains, far below a wavelength, see the mixture around them",
             dilute_limit=_CLAUSIUS_MOSSOTTI,
-            valid_for="aggregates and porous bodies away from the threshold 1/3, twice that of hard spheres",
+            valid_for="aggregates, porous bodies, away from the threshold: for spheres 1/3, twice the usual",
             source="D. A. G. Bruggeman, Ann. Phys. 416, 636 (1935)",
-            takes_shapes=False,
-            takes_aligned=False,
+            takes_shapes=True,
+            takes_aligned=True,
             symmetric=True,
             additive_only=True,
             homogeneous=True,
             fraction_from=bruggeman_fraction,
             inclusion_from=bruggeman_inclusion,
             percolation=1.0 / 3.0,
+            threshold_of=bruggeman_threshold,
         ),
         Rule(
             name="lorentz-lorenz",

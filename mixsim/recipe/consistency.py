@@ -147,7 +147,7 @@ def _rule(raw: Mapping[str, Any]) -> Iterator[Finding]:
             able = ", ".join(n for n, r in RULES.items() if r.takes_shapes)
             yield (
                 f"inclusions.{inclusion}.shape",
-                Refusal(f"grains that are not spheres with the rule {name}", f"{able} takes them"),
+                Refusal(f"grains that are not spheres with the rule {name}", f"{able} take them"),
             )
 
 

@@ -174,3 +174,18 @@ def test_a_table_of_the_wrong_sign_is_named(tmp_path: Path) -> None:
     (caution,) = found
     assert caution.path == "materials.m"
     assert "exp(+iwt)" in caution.message
+
+
+def test_long_grains_conduct_earlier_and_the_caution_says_by_how_much() -> None:
+    """Rods of 20:1 percolate under Bruggeman at 1.5/(1.5 + <1/N>), near 2.87 %; balls at 1/3."""
+    rods = 'shape = { kind = "spheroid", aspect_ratio = 20 }\n'
+    touching = 'inclusions.grain.contact = "touching"\nmixing.rule = "bruggeman"\n'
+    assert "percolation" not in kinds(oxide("2.5 %", touching))
+    text = oxide("2.5 %", touching + "inclusions.grain." + rods)
+    said = [c.message for c in mixsim.predict(mixsim.parse(text)).warnings if c.kind == "percolation"]
+    assert len(said) == 1
+    assert "threshold 0.0287 of bruggeman for grains of this shape" in said[0]
+    compiled = mixsim.parse(text).compile()
+    path = "inclusions.grain.volume_fraction"
+    below, above = compiled.limits({path: np.array([0.0285, 0.0290])}).conductivity
+    assert below == 0.0 < above

@@ -309,6 +309,7 @@ def test_inverses_of_real_readings_are_real() -> None:
 
 def test_refusals() -> None:
     with pytest.raises(Refusal, match="bruggeman takes spheres only"):
-        bruggeman([1.0, 2.0], fractions=[0.5, 0.5], depolarisations=[SPHERE, random_spheroid(2.0)])
+        shapes = [SPHERE, random_spheroid(2.0)]
+        bruggeman([1.0, 2.0], fractions=[0.5, 0.5], depolarisations=shapes, dimensions=2)
     with pytest.raises(Refusal, match="4 dimensions"):
         bruggeman([1.0, 2.0], fractions=[0.5, 0.5], dimensions=4)

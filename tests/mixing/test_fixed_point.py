@@ -9,6 +9,7 @@ from mixsim.mixing import fixed_point as module
 from mixsim.mixing.fixed_point import fixed_point
 
 COUNT = 10000
+THIRD = np.asarray(1 / 3)
 
 
 def draw(kind: str, phases: int) -> tuple[np.ndarray, np.ndarray]:
@@ -37,7 +38,7 @@ def holds(z: np.ndarray, e: np.ndarray, f: np.ndarray) -> None:
 @pytest.mark.parametrize("kind", ["sixty decades", "loss-free, sixteen decades", "resonances"])
 def test_root_is_the_attracting_one_of_the_half_plane(kind: str, phases: int) -> None:
     e, f = draw(kind, phases)
-    holds(fixed_point(list(e), fractions=list(f), dimensions=3), e, f)
+    holds(fixed_point(list(e), fractions=list(f), factors=[THIRD] * phases), e, f)
 
 
 @pytest.mark.parametrize(
@@ -47,15 +48,19 @@ def test_all_roots_of_the_polynomial_lead_to_the_same(kind: str, phases: int) ->
     e, f = (array[:, :2000] for array in draw(kind, phases))
     floor, real = np.zeros(2000), np.full(2000, kind.startswith("loss-free"))
     with np.errstate(all="ignore"):
-        z = module._among_all_roots(e, f, floor, real, 3)
+        third = np.full((phases, 1), 1 / 3)
+        grains = module._Grains(e, f, third, (f / third).sum(axis=0), (f / (1 - third)).sum(axis=0))
+        z = module._among_all_roots(grains, floor, real)
     holds(z, e, f)
-    np.testing.assert_allclose(z, fixed_point(list(e), fractions=list(f), dimensions=3), rtol=1e-6)
+    np.testing.assert_allclose(
+        z, fixed_point(list(e), fractions=list(f), factors=[THIRD] * phases), rtol=1e-6
+    )
 
 
 def test_blocks_join_and_nan_stays_where_it_is() -> None:
     values = np.full(40000, 4.0 + 0j)
     values[[5, 20000, 39999]] = np.nan
-    third = np.asarray(1 / 3)
-    z = fixed_point([np.asarray(1 + 0j), values, values], fractions=[third] * 3, dimensions=3)
+    thirds = [THIRD] * 3
+    z = fixed_point([np.asarray(1 + 0j), values, values], fractions=thirds, factors=thirds)
     assert np.flatnonzero(np.isnan(z)).tolist() == [5, 20000, 39999]
     assert np.nanmax(np.abs(z - (1 + np.sqrt(3)))) < 1e-14

@@ -190,11 +190,11 @@ CASES: dict[str, Broken] = {
     "spheroids under a rule of spheres": dense(
         {
             LOADING: f'{LOADING}\nshape = {{ kind = "spheroid", aspect_ratio = 2.0 }}',
-            "maxwell-garnett": "bruggeman",
+            "maxwell-garnett": "lorentz-lorenz",
         },
         f"{GRAIN}.shape",
-        "grains that are not spheres with the rule bruggeman",
-        "maxwell-garnett takes them",
+        "grains that are not spheres with the rule lorentz-lorenz",
+        "maxwell-garnett, bruggeman take them",
         "shape =",
     ),
     "measured density with additive volumes": swap(
