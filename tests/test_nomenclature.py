@@ -19,6 +19,7 @@ from mixsim.dispersion import (
     interpolate,
     kramers_kronig,
     step_from_pair,
+    thermo_optic,
 )
 from mixsim.mixing import RULES
 
@@ -33,7 +34,7 @@ def formulas() -> Iterator[Callable[..., Any]]:
         yield from (route.function for route in routes if route.function is not None)
     yield from (model.function for model in INDEX_MODELS.values())
     yield from (descriptions.width_from_wavelength, interpolate, infinity_from_pair, step_from_pair)
-    yield kramers_kronig
+    yield from (kramers_kronig, thermo_optic.index_of_air, thermo_optic.thermo_optic_shift)
     for rule in RULES.values():
         given = (rule.function, rule.fraction_from, rule.inclusion_from)
         yield from (function for function in given if function is not None)

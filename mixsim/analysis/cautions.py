@@ -20,6 +20,7 @@ from mixsim.units import SPEED_OF_LIGHT, show, written_unit
 SIZE_PARAMETER = 0.3  # πdn/λ: scattering and retardation enter at its square, here a tenth
 RANDOM_PACKING = 0.64  # of equal hard spheres, common practice
 TOUCHING = 0.16  # volume fraction at which random hard spheres percolate, common practice
+SAME_TEMPERATURE = 1.0  # K, within which a description may be taken as it is
 DECADE = 2.0  # ratio of the ends of a band over which a constant loss is still handy
 SPREAD = 0.2  # share by which other rules may differ before it is said
 CONTRACTION = 0.1  # of the volume on mixing, which no common solution reaches; common practice
@@ -41,6 +42,7 @@ def cautions(
     found = [
         *suspicions(recipe),
         *_ranges(recipe, mixture, axis),
+        *_temperatures(recipe, mixture, vary),
         *extended(mixture, axis.omega),
         *_sizes(recipe, axis, constituents, largest),
         *_not_finite(axis, response),
@@ -68,6 +70,42 @@ def _ranges(recipe: Recipe, mixture: Mixture, axis: Axis) -> Iterator[Caution]:
                 f"{name} is described from {valid.from_.written} to {valid.to.written}; the band "
                 f"{_span(axis)} leaves that",
             )
+
+
+def _temperatures(recipe: Recipe, mixture: Mixture, vary: Sequence[Varied]) -> Iterator[Caution]:
+    """Temperatures beyond those of a description, and materials that are taken as they are at any."""
+    path = "conditions.temperature"
+    if path not in recipe.leaves:
+        return
+    swept = [item.values for item in vary if item.path == path]
+    temperatures = swept[0] if swept else np.array([recipe.leaves[path].value])
+    unmoved = []
+    for name in dict.fromkeys(phase.material for phase in mixture.phases if phase.name != VOIDS):
+        material = recipe.schema.materials[name]
+        if path not in _paths_of(mixture, name):
+            own = material.temperature
+            if own is None or np.any(np.abs(temperatures - own.value) > SAME_TEMPERATURE):
+                unmoved.append(name if own is None else f"{name} ({own.written})")
+        valid = material.valid_temperature
+        if valid is not None and np.any((temperatures < valid.from_.value) | (temperatures > valid.to.value)):
+            yield Caution(
+                "out-of-range",
+                f"materials.{name}",
+                f"{name} is described from {valid.from_.written} to {valid.to.written}; the temperature "
+                f"leaves that",
+            )
+    if unmoved:
+        yield Caution(
+            "temperature",
+            path,
+            f"without a temperature coefficient, and taken as described: {', '.join(unmoved)}",
+        )
+
+
+def _paths_of(mixture: Mixture, material: str) -> frozenset[str]:
+    """Leaves that the permittivity of a material depends on."""
+    phases = (phase.permittivity.paths for phase in mixture.phases if phase.material == material)
+    return frozenset().union(*phases)
 
 
 def extended(mixture: Mixture, omega: NDArray[np.float64]) -> Iterator[Caution]:

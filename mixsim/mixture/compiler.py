@@ -25,11 +25,13 @@ from mixsim.mixture.spectra import (
     BoundTerm,
     Doped,
     Index,
+    IndexWarming,
     Level,
     LocalPlasma,
     Measured,
     Spectrum,
     TermSum,
+    Warmed,
 )
 from mixsim.recipe import Recipe, loading_of
 from mixsim.units import read
@@ -115,6 +117,22 @@ class _Compiler:
         )
 
     def _permittivity(self, name: str) -> Spectrum:
+        """Of a material, at the temperature of the piece."""
+        spectrum, difference = self._described(name), self._warmer_by(name)
+        coefficient = self._maybe(f"materials.{name}.temperature_coefficient")
+        if coefficient is None or difference is None:
+            return spectrum
+        return Warmed(spectrum, coefficient, difference)
+
+    def _warmer_by(self, name: str) -> Input | None:
+        """Temperature of the piece less that of a description; None where either is not known."""
+        here, own = self._maybe("conditions.temperature"), self._maybe(f"materials.{name}.temperature")
+        if here is None or own is None:
+            return None
+        return Derived(_difference, {"temperature": here, "own": own})
+
+    def _described(self, name: str) -> Spectrum:
+        """Permittivity of a material as it is described."""
         material, path = self.schema.materials[name], f"materials.{name}"
         if material.permittivity is not None:
             return self._response(material.permittivity, f"{path}.permittivity")
@@ -125,7 +143,24 @@ class _Compiler:
         permeability = self._permeability(name)
         model = INDEX_MODELS[material.index.model]
         inputs = self._index_inputs(model, material.index, f"{path}.index")
-        return Index(model, inputs, None if permeability is VACUUM else permeability, *stated)
+        return Index(
+            model,
+            inputs,
+            None if permeability is VACUUM else permeability,
+            *stated,
+            in_air=material.index.reference == "air",
+            warming=self._index_warming(name, f"{path}.index"),
+        )
+
+    def _index_warming(self, name: str, path: str) -> IndexWarming | None:
+        difference, index = self._warmer_by(name), self.schema.materials[name].index
+        assert index is not None
+        if difference is None or (index.dn_dt is None and index.thermo_optic is None):
+            return None
+        if index.dn_dt is not None:
+            return IndexWarming(difference, Leafed(f"{path}.dn_dt"))
+        constants = tuple(Leafed(f"{path}.thermo_optic.{i}") for i in range(len(index.thermo_optic)))
+        return IndexWarming(difference, thermo_optic=constants)
 
     def _extension(self, name: str, *, magnetic: bool = False) -> Extension | None:
         wanted = self.schema.materials[name].extension
@@ -258,6 +293,11 @@ def _wants_concentration(content: Any) -> bool:
     """Whether a dopant's term leaves its strength to the concentration of the dopant."""
     given = (content.plasma, content.step, content.number_density) if content.model == "lorentz" else (True,)
     return not any(given)
+
+
+def _difference(*, temperature: Any, own: Any) -> Any:
+    """ΔT = T − T₀."""
+    return temperature - own
 
 
 def _level_from_susceptibility(*, susceptibility: Any) -> Any:

@@ -16,6 +16,7 @@ import numpy as np
 
 from mixsim.dispersion import IndexModel, Table, Term, interpolate, interpolate_permeability
 from mixsim.dispersion.extension import Extension
+from mixsim.dispersion.thermo_optic import index_of_air, thermo_optic_shift
 from mixsim.mixture.inputs import Fixed, Input, Values, paths_of
 
 UNKNOWN = float("nan")
@@ -141,11 +142,14 @@ class Index:
     permeability: Spectrum | None
     static: Input | None
     high_frequency: Input | None
+    in_air: bool = False
+    warming: IndexWarming | None = None
 
     @cached_property
     def paths(self) -> frozenset[str]:
         lists = [given if isinstance(given, tuple) else (given,) for given in self.inputs.values()]
-        stated = [given for given in (self.static, self.high_frequency, self.permeability) if given]
+        stated: list[Any] = [self.static, self.high_frequency, self.permeability, self.warming]
+        stated = [given for given in stated if given]
         return paths_of([*(item for items in lists for item in items), *stated])
 
     def at(self, x: Values, omega: Any) -> Any:
@@ -176,7 +180,80 @@ class Index:
             name: [item(x) for item in given] if isinstance(given, tuple) else given(x)
             for name, given in self.inputs.items()
         }
-        return np.asarray(self.model.function(omega, **numbers))
+        if not self.in_air:
+            index = np.asarray(self.model.function(omega, **numbers))
+        else:  # the wavelength in air is shorter, and so is that in the glass
+            air = index_of_air(omega)
+            index = np.asarray(self.model.function(omega * air, **numbers)) * air
+        return index if self.warming is None else index + self.warming.shift(x, omega, index)
+
+
+@dataclass(frozen=True, eq=False)
+class IndexWarming:
+    """How an index changes with temperature.
+
+    Attributes
+    ----------
+    difference
+        Temperature less that of the description [K].
+    dn_dt
+        Change of the index per kelvin [1/K], or None where the six constants of a glass catalogue say it.
+    thermo_optic
+        Those, or empty.
+    """
+
+    difference: Input
+    dn_dt: Input | None = None
+    thermo_optic: tuple[Input, ...] = ()
+
+    @cached_property
+    def paths(self) -> frozenset[str]:
+        return paths_of([self.difference, *self.thermo_optic, *([self.dn_dt] if self.dn_dt else [])])
+
+    def shift(self, x: Values, omega: Any, index: Any) -> Any:
+        """What is to be added to the index."""
+        step = self.difference(x)
+        if self.dn_dt is not None:
+            return self.dn_dt(x) * step
+        constants = [constant(x) for constant in self.thermo_optic]
+        return thermo_optic_shift(omega, index=index, temperature_difference=step, thermo_optic=constants)
+
+
+@dataclass(frozen=True, eq=False)
+class Warmed:
+    """A spectrum that grows with temperature by one relative coefficient at every frequency.
+
+    Attributes
+    ----------
+    base
+        At the temperature of the description.
+    coefficient
+        Relative change per kelvin [1/K].
+    difference
+        Temperature less that of the description [K].
+    """
+
+    base: Spectrum
+    coefficient: Input
+    difference: Input
+
+    @cached_property
+    def paths(self) -> frozenset[str]:
+        return paths_of((self.base, self.coefficient, self.difference))
+
+    def factor(self, x: Values) -> Any:
+        """1 + α ΔT."""
+        return 1.0 + self.coefficient(x) * self.difference(x)
+
+    def at(self, x: Values, omega: Any) -> Any:
+        return self.base.at(x, omega) * self.factor(x)
+
+    def low(self, x: Values) -> tuple[Any, Any]:
+        rate, plateau = self.base.low(x)
+        return rate * self.factor(x), plateau * self.factor(x)
+
+    def high(self, x: Values) -> Any:
+        return self.base.high(x) * self.factor(x)
 
 
 @dataclass(frozen=True, eq=False)
@@ -244,6 +321,9 @@ def held(part: Spectrum | BoundTerm, x: Values, omega: Any, varied: frozenset[st
         start: Here = part.level
     elif isinstance(part, Doped):
         start = held(part.host, x, omega, varied)
+    elif isinstance(part, Warmed):
+        base = held(part.base, x, omega, varied)
+        return lambda x: base(x) * part.factor(x)
     else:
         return lambda x: part.at(x, omega)
     terms = [held(term, x, omega, varied) for term in part.terms]

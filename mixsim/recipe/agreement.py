@@ -28,6 +28,11 @@ def disagreements(
     for name, material in schema.materials.items():
         if material.valid is not None:
             yield from _in_order(material.valid.from_, material.valid.to, f"materials.{name}.valid")
+        if material.valid_temperature is not None:
+            low, high = material.valid_temperature.from_, material.valid_temperature.to
+            if low.value >= high.value:
+                found = f"from {low.written!r} to {high.written!r}"
+                yield f"materials.{name}.valid_temperature", Refusal(found, "from is the lower one")
         if material.static is not None and material.high_frequency is not None:
             yield from _levels(material.static, material.high_frequency, f"materials.{name}.static")
     yield from _flakes(schema)
@@ -52,7 +57,9 @@ def path_or_nearest(path: str, paths: Collection[str]) -> str | None:
 
 def of_mixture(path: str) -> bool:
     """Whether the mixture depends on the number at a path, so that it can be varied or found."""
-    return not path.startswith(_ASIDE) and not re.match(r"materials\.[^.]+\.(valid\.|saturation$)", path)
+    return not path.startswith(_ASIDE) and not re.match(
+        r"materials\.[^.]+\.(valid\.|valid_temperature\.|saturation$)", path
+    )
 
 
 def _in_order(start: Leaf, end: Leaf, path: str) -> Iterator[Finding]:

@@ -29,7 +29,22 @@ def of_material(name: str, material: Mapping[str, Any]) -> Iterator[Finding]:
                 yield f"{path}.{key}", Refusal(f"{key} beside permittivity", allowed)
     if "extension" in material and "table" not in material and "based_on" not in material:
         yield f"{path}.extension", Refusal("extension without table", "it continues a measured table")
+    yield from _warming(path, material)
     yield from _index(f"{path}.index", table(material, "index"))
+
+
+def _warming(path: str, material: Mapping[str, Any]) -> Iterator[Finding]:
+    """One temperature coefficient, and the temperature that it counts from."""
+    index = table(material, "index")
+    given = [("temperature_coefficient", "temperature_coefficient" in material)]
+    given += [(f"index.{key}", key in index) for key in ("dn_dt", "thermo_optic")]
+    present = [key for key, there in given if there]
+    if len(present) > 1:
+        found = f"the change with temperature is given {len(present)} times, by {' and '.join(present)}"
+        yield f"{path}.{present[1]}", Refusal(found, "give one of them")
+    if present and "temperature" not in material and "based_on" not in material:
+        found = f"{present[0]} without temperature"
+        yield f"{path}.{present[0]}", Refusal(found, "say at which temperature the description holds")
 
 
 def _response(path: str, quantity: str, response: Mapping[str, Any]) -> Iterator[Finding]:

@@ -26,6 +26,8 @@ Order = Annotated[Leaf, Number("number", minimum=-0.5, maximum=1.0)]
 Parts = Annotated[Leaf, Number("number", minimum=0.0)]
 Fraction = Annotated[Leaf, Number("fraction", minimum=0.0, maximum=1.0)]
 Spectral = Annotated[Leaf, Number("spectral", minimum=0.0, exclusive=True)]
+Temperature = Annotated[Leaf, Number("temperature", minimum=0.0, exclusive=True)]
+PerKelvin = Annotated[Leaf, Number("temperature coefficient")]
 Length = Annotated[Leaf, Number("length", minimum=0.0, exclusive=True)]
 Density = Annotated[Leaf, Number("density", minimum=0.0, exclusive=True)]
 Conductivity = Annotated[Leaf, Number("conductivity")]
@@ -42,7 +44,21 @@ class Section(BaseModel):
     )
 
 
-def _model_section(name: str, parameters: Mapping[str, Parameter], summary: str) -> type[Section]:
+class OfIndex(Section):
+    """What any index may say beside its model."""
+
+    reference: Literal["vacuum", "air"] | None = Field(
+        default=None, description="medium that the index refers to; vacuum if left out"
+    )
+    dn_dt: PerKelvin | None = Field(default=None, description="change of the index per kelvin")
+    thermo_optic: Annotated[list[Plain], Field(min_length=6, max_length=6)] | None = Field(
+        default=None, description="D0, D1, D2, E0, E1 and λ_TK of a glass catalogue, for wavelengths in µm"
+    )
+
+
+def _model_section(
+    name: str, parameters: Mapping[str, Parameter], summary: str, base: type[Section] = Section
+) -> type[Section]:
     """Table of one registered term or index model, made from its registry entry."""
     fields: dict[str, Any] = {"model": (Literal[name], Field(description=summary))}
     for key, parameter in parameters.items():
@@ -54,11 +70,11 @@ def _model_section(name: str, parameters: Mapping[str, Parameter], summary: str)
         if parameter.is_list:
             kind = Annotated[list[kind], Field(min_length=1)]
         fields[key] = (kind | None, Field(default=None, description=parameter.meaning))
-    return create_model("".join(part.title() for part in name.split("-")), __base__=Section, **fields)
+    return create_model("".join(part.title() for part in name.split("-")), __base__=base, **fields)
 
 
 TERM_SECTIONS = {n: _model_section(n, t.parameters, t.summary) for n, t in TERMS.items()}
-INDEX_SECTIONS = {n: _model_section(n, m.parameters, m.summary) for n, m in INDEX_MODELS.items()}
+INDEX_SECTIONS = {n: _model_section(n, m.parameters, m.summary, OfIndex) for n, m in INDEX_MODELS.items()}
 
 
 class OrChanges:
@@ -75,6 +91,14 @@ if TYPE_CHECKING:
 else:
     Term = Annotated[reduce(or_, TERM_SECTIONS.values()), Field(discriminator="model"), OrChanges()]
     Index = Annotated[reduce(or_, INDEX_SECTIONS.values()), Field(discriminator="model"), OrChanges()]
+
+
+class Conditions(Section):
+    """In what state the piece is."""
+
+    temperature: Temperature | None = Field(
+        default=None, description="of the piece; without it each material is as it was described"
+    )
 
 
 class Band(Section):
@@ -172,6 +196,13 @@ class Response(Section):
     high: Spectral | None = Field(default=None, description="where it ends; 1 THz if left out")
 
 
+class ValidTemperature(Section):
+    """Temperatures at which a material's description holds."""
+
+    from_: Temperature = Field(alias="from")
+    to: Temperature
+
+
 class Valid(Section):
     """Band in which a material's description holds."""
 
@@ -187,6 +218,11 @@ class Material(Section):
     kind: Literal["published", "memory", "practice", "invented"] | None = None
     based_on: Name | None = None
     valid: Valid | None = None
+    valid_temperature: ValidTemperature | None = None
+    temperature: Temperature | None = Field(default=None, description="at which the description holds")
+    temperature_coefficient: PerKelvin | None = Field(
+        default=None, description="relative change of the permittivity per kelvin"
+    )
     density: Density | None = None
     molar_mass: MolarMass | None = None
     permittivity: Response | None = None
@@ -269,6 +305,7 @@ class Schema(Section):
 
     title: str = ""
     band: Band | None = None
+    conditions: Conditions | None = None
     host: Host
     inclusions: dict[Name, Inclusion] = {}
     dopants: dict[Name, Dopant] = {}

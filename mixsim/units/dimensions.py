@@ -283,6 +283,18 @@ _ALL: Final = (
         shown=("K",),
     ),
     Dimension(
+        "temperature coefficient",
+        "1/K",
+        "a change per kelvin",
+        "110 ppm/K",
+        (
+            Unit("1/K", aliases=("K^-1", "1/°C", "°C^-1")),
+            Unit("ppm/K", per=1e6, aliases=("ppm/°C",)),
+            Unit("%/K", per=1e2, aliases=("%/°C",)),
+        ),
+        shown=("ppm/K",),
+    ),
+    Dimension(
         "mass",
         "kg",
         "a mass",

