@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Collection, Iterator, Mapping, Sequence
+from dataclasses import replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -56,6 +57,9 @@ def cautions(
 
 
 def _ranges(recipe: Recipe, mixture: Mixture, axis: Axis) -> Iterator[Caution]:
+    for name, part in recipe.parts.items():
+        for caution in _ranges(part, part.compile(), axis):
+            yield replace(caution, path=f"materials.{name}.recipe.{caution.path}")
     low, high = float(axis.omega.min()), float(axis.omega.max())
     for name in dict.fromkeys(phase.material for phase in mixture.phases if phase.name != VOIDS):
         valid = recipe.schema.materials[name].valid

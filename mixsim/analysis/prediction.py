@@ -234,6 +234,8 @@ def _evaluated(recipe: Recipe, vary: tuple[Varied, ...]) -> Prediction:
 def _reach(recipe: Recipe, mixture: Mixture, axis: Axis) -> None:
     """Refuse a band that a measured table does not cover: it is never extrapolated."""
     faults = []
+    for part in recipe.parts.values():
+        _reach(part, part.compile(), axis)
     for name in dict.fromkeys(phase.material for phase in mixture.phases):
         continued = recipe.schema.materials[name].extension is not None if name in recipe.tables else False
         if (table := recipe.tables.get(name)) is not None and not continued:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from dataclasses import replace
 from typing import Any
 
 from mixsim.composition import number_density_from_mole_fraction, number_density_from_weight_fraction
@@ -19,6 +20,7 @@ from mixsim.dispersion.extension import Extension
 from mixsim.mixing import rule_named
 from mixsim.mixture.inputs import Derived, Fixed, Input, Leafed
 from mixsim.mixture.mixture import HOST, Constituent, Mixture
+from mixsim.mixture.nested import InnerDensity, Mixed
 from mixsim.mixture.shapes import Shape
 from mixsim.mixture.spectra import (
     VACUUM,
@@ -74,7 +76,7 @@ class _Compiler:
                 name,
                 Doped(permittivity, doping) if doping else permittivity,
                 self._permeability(name),
-                self._maybe(f"materials.{name}.density"),
+                self._density(name),
             ),
             inclusions=tuple(self._inclusion(inclusion) for inclusion in self.schema.inclusions),
             voids=self._maybe("voids.volume_fraction"),
@@ -95,7 +97,7 @@ class _Compiler:
             material,
             self._permittivity(material),
             self._permeability(material),
-            self._maybe(f"materials.{material}.density"),
+            self._density(material),
             basis,
             Leafed(f"{path}.{basis}"),
             self._shape(name),
@@ -136,6 +138,8 @@ class _Compiler:
         material, path = self.schema.materials[name], f"materials.{name}"
         if material.permittivity is not None:
             return self._response(material.permittivity, f"{path}.permittivity")
+        if name in self.recipe.parts:
+            return self._part(name)
         stated = self._maybe(f"{path}.static"), self._maybe(f"{path}.high_frequency")
         if material.table is not None:
             return Measured(self.recipe.tables[name], *stated, extension=self._extension(name))
@@ -162,11 +166,25 @@ class _Compiler:
         constants = tuple(Leafed(f"{path}.thermo_optic.{i}") for i in range(len(index.thermo_optic)))
         return IndexWarming(difference, thermo_optic=constants)
 
+    def _part(self, name: str) -> Mixed:
+        warm = "conditions.temperature" in self.recipe.leaves
+        return Mixed(self.recipe.parts[name].compile(), f"materials.{name}.recipe.", warm)
+
+    def _density(self, name: str) -> Input | None:
+        """As stated; else that of the recipe that the material is."""
+        stated = self._maybe(f"materials.{name}.density")
+        if stated is not None or name not in self.recipe.parts:
+            return stated
+        return InnerDensity(self._part(name))
+
     def _extension(self, name: str, *, magnetic: bool = False) -> Extension | None:
         wanted = self.schema.materials[name].extension
         return None if wanted is None else Extension(self.recipe.tables[name], magnetic)
 
     def _permeability(self, name: str) -> Spectrum:
+        if name in self.recipe.parts:
+            part = self._part(name)
+            return replace(part, quantity="permeability") if part.mixture.magnetic else VACUUM
         permeability, table = self.schema.materials[name].permeability, self.recipe.tables.get(name)
         if permeability is None:
             if table is None or table.permeability is None:

@@ -159,19 +159,10 @@ class Mixture:
         axes = self._axes(values)
         with np.errstate(all="ignore"):
             x = axes.values()
-            composed = self._composed(x)
-
-            def mix(phases: Sequence[Any]) -> Array:
-                return np.asarray(self._mixed(phases, composed), dtype=complex)
-
-            def both(spectra: Sequence[Spectrum]) -> tuple[LowFrequency, Array]:
-                rates, plateaus = zip(*(spectrum.low(x) for spectrum in spectra), strict=True)
-                return low_frequency(mix, rates, plateaus), mix([spectrum.high(x) for spectrum in spectra])
-
-            low, high = both([phase.permittivity for phase in self.phases])
+            low, high = self.ends("permittivity", x)
             static_permeability = high_permeability = np.asarray(1.0 + 0.0j)
             if self.magnetic:
-                magnetic, high_permeability = both([phase.permeability for phase in self.phases])
+                magnetic, high_permeability = self.ends("permeability", x)
                 static_permeability = magnetic.static
 
         def full(limit: Any) -> Array:
@@ -233,6 +224,33 @@ class Mixture:
             density=density,
             number_densities={name: full(number(x)) for name, number in self.number_densities.items()},
         )
+
+    def spectrum(self, quantity: str, x: Values, omega: Any) -> Any:
+        """ε or μ for numbers that broadcast with some angular frequencies [rad/s]: as a part of another."""
+        return self.mixed([getattr(phase, quantity).at(x, omega) for phase in self.phases], x)
+
+    def mixed(self, phases: Sequence[Any], x: Values) -> Any:
+        """What the rule makes of the phases for some numbers."""
+        return self._mixed(phases, self._composed(x))
+
+    def ends(self, quantity: str, x: Values) -> tuple[LowFrequency, Array]:
+        """Behaviour of ε or μ as ω → 0, and its limit as ω → ∞, for some numbers."""
+        composed = self._composed(x)
+
+        def mix(phases: Sequence[Any]) -> Array:
+            return np.asarray(self._mixed(phases, composed), dtype=complex)
+
+        spectra = [getattr(phase, quantity) for phase in self.phases]
+        rates, plateaus = zip(*(spectrum.low(x) for spectrum in spectra), strict=True)
+        return low_frequency(mix, rates, plateaus), mix([spectrum.high(x) for spectrum in spectra])
+
+    def density_of(self, x: Values) -> Any:
+        """Density for some numbers [kg/m³]; NaN where a constituent has none."""
+        if self.density is not None:
+            return self.density(x)
+        grains = [self.host, *self.inclusions]
+        each = [np.nan if phase.density is None else phase.density(x) for phase in grains]
+        return sum(f * rho for f, rho in zip(self._fractions(x), each, strict=False))
 
     def constituents(self, omega: ArrayLike) -> Mapping[str, Response]:
         """Permittivity and permeability of host and inclusions on their own, at the recipe's numbers.

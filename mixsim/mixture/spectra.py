@@ -10,7 +10,7 @@ from __future__ import annotations
 from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass
 from functools import cached_property
-from typing import Any, Protocol
+from typing import Any, Protocol, runtime_checkable
 
 import numpy as np
 
@@ -40,6 +40,14 @@ class Spectrum(Protocol):
 
     def high(self, x: Values) -> Any:
         """Limit as ω → ∞."""
+
+
+@runtime_checkable
+class Holding(Protocol):
+    """A spectrum that knows itself which of its parts may be computed once."""
+
+    def held(self, x: Values, omega: Any, varied: frozenset[str]) -> Here:
+        """As the function of that name."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -317,6 +325,8 @@ def held(part: Spectrum | BoundTerm, x: Values, omega: Any, varied: frozenset[st
     if not part.paths & varied:
         known = part.at(x, omega)
         return lambda _: known
+    if isinstance(part, Holding):
+        return part.held(x, omega, varied)
     if isinstance(part, TermSum) and part.terms:
         start: Here = part.level
     elif isinstance(part, Doped):

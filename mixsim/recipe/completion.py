@@ -11,7 +11,7 @@ from mixsim.errors import Refusal
 from mixsim.recipe import library
 from mixsim.recipe.faults import Finding
 
-_DESCRIPTIONS = ("permittivity", "index", "table")
+_DESCRIPTIONS = ("permittivity", "index", "table", "recipe")
 _SAME = (
     {"infinity", "susceptibility"},
     {"resonance_wavelengths", "resonance_wavelengths_squared"},

@@ -11,6 +11,7 @@ from mixsim.recipe.faults import Finding
 from mixsim.recipe.raw import one_of, table, tables
 from mixsim.units import read
 
+_DESCRIPTIONS = ("permittivity", "index", "table", "recipe")
 _PAIR = ("loss_tangent", "at", "model", "low", "high")
 
 
@@ -18,15 +19,19 @@ def of_material(name: str, material: Mapping[str, Any]) -> Iterator[Finding]:
     """Contradictions and gaps of one material."""
     path = f"materials.{name}"
     if "based_on" not in material:
-        yield from one_of(path, material, ("permittivity", "index", "table"), f"the permittivity of {name}")
+        yield from one_of(path, material, _DESCRIPTIONS, f"the permittivity of {name}")
     for quantity in ("permittivity", "permeability"):
         if isinstance(material.get(quantity), Mapping):
             yield from _response(f"{path}.{quantity}", quantity, material[quantity])
-    if "permittivity" in material:
+    if "recipe" in material and "permeability" in material:
+        found = "permeability beside recipe, which has its own"
+        yield f"{path}.permeability", Refusal(found, "leave it out")
+    if "permittivity" in material or "recipe" in material:
         for key in ("static", "high_frequency"):
             if key in material:
                 allowed = "it is for index models and tables; terms have exact limits of their own"
-                yield f"{path}.{key}", Refusal(f"{key} beside permittivity", allowed)
+                beside = "permittivity" if "permittivity" in material else "recipe"
+                yield f"{path}.{key}", Refusal(f"{key} beside {beside}", allowed)
     if "extension" in material and "table" not in material and "based_on" not in material:
         yield f"{path}.extension", Refusal("extension without table", "it continues a measured table")
     yield from _warming(path, material)

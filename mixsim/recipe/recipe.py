@@ -17,9 +17,10 @@ from mixsim.recipe.completion import complete, once, tables
 from mixsim.recipe.consistency import contradictions
 from mixsim.recipe.faults import Finding, as_meant, faults_of, findings_of
 from mixsim.recipe.leaves import Number, ranges, walk
+from mixsim.recipe.nesting import adopted, densities, parts, settings_inside
 from mixsim.recipe.schema import Schema
 from mixsim.recipe.settings import COMMAND_LINE, apply, parsed
-from mixsim.recipe.syntax import parsed_toml
+from mixsim.recipe.syntax import parsed_toml, text_of
 from mixsim.units import Leaf, show, written_unit
 
 if TYPE_CHECKING:
@@ -48,6 +49,8 @@ class Recipe:
         What the command line changed, path → value.
     folder
         Where the files that it names are looked for.
+    parts
+        Recipes of those of its materials that have one, by their names.
     """
 
     schema: Schema
@@ -58,6 +61,7 @@ class Recipe:
     text: str
     settings: Mapping[str, Any]
     folder: Path
+    parts: Mapping[str, Recipe]
 
     @cached_property
     def digest(self) -> str:
@@ -65,6 +69,7 @@ class Recipe:
         import hashlib
 
         content = self.text + repr(sorted(self.settings.items()))
+        content += "".join(part.digest for part in self.parts.values())
         return hashlib.sha256(content.encode()).hexdigest()[:16]
 
     def leaf(self, path: str, *, option: str) -> Leaf:
@@ -147,35 +152,8 @@ def load(path: str | Path, settings: Mapping[str, Any] | None = None) -> Recipe:
     """
     file = Path(path)
     text = text_of(file)
-    return parse(text, file=str(path), folder=file.parent, settings=settings)
-
-
-def text_of(file: Path) -> str:
-    """Text of a recipe file.
-
-    Raises
-    ------
-    BadInput
-        Where it cannot be read, is binary or empty.
-    """
-
-    def fault(found: str, allowed: str) -> BadInput:
-        return BadInput([Fault(str(file), "", found, allowed)])
-
-    try:
-        text = file.read_bytes().decode("utf-8-sig")
-    except FileNotFoundError:
-        raise fault("no such file", "name a recipe (TOML) that can be read") from None
-    except OSError as error:
-        reason = (error.strerror or "it cannot be read").lower()
-        raise fault(reason, "name a recipe (TOML) that can be read") from None
-    except UnicodeDecodeError:
-        raise fault("the file is not UTF-8 text", "a recipe is a TOML file") from None
-    if "\x00" in text:
-        raise fault("the file is binary", "a recipe is a TOML file")
-    if not text.strip():
-        raise fault("the file is empty", "mixsim draft writes a starter recipe")
-    return text
+    within = (str(file.resolve()),)
+    return _parsed(text, file=str(path), folder=file.parent, settings=settings or {}, within=within)
 
 
 def parse(
@@ -186,12 +164,34 @@ def parse(
     settings: Mapping[str, Any] | None = None,
 ) -> Recipe:
     """Read a recipe from TOML text; as `load`, with `folder` for the files that it names."""
-    changed = dict(settings or {})
-    raw = parsed_toml(text, file)
+    return _parsed(text, file=file, folder=folder or Path(), settings=settings or {}, within=())
+
+
+def _parsed(
+    text: str | None,
+    *,
+    file: str,
+    folder: Path,
+    settings: Mapping[str, Any],
+    within: tuple[str, ...],
+    raw: dict[str, Any] | None = None,
+) -> Recipe:
+    """A recipe from its text, or from what stands in a material; `within` are the files around it."""
+    raw = parsed_toml(text or "", file) if raw is None else raw
+    text = text or ""
+    changed = dict(settings)
+    own, inside = settings_inside(raw, changed)
     findings: list[Finding] = []
-    for path, value in changed.items():
-        findings += apply(raw, path, value, changed)
+    for path, value in own.items():
+        findings += apply(raw, path, value, own)
     findings += complete(raw)
+    found, wrong, faults = parts(
+        raw, inside, parse=_parsed, file=file, folder=folder, text=text, within=within
+    )
+    findings += wrong
+    from_parts = {name: density for name, density in densities(found).items() if _undensed(raw, name)}
+    for name, density in from_parts.items():
+        raw["materials"][name]["density"] = density
     schema = None
     try:
         schema = Schema.model_validate(raw)
@@ -201,12 +201,21 @@ def parse(
     if (meant := as_meant(raw, findings)) is not None:  # a word put right fills the gap that it leaves
         real = {(path, refusal.found) for path, refusal in contradictions(meant)}
         gaps = [(path, refusal) for path, refusal in gaps if (path, refusal.found) in real]
-    spectra, wrong = tables(raw, folder or Path())
+    spectra, wrong = tables(raw, folder)
     findings = once([*findings, *gaps, *wrong], raw)
-    if schema is None or findings:
-        raise BadInput(faults_of(findings, file=file, text=text, settings=changed))
+    if schema is None or findings or faults:
+        raise BadInput([*faults_of(findings, file=file, text=text, settings=own), *faults])
 
     leaves, allowed = dict(walk(schema)), dict(ranges(schema))
+    for name in from_parts:  # it follows from the numbers inside
+        del leaves[f"materials.{name}.density"]
+    more, more_allowed = adopted(found, warm="conditions.temperature" in leaves)
+    leaves, allowed = {**leaves, **more}, {**allowed, **more_allowed}
     if wrong := list(disagreements(schema, leaves, allowed)):
         raise BadInput(faults_of(wrong, file=file, text=text, settings=changed))
-    return Recipe(schema, leaves, allowed, spectra, file, text, changed, folder or Path())
+    return Recipe(schema, leaves, allowed, spectra, file, text, changed, folder, found)
+
+
+def _undensed(raw: Mapping[str, Any], name: str) -> bool:
+    """Whether a material of the recipe states no density of its own."""
+    return "density" not in raw["materials"][name]

@@ -233,6 +233,9 @@ class Material(Section):
     )
     index: Index | None = None
     table: str | None = None
+    recipe: str | dict[str, Any] | None = Field(
+        default=None, description="file of a recipe, or a recipe: the material is that mixture"
+    )
     extension: Literal["causal"] | None = Field(
         default=None, description="continues a table beyond its ends; without it, nothing is known there"
     )

@@ -19,7 +19,7 @@ COMMAND_LINE = "command line"
 _WHOLE = {
     "inclusions": ("material",),
     "dopants": ("terms",),
-    "materials": ("permittivity", "index", "table", "based_on"),
+    "materials": ("permittivity", "index", "table", "recipe", "based_on"),
 }
 _FORM = "PATH=VALUE, for example voids.volume_fraction=2%"
 

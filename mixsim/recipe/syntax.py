@@ -5,6 +5,7 @@ from __future__ import annotations
 import re
 from collections.abc import Mapping
 from datetime import date, time
+from pathlib import Path
 from typing import Any
 
 import tomli
@@ -82,3 +83,31 @@ def _written(value: Any) -> str:
     if isinstance(value, list):
         return "[" + ", ".join(_written(item) for item in value) + "]"
     return repr(value)
+
+
+def text_of(file: Path) -> str:
+    """Text of a recipe file.
+
+    Raises
+    ------
+    BadInput
+        Where it cannot be read, is binary or empty.
+    """
+
+    def fault(found: str, allowed: str) -> BadInput:
+        return BadInput([Fault(str(file), "", found, allowed)])
+
+    try:
+        text = file.read_bytes().decode("utf-8-sig")
+    except FileNotFoundError:
+        raise fault("no such file", "name a recipe (TOML) that can be read") from None
+    except OSError as error:
+        reason = (error.strerror or "it cannot be read").lower()
+        raise fault(reason, "name a recipe (TOML) that can be read") from None
+    except UnicodeDecodeError:
+        raise fault("the file is not UTF-8 text", "a recipe is a TOML file") from None
+    if "\x00" in text:
+        raise fault("the file is binary", "a recipe is a TOML file")
+    if not text.strip():
+        raise fault("the file is empty", "mixsim draft writes a starter recipe")
+    return text
