@@ -40,7 +40,8 @@ def formulas() -> Iterator[Callable[..., Any]]:
         yield from (function for function in given if function is not None)
     yield from (mixing.wiener, mixing.hashin_shtrikman)
     yield from (mixing.spheroid_factors, mixing.ellipsoid_factors)
-    yield from (mixing.in_plane_grains, mixing.ordered_grains, mixing.ratios_about)
+    yield from (mixing.coated_grain, mixing.growth_of_sphere, mixing.growth_of_ellipsoid)
+    yield from (mixing.confocal_axes, mixing.in_plane_grains, mixing.ordered_grains, mixing.ratios_about)
     yield composition.number_density_from_weight_fraction
     yield composition.number_density_from_mole_fraction
     yield from (q.function for q in observables.QUANTITIES.values())

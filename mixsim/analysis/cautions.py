@@ -175,7 +175,11 @@ def _sizes(
 
 def _crowding(recipe: Recipe, mixture: Mixture, composition: Composition) -> Iterator[Caution]:
     """Loading against packing, percolation and what is said of contact."""
-    fractions = {g.name: float(np.max(composition.volume_fractions[g.name])) for g in mixture.inclusions}
+    volumes = composition.volume_fractions
+    fractions = {
+        grain.name: float(np.max(sum(volumes[part.name] for part in (grain, *grain.shells))))
+        for grain in mixture.inclusions
+    }
     total = sum(fractions.values())
     if mixture.density is not None:
         yield from _partial_volumes(composition)

@@ -18,8 +18,9 @@ def applicable_rules(recipe: Recipe, mixture: Mixture) -> tuple[str, ...]:
 
 
 def conducts(mixture: Mixture, name: str) -> bool:
-    """Whether a constituent conducts at dc, at the numbers of the recipe."""
+    """Whether a constituent conducts at dc where it is touched, at the numbers of the recipe."""
     phase = next(phase for phase in mixture.phases if phase.name == name)
+    phase = phase.shells[-1] if phase.shells else phase
     return bool(np.any(np.asarray(phase.permittivity.low(mixture.defaults)[0]) > 0.0))
 
 

@@ -25,11 +25,17 @@ class Loading:
         Amount on that basis; parts per hundred of host for ``phr`` [-].
     density
         Density of the constituent [kg/m^3]; may be None under a volume basis with additive volumes.
+    coat_volume
+        Volume of the coating of its grains over their own [-].
+    coat_mass
+        Mass of that coating per volume of the grains [kg/m^3]; may be None where the density may.
     """
 
     basis: Basis
     amount: ArrayLike
     density: ArrayLike | None
+    coat_volume: ArrayLike = 0.0
+    coat_mass: ArrayLike | None = 0.0
 
 
 def volume_fractions(
@@ -56,7 +62,7 @@ def volume_fractions(
     Returns
     -------
     fractions
-        Host, constituents in order, voids; each of the broadcast shape [-].
+        Host, constituents in order without their coatings, voids; each of the broadcast shape [-].
 
     Raises
     ------
@@ -68,9 +74,10 @@ def volume_fractions(
     With m the mass per volume of mixture, V the volume given outright and M its mass,
     weight fractions w_k = m_k/m and phr p_k = 100 m_k/m_host, the solids volume 1 − v closes::
 
-        1 − v = V + m Σ w_k/ρ_k + m_host (1/ρ_host + Σ p_k/(100 ρ_k))
-        m = M + m Σ w_k + m_host (1 + Σ p_k/100)
+        1 − v = V + m Σ w_k (1 + c_k)/ρ_k + m_host (1/ρ_host + Σ p_k (1 + c_k)/(100 ρ_k))
+        m = M + m Σ w_k (1 + s_k/ρ_k) + m_host (1 + Σ p_k (1 + s_k/ρ_k)/100)
 
+    with c and s the volume and the mass of a coating per volume of grain; V and M hold those of theirs:
     two linear equations for m and m_host. With a measured density m = ρ and only the second is used.
     Valid for: any loadings; a fraction outside 0…1 is returned as it comes, never clipped.
 
@@ -87,10 +94,11 @@ def volume_fractions(
     if all(item.basis in ("volume_fraction", "volume_fraction_of_solids") for item in loadings):
         given = [_given_volume(item, v) for item in loadings]
         if mixture_density is None:
-            host = 1.0 - v - sum(given, np.float64(0.0))
+            filled = (f * (1.0 + np.asarray(i.coat_volume)) for f, i in zip(given, loadings, strict=True))
+            host = 1.0 - v - sum(filled, np.float64(0.0))
         else:
             given_mass = sum(
-                (f * _density(item.density) for f, item in zip(given, loadings, strict=True)), np.float64(0.0)
+                (f * _mass(item) for f, item in zip(given, loadings, strict=True)), np.float64(0.0)
             )
             host = (np.asarray(mixture_density, dtype=float) - given_mass) / _density(host_density)
         return (host, *given, v)
@@ -105,13 +113,17 @@ def volume_fractions(
     for item in loadings:
         rho = _density(item.density)
         amount = np.asarray(item.amount, dtype=float)
+        grown, heavy = 1.0 + np.asarray(item.coat_volume), _mass(item)
         if item.basis == "weight_fraction":
-            weights, per_weight = weights + amount, per_weight + amount / rho
+            weights, per_weight = weights + amount * (heavy / rho), per_weight + amount * (grown / rho)
         elif item.basis == "phr":
-            parts, per_host = parts + amount / 100.0, per_host + amount / 100.0 / rho
+            parts, per_host = (
+                parts + amount / 100.0 * (heavy / rho),
+                per_host + amount / 100.0 * (grown / rho),
+            )
         else:
             f = _given_volume(item, v)
-            volume, mass = volume + f, mass + f * rho
+            volume, mass = volume + f * grown, mass + f * heavy
 
     if mixture_density is None:
         host_share = (1.0 - weights) / (1.0 + parts)
@@ -134,6 +146,11 @@ def volume_fractions(
 def _given_volume(item: Loading, voids: NDArray[np.float64]) -> Any:
     amount = np.asarray(item.amount, dtype=float)
     return amount * (1.0 - voids) if item.basis == "volume_fraction_of_solids" else amount
+
+
+def _mass(item: Loading) -> Any:
+    """Mass of grains and their coating per volume of the grains."""
+    return _density(item.density) + _density(item.coat_mass)
 
 
 def _density(density: ArrayLike | None) -> Any:

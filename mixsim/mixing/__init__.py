@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from mixsim.mixing.bounds import hashin_shtrikman, wiener
 from mixsim.mixing.bruggeman import bruggeman
+from mixsim.mixing.coated import coated_grain, confocal_axes, growth_of_ellipsoid, growth_of_sphere
 from mixsim.mixing.depolarisation import (
     DISC,
     NEEDLE,
@@ -37,7 +38,11 @@ __all__ = [
     "aligned_grains",
     "aligned_spheroid",
     "bruggeman",
+    "coated_grain",
+    "confocal_axes",
     "ellipsoid_factors",
+    "growth_of_ellipsoid",
+    "growth_of_sphere",
     "hashin_shtrikman",
     "in_plane_grains",
     "lorentz_lorenz",

@@ -9,6 +9,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from mixsim.errors import Refusal
+from mixsim.mixing.carlson import carlson_d
 
 Array = NDArray[Any]
 
@@ -37,8 +38,6 @@ _SERIES_WITHIN = 0.1
 _SERIES = (*(-2.0 / ((2 * k + 1) * (2 * k + 3)) for k in range(15, 0, -1)), 1.0 / 3.0)
 
 _FURTHEST = 1e100  # squares of axes further apart leave the range of floats
-_ALIKE = 1e-3  # relative spread of R_D's arguments from which its series is exact to rounding
-_DUPLICATIONS = 200  # more than the most unlike axes need: some forty
 
 
 def spheroid_factors(aspect_ratio: ArrayLike) -> tuple[Array, Array]:
@@ -159,33 +158,8 @@ def ellipsoid_factors(first: ArrayLike, second: ArrayLike, third: ArrayLike) -> 
     a, b, c = (axis / most for axis in axes)
     volume = a * b * c / 3.0
     turns = ((b, c, a), (c, a, b), (a, b, c))
-    along, across, deep = (volume * _carlson_d(x * x, y * y, z * z) for x, y, z in turns)
+    along, across, deep = (volume * carlson_d(x * x, y * y, z * z) for x, y, z in turns)
     return along[()], across[()], deep[()]
-
-
-def _carlson_d(x: Array, y: Array, z: Array) -> Array:
-    """R_D(x, y, z) by duplication, x and y on the same footing."""
-    mean = (x + y + 3.0 * z) / 5.0
-    total, weight = np.zeros_like(mean), 1.0
-    for _ in range(_DUPLICATIONS):
-        roots = np.sqrt(x), np.sqrt(y), np.sqrt(z)
-        shift = roots[0] * roots[1] + roots[0] * roots[2] + roots[1] * roots[2]
-        total = total + weight / (roots[2] * (z + shift))
-        weight /= 4.0
-        x, y, z, mean = (0.25 * (value + shift) for value in (x, y, z, mean))
-        spread = np.maximum(np.abs(mean - x), np.maximum(np.abs(mean - y), np.abs(mean - z)))
-        if not np.any(spread > _ALIKE * mean):
-            break
-    u, v = 1.0 - x / mean, 1.0 - y / mean
-    w = -(u + v) / 3.0
-    e2 = u * v - 6.0 * w**2
-    e3 = (3.0 * u * v - 8.0 * w**2) * w
-    e4 = 3.0 * (u * v - w**2) * w**2
-    e5 = u * v * w**3
-    series = 1.0 - 3.0 * e2 / 14.0 + e3 / 6.0 + 9.0 * e2**2 / 88.0 - 3.0 * e4 / 22.0
-    series += -9.0 * e2 * e3 / 52.0 + 3.0 * e5 / 26.0
-    remainder: Array = 3.0 * total + weight * series / (mean * np.sqrt(mean))
-    return remainder
 
 
 def same_length(

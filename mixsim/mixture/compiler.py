@@ -35,7 +35,7 @@ from mixsim.mixture.spectra import (
     TermSum,
     Warmed,
 )
-from mixsim.recipe import Recipe, loading_of
+from mixsim.recipe import Coating, Recipe, loading_of, shells_of
 from mixsim.units import read
 
 
@@ -101,6 +101,19 @@ class _Compiler:
             basis,
             Leafed(f"{path}.{basis}"),
             self._shape(name),
+            self._maybe(f"{path}.diameter"),
+            tuple(self._shell(name, *shell) for shell in shells_of(inclusion)),
+        )
+
+    def _shell(self, inclusion: str, key: str, shell: Coating) -> Constituent:
+        """A layer around the grains of an inclusion; `key` is its place below the inclusion."""
+        return Constituent(
+            f"{inclusion}.{key}",
+            shell.material,
+            self._permittivity(shell.material),
+            self._permeability(shell.material),
+            self._density(shell.material),
+            thickness=Leafed(f"inclusions.{inclusion}.{key}.thickness"),
         )
 
     def _shape(self, name: str) -> Shape | None:

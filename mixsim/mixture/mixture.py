@@ -14,6 +14,7 @@ from mixsim.composition import Basis, Loading, volume_fractions
 from mixsim.errors import Refusal, nearest
 from mixsim.mixing import SPHERE, Depolarisation, Rule, rule_named
 from mixsim.mixture.blocks import Axes, blocks, numbers
+from mixsim.mixture.coats import Coat, CoatedAxis
 from mixsim.mixture.inputs import Input, Values
 from mixsim.mixture.response import Array, Composition, Limits, Response
 from mixsim.mixture.shapes import Shape
@@ -42,6 +43,12 @@ class Constituent:
         Its loading; None for host and voids.
     shape
         Shape of its grains and how they lie; None for spheres.
+    diameter
+        Of the sphere of a grain's volume, where it is given.
+    shells
+        Layers around its grains, from the core outwards.
+    thickness
+        Of such a layer; None for all that is none.
     """
 
     name: str
@@ -52,6 +59,51 @@ class Constituent:
     basis: Basis | None = None
     amount: Input | None = None
     shape: Shape | None = None
+    diameter: Input | None = None
+    shells: tuple[Constituent, ...] = ()
+    thickness: Input | None = None
+
+    @property
+    def plain(self) -> bool:
+        """Whether its grains are spheres without a coating."""
+        return self.shape is None and not self.shells
+
+    @cached_property
+    def coat(self) -> Coat | None:
+        """Sizes of its layers; None where there are none."""
+        thicknesses = tuple(shell.thickness for shell in self.shells if shell.thickness is not None)
+        if not self.shells:
+            return None
+        assert self.diameter is not None
+        return Coat(self.diameter, thicknesses, self.shape)
+
+    def growths(self, x: Values) -> list[Any]:
+        """Volume out to the end of each of its layers over that of the core, and first 1 for itself."""
+        return [np.asarray(1.0), *([] if self.coat is None else self.coat.growths(x))]
+
+    @cached_property
+    def kinds(self) -> tuple[Kind, ...]:
+        """What a rule is given for it: itself, or a homogeneous grain for each axis of a coated one."""
+        if self.coat is None:
+            return (Kind(self.permittivity, self.permeability, self.shape),)
+        found = []
+        for place in range(self.coat.kinds):
+            axis = CoatedAxis(self.coat, place)
+            permittivity, permeability = (
+                axis.spectrum(getattr(self, quantity), [getattr(shell, quantity) for shell in self.shells])
+                for quantity in ("permittivity", "permeability")
+            )
+            found.append(Kind(permittivity, permeability, None if self.shape is None else axis))
+        return tuple(found)
+
+
+@dataclass(frozen=True, eq=False)
+class Kind:
+    """One phase as a rule is given it; shape is None for spheres."""
+
+    permittivity: Spectrum
+    permeability: Spectrum
+    shape: Shape | CoatedAxis | None
 
 
 @dataclass(frozen=True, eq=False)
@@ -127,7 +179,7 @@ class Mixture:
             here = axis[window]
             held_here = {
                 quantity: [
-                    held(getattr(phase, quantity), axes.scalars, here, axes.varied) for phase in self.phases
+                    held(getattr(kind, quantity), axes.scalars, here, axes.varied) for kind in self.kinds
                 ]
                 for quantity in answers
             }
@@ -205,8 +257,9 @@ class Mixture:
                 spread = spread.reshape(spread.shape[: -axes.trail])
             return np.broadcast_to(spread, axes.batch).copy()
 
-        volumes = dict(zip(self._names, self._fractions(x), strict=True))
-        densities = [phase.density(x) if phase.density else None for phase in (self.host, *self.inclusions)]
+        volumes = self._volumes(x)
+        solid = [phase for phase in self.phases if phase.name != VOIDS]
+        densities = [phase.density(x) if phase.density else None for phase in solid]
         weights = density = None
         if all(known is not None for known in densities):
             masses = {name: volumes[name] * rho for name, rho in zip(volumes, densities, strict=False)}
@@ -227,10 +280,10 @@ class Mixture:
 
     def spectrum(self, quantity: str, x: Values, omega: Any) -> Any:
         """ε or μ for numbers that broadcast with some angular frequencies [rad/s]: as a part of another."""
-        return self.mixed([getattr(phase, quantity).at(x, omega) for phase in self.phases], x)
+        return self.mixed([getattr(kind, quantity).at(x, omega) for kind in self.kinds], x)
 
     def mixed(self, phases: Sequence[Any], x: Values) -> Any:
-        """What the rule makes of the phases for some numbers."""
+        """What the rule makes of the phases that it is given, `kinds`, for some numbers."""
         return self._mixed(phases, self._composed(x))
 
     def ends(self, quantity: str, x: Values) -> tuple[LowFrequency, Array]:
@@ -240,7 +293,7 @@ class Mixture:
         def mix(phases: Sequence[Any]) -> Array:
             return np.asarray(self._mixed(phases, composed), dtype=complex)
 
-        spectra = [getattr(phase, quantity) for phase in self.phases]
+        spectra = [getattr(kind, quantity) for kind in self.kinds]
         rates, plateaus = zip(*(spectrum.low(x) for spectrum in spectra), strict=True)
         return low_frequency(mix, rates, plateaus), mix([spectrum.high(x) for spectrum in spectra])
 
@@ -248,9 +301,10 @@ class Mixture:
         """Density for some numbers [kg/m³]; NaN where a constituent has none."""
         if self.density is not None:
             return self.density(x)
-        grains = [self.host, *self.inclusions]
-        each = [np.nan if phase.density is None else phase.density(x) for phase in grains]
-        return sum(f * rho for f, rho in zip(self._fractions(x), each, strict=False))
+        volumes = self._volumes(x)
+        solid = [phase for phase in self.phases if phase.name != VOIDS]
+        each = {phase.name: np.nan if phase.density is None else phase.density(x) for phase in solid}
+        return sum(volumes[name] * rho for name, rho in each.items())
 
     def constituents(self, omega: ArrayLike) -> Mapping[str, Response]:
         """Permittivity and permeability of host and inclusions on their own, at the recipe's numbers.
@@ -280,9 +334,18 @@ class Mixture:
 
     @cached_property
     def phases(self) -> tuple[Constituent, ...]:
-        """Constituents in the order in which the rule is given them, host first."""
-        voids = Constituent(VOIDS, "vacuum", VACUUM, VACUUM)
-        return (self.host, *self.inclusions, *([] if self.voids is None else [voids]))
+        """All that is made of one material: host, each inclusion and the layers of its grains, voids."""
+        grains = (part for grain in self.inclusions for part in (grain, *grain.shells))
+        return (self.host, *grains, *self._void)
+
+    @cached_property
+    def _void(self) -> tuple[Constituent, ...]:
+        return () if self.voids is None else (Constituent(VOIDS, "vacuum", VACUUM, VACUUM),)
+
+    @cached_property
+    def kinds(self) -> tuple[Kind, ...]:
+        """Phases in the order in which the rule is given them, host first."""
+        return tuple(kind for part in (self.host, *self.inclusions, *self._void) for kind in part.kinds)
 
     @property
     def magnetic(self) -> bool:
@@ -293,10 +356,6 @@ class Mixture:
     def aligned(self) -> bool:
         """Whether the answers have principal axes."""
         return any(grain.shape is not None and grain.shape.principal for grain in self.inclusions)
-
-    @property
-    def _names(self) -> list[str]:
-        return [phase.name for phase in self.phases]
 
     def _axes(self, values: Mapping[str, ArrayLike]) -> Axes:
         for path in values:
@@ -311,16 +370,34 @@ class Mixture:
         return self.rule.function(phases, fractions=fractions, depolarisations=shapes)
 
     def _composed(self, x: Values) -> tuple[tuple[Any, ...], list[Depolarisation]]:
-        shapes = (phase.shape for phase in self.phases)
-        return self._fractions(x), [SPHERE if shape is None else shape(x) for shape in shapes]
+        """Fractions and depolarisations of the phases that the rule is given."""
+        volumes = iter(self._fractions(x))
+        fractions = []
+        for part in (self.host, *self.inclusions, *self._void):
+            whole = next(volumes) * part.growths(x)[-1]
+            fractions += [whole] * len(part.kinds)
+        shapes = (kind.shape for kind in self.kinds)
+        return tuple(fractions), [SPHERE if shape is None else shape(x) for shape in shapes]
+
+    def _volumes(self, x: Values) -> dict[str, Any]:
+        """Volume fraction of everything that is made of one material, by name."""
+        found = {}
+        for part, fraction in zip(
+            (self.host, *self.inclusions, *self._void), self._fractions(x), strict=True
+        ):
+            growths = part.growths(x)
+            found[part.name] = fraction
+            for shell, inside, outside in zip(part.shells, growths, growths[1:], strict=False):
+                found[shell.name] = fraction * (outside - inside)
+        return found
 
     def _fractions(self, x: Values) -> tuple[Any, ...]:
+        """Volume fractions of host, inclusions without their layers, and voids."""
         loadings = []
         for grain in self.inclusions:
             assert grain.basis is not None and grain.amount is not None
-            loadings.append(
-                Loading(grain.basis, grain.amount(x), grain.density(x) if grain.density else None)
-            )
+            density = grain.density(x) if grain.density else None
+            loadings.append(Loading(grain.basis, grain.amount(x), density, *_coating(grain, x)))
         fractions = volume_fractions(
             loadings,
             host_density=self.host.density(x) if self.host.density else None,
@@ -328,6 +405,15 @@ class Mixture:
             mixture_density=None if self.density is None else self.density(x),
         )
         return fractions if self.voids is not None else fractions[:-1]
+
+
+def _coating(grain: Constituent, x: Values) -> tuple[Any, Any]:
+    """Volume of its layers over that of its grains, and their mass per volume of grain, if known."""
+    growths = grain.growths(x)
+    mass: Any = 0.0
+    for shell, inside, outside in zip(grain.shells, growths, growths[1:], strict=False):
+        mass = None if mass is None or shell.density is None else mass + (outside - inside) * shell.density(x)
+    return growths[-1] - 1.0, mass
 
 
 def _frequencies(omega: ArrayLike) -> Array:

@@ -88,8 +88,7 @@ class Mixed:
         """As `spectra.held`: what depends on nothing that varies is computed now."""
         moving = frozenset(path.removeprefix(self.under) for path in varied)
         spectra = [
-            held(getattr(phase, self.quantity), self.inside(x), omega, moving)
-            for phase in self.mixture.phases
+            held(getattr(kind, self.quantity), self.inside(x), omega, moving) for kind in self.mixture.kinds
         ]
         return lambda x: self.mixture.mixed([of(self.inside(x)) for of in spectra], self.inside(x))
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterator, Mapping
+from collections.abc import Callable, Iterator, Mapping, Sequence
 from dataclasses import dataclass
 from functools import cached_property
 from typing import Any, Literal
@@ -57,15 +57,40 @@ class Shape:
 
     def __call__(self, x: Values) -> Depolarisation:
         """Depolarisation factors and weights."""
-        given = {name: _batch(number(x), drop=self.principal) for name, number in self.numbers.items()}
-        turned = _TURNED[self.orientation]
+        given = self._given(x)
         pairs: list[tuple[Any, Any]] = []
         for factors, share in _grains(self.kind, given):
-            if self.orientation == "in-plane" and self.kind != "ellipsoid":
-                cross, _, axis = factors
-                factors = axis, cross, cross  # the symmetry axis lies in the plane
-            pairs.extend((factor, weight * share) for factor, weight in turned(factors, given))
+            pairs.extend((factor, weight * share) for factor, weight in self._turned(factors, given))
         return tuple(pairs)
+
+    @property
+    def axes_apart(self) -> int:
+        """How many of the three axes of a grain may differ."""
+        return 3 if self.kind == "ellipsoid" else 2
+
+    def axes(self, x: Values) -> tuple[Any, Any, Any]:
+        """The three axes of a grain, in no unit; a spheroid's symmetry axis is the third."""
+        if self.kind == "ellipsoid":
+            first, second, third = (self.numbers[f"axes.{i}"](x) for i in range(3))
+            return first, second, third
+        return 1.0, 1.0, self.numbers["aspect_ratio"](x)
+
+    def of_axes(self, x: Values, axes: Sequence[Any]) -> Depolarisation:
+        """Depolarisation of other ellipsoids that lie as these do."""
+        drop = self.principal
+        first, second, third = ellipsoid_factors(*(_batch(axis, drop=drop) for axis in axes))
+        if self.kind == "spheroid":
+            second = first
+        return self._turned((first, second, third), self._given(x))
+
+    def _given(self, x: Values) -> Mapping[str, Any]:
+        return {name: _batch(number(x), drop=self.principal) for name, number in self.numbers.items()}
+
+    def _turned(self, factors: Factors, given: Mapping[str, Any]) -> Depolarisation:
+        if self.orientation == "in-plane" and self.kind != "ellipsoid":
+            cross, _, axis = factors
+            factors = axis, cross, cross  # the symmetry axis lies in the plane
+        return _TURNED[self.orientation](factors, given)
 
 
 _TURNED: Mapping[Orientation, Callable[[Factors, Mapping[str, Any]], Depolarisation]] = {

@@ -11,6 +11,7 @@ from mixsim.present.audits import findings, headline
 from mixsim.present.columns import owned, paragraph, table, width
 from mixsim.present.phrases import NONE, cautions, chosen, number, rounded
 from mixsim.present.principal import principal_axes
+from mixsim.recipe import shells_of
 from mixsim.units import kind_of_axis, show
 
 if TYPE_CHECKING:
@@ -116,7 +117,9 @@ def _head(answer: Prediction) -> str:
 def _composition(answer: Prediction) -> str:
     composition = answer.composition
     materials = {"host": answer.recipe.schema.host.material}
-    materials |= {name: inclusion.material for name, inclusion in answer.recipe.schema.inclusions.items()}
+    for name, inclusion in answer.recipe.schema.inclusions.items():
+        materials |= {name: inclusion.material}
+        materials |= {f"{name}.{key}": shell.material for key, shell in shells_of(inclusion)}
     rows = []
     for name, volume in composition.volume_fractions.items():
         weights = composition.weight_fractions

@@ -9,6 +9,7 @@ from mixsim.composition import BASES, Basis, Loading, volume_fractions
 from mixsim.dispersion.descriptions import width_from_wavelength
 from mixsim.errors import Refusal, nearest
 from mixsim.recipe.faults import Finding
+from mixsim.recipe.layers import coating_of
 from mixsim.recipe.leaves import Number, Span
 from mixsim.recipe.schema import Inclusion, Measured, Schema
 from mixsim.units import Leaf, kind_of_axis, read, written_unit
@@ -84,7 +85,8 @@ def _room(schema: Schema) -> Iterator[Finding]:
     for inclusion in schema.inclusions.values():
         basis, amount = loading_of(inclusion)
         density = schema.materials[inclusion.material].density
-        loadings.append(Loading(basis, amount.value, density.value if density else None))
+        coat = coating_of(inclusion, schema.materials)
+        loadings.append(Loading(basis, amount.value, density.value if density else None, *coat))
     voids = schema.voids.volume_fraction.value if schema.voids else 0.0
     measured = schema.mixing.density
     fractions = volume_fractions(
@@ -101,6 +103,8 @@ def _room(schema: Schema) -> Iterator[Finding]:
     filled = 1.0 - float(fractions[0])
     if filled > 1.0 + _ROUNDING:
         what = "inclusions and voids" if schema.voids else "inclusions"
+        if any(inclusion.coating for inclusion in schema.inclusions.values()):
+            what = what.replace("inclusions", "coated inclusions")
         yield (
             "inclusions",
             Refusal(f"volume fractions of {what} add up to {filled:.6g}", "the sum is at most 1"),

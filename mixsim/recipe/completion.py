@@ -10,6 +10,7 @@ from mixsim.dispersion import TERMS, Table, read_table
 from mixsim.errors import Refusal
 from mixsim.recipe import library
 from mixsim.recipe.faults import Finding
+from mixsim.recipe.layers import raw_shells
 
 _DESCRIPTIONS = ("permittivity", "index", "table", "recipe")
 _SAME = (
@@ -22,7 +23,12 @@ def complete(raw: dict[str, Any]) -> list[Finding]:
     """Bring the materials that a recipe uses into it, in place; returns what was wrong."""
     materials = raw.setdefault("materials", {})
     inclusions = raw.get("inclusions")
-    used = [raw.get("host"), *(inclusions.values() if isinstance(inclusions, dict) else ())]
+    grains = (
+        [node for node in inclusions.values() if isinstance(node, dict)]
+        if isinstance(inclusions, dict)
+        else []
+    )
+    used = [raw.get("host"), *grains, *(shell for grain in grains for _, shell in raw_shells(grain))]
     if not isinstance(materials, dict):
         return []
     for node in used:

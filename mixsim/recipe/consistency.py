@@ -17,6 +17,7 @@ from mixsim.recipe import library
 from mixsim.recipe.constituents import of_material, of_term
 from mixsim.recipe.faults import Finding
 from mixsim.recipe.grains import is_round, of_inclusion
+from mixsim.recipe.layers import raw_shells
 from mixsim.recipe.leaves import join
 from mixsim.recipe.raw import table, tables
 from mixsim.recipe.schema import NAME_PATTERN
@@ -101,6 +102,11 @@ def _names(raw: Mapping[str, Any]) -> Iterator[Finding]:
     uses += [
         (f"inclusions.{name}.material", node.get("material")) for name, node in tables(raw, "inclusions")
     ]
+    uses += [
+        (f"inclusions.{name}.{key}.material", shell.get("material"))
+        for name, node in tables(raw, "inclusions")
+        for key, shell in raw_shells(node)
+    ]
     uses += [(f"materials.{name}.based_on", node.get("based_on")) for name, node in tables(raw, "materials")]
     for path, name in uses:
         if not isinstance(name, str) or not re.match(NAME_PATTERN, name):
@@ -161,7 +167,9 @@ def _densities(raw: Mapping[str, Any]) -> Iterator[Finding]:
     reason = by_weight[0] if by_weight else "mixing.density" if "density" in table(raw, "mixing") else ""
     if not reason:
         return
-    used = [_host_name(raw), *(node.get("material") for _, node in tables(raw, "inclusions"))]
+    grains = [node for _, node in tables(raw, "inclusions")]
+    used = [_host_name(raw), *(node.get("material") for node in grains)]
+    used += [shell.get("material") for node in grains for _, shell in raw_shells(node)]
     for name in dict.fromkeys(name for name in used if isinstance(name, str)):
         material = table(table(raw, "materials"), name) or library.definition(name)
         if material and "density" not in material:

@@ -12,7 +12,7 @@ from mixsim.dispersion import INDEX_MODELS, TERMS
 from mixsim.errors import Fault, Refusal, nearest
 from mixsim.recipe.leaves import join
 from mixsim.recipe.lines import line_of, lines_of
-from mixsim.recipe.schema import INDEX_SECTIONS, TERM_SECTIONS, Schema
+from mixsim.recipe.schema import INDEX_SECTIONS, LAYERS, ONE_LAYER, TERM_SECTIONS, Coating, Schema
 from mixsim.recipe.syntax import as_toml
 
 Finding = tuple[str, Refusal]
@@ -142,6 +142,8 @@ def _model(where: str, key: str, value: Any, above: Any) -> Finding:
 
 def _no_table(where: str, key: str, value: Any, annotation: Any) -> Refusal:
     named = get_origin(annotation) is dict
+    if key.isdigit():
+        key = ".".join(where.split(".")[-2:])
     if isinstance(value, list) and value and all(isinstance(item, Mapping) for item in value):
         right = f"[{where}.NAME]" if named else f"[{where}]"
         return Refusal("a list of tables", f"one table: {right}, not [[{where}]]")
@@ -189,6 +191,9 @@ def _place(
     above: Any = None
     annotation: Any = Schema
     for part in location:
+        if part in (ONE_LAYER, LAYERS):
+            annotation = Coating if part == ONE_LAYER else list[Coating]
+            continue
         tagged = isinstance(node, Mapping) and part not in node and node.get("model") == part
         if tagged:
             section = annotation = TERM_SECTIONS.get(part) or INDEX_SECTIONS.get(part)
@@ -218,6 +223,8 @@ def _step(annotation: Any, part: str) -> Any:
         return None
     if get_origin(annotation) is dict:
         return _plain(get_args(annotation)[1])
+    if get_origin(annotation) is list:
+        return _plain(get_args(annotation)[0])
     return None
 
 

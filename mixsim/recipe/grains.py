@@ -29,6 +29,7 @@ def of_inclusion(name: str, inclusion: Mapping[str, Any]) -> Iterator[Finding]:
     kind = shape.get("kind", "sphere")
     if kind in _KINDS:
         yield from _orientation(path, str(kind), inclusion)
+    yield from _coating(path, shape, inclusion)
 
 
 def is_round(inclusion: Mapping[str, Any]) -> bool:
@@ -69,6 +70,20 @@ def _orientation(path: str, kind: str, inclusion: Mapping[str, Any]) -> Iterator
     if orientation == "in-plane" and kind == "disc":
         allowed = "discs that lie flat are 'aligned': their axes all lie along the third principal axis"
         yield f"{path}.orientation", Refusal("discs with their axes in a plane", allowed, "aligned")
+
+
+def _coating(path: str, shape: Mapping[str, Any], inclusion: Mapping[str, Any]) -> Iterator[Finding]:
+    if "coating" not in inclusion:
+        return
+    if "diameter" not in inclusion:
+        yield path, Refusal("a coating without a diameter", "give diameter of the core, of equal volume")
+    kind = shape.get("kind")
+    if kind in ("needle", "disc"):
+        allowed = "an endless grain has no size; give a spheroid's aspect_ratio"
+        yield f"{path}.coating", Refusal(f"a coating on {_a(str(kind))}", allowed)
+    if "aspect_ratio_spread" in shape:
+        allowed = "coated grains take one aspect ratio"
+        yield f"{path}.shape.aspect_ratio_spread", Refusal("a spread of coated grains", allowed)
 
 
 def _a(kind: str) -> str:

@@ -9,7 +9,7 @@ from functools import reduce
 from operator import or_
 from typing import TYPE_CHECKING, Annotated, Any, Literal
 
-from pydantic import BaseModel, ConfigDict, Field, create_model
+from pydantic import BaseModel, ConfigDict, Discriminator, Field, Tag, create_model
 
 from mixsim.dispersion import INDEX_MODELS, TERMS, Parameter
 from mixsim.recipe.leaves import Ends, Number, Span
@@ -131,6 +131,23 @@ class Shape(Section):
     )
 
 
+class Coating(Section):
+    """One layer around every grain of an inclusion."""
+
+    material: Name
+    thickness: Length
+
+
+ONE_LAYER, LAYERS = "one layer", "a list of layers"
+if TYPE_CHECKING:
+    Coatings = Coating | list[Coating]
+else:
+    Coatings = Annotated[
+        Annotated[Coating, Tag(ONE_LAYER)] | Annotated[list[Coating], Field(min_length=1), Tag(LAYERS)],
+        Discriminator(lambda given: LAYERS if isinstance(given, list) else ONE_LAYER),
+    ]
+
+
 class Inclusion(Section):
     """One kind of grain in the host; the basis of its loading is in the key."""
 
@@ -146,6 +163,9 @@ class Inclusion(Section):
     )
     diameter: Length | None = Field(
         default=None, description="equivalent-volume diameter; the quasi-static limit is checked against it"
+    )
+    coating: Coatings | None = Field(
+        default=None, description="a layer, or a list of them from the core outwards; loading is of the core"
     )
     contact: Literal["insulated", "touching"] | None = Field(
         default=None, description="what the maker knows about conductive grains"

@@ -101,3 +101,13 @@ def test_polarising_glass_darkens_along_the_draw_only() -> None:
     assert grid[np.argmax(through)] < grid[np.argmax(across)] < 450
     red = int(np.argmax(along))
     assert along[red] > 300 * across[red] > 300 * through[red]
+
+
+def test_syntactic_foam_is_lighter_and_thinner_than_its_resin() -> None:
+    """The glass walls weigh, and raise ε′ above that of so many holes without them."""
+    foam = compiled("syntactic-foam")
+    assert 640 < float(foam.composition({}).density) < 720
+    omega = 2e9 * np.pi * np.array([1.0, 10.0])
+    bare = {"inclusions.bubble.coating.thickness": 1e-12}
+    with_walls, without = at("syntactic-foam", omega), foam.response(bare, omega).permittivity
+    assert np.all((without.real > 1.0) & (without.real < with_walls.real) & (with_walls.real < 2.2))

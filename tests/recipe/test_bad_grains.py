@@ -5,11 +5,17 @@ from __future__ import annotations
 import pytest
 from broken import GRAIN, LOADING, Broken, check, swap
 
+SIZE, SILICA = 'diameter = "20 nm"', '{ material = "fused-silica", thickness = "2 nm" }'
 
-def grain(keys: str, path: str, found: str, allowed: str, suggestion: str | None = None) -> Broken:
-    """Keys beside the loading of the sound recipe's grain."""
-    at = path.rsplit(".", 1)[-1] if ".shape" not in path else "shape ="
-    return swap(LOADING, f"{LOADING}\n{keys}", f"{GRAIN}{path}", found, allowed, suggestion, at=at)
+
+def grain(
+    keys: str, path: str, found: str, allowed: str, suggestion: str | None = None, at: str | None = ""
+) -> Broken:
+    """Keys beside the loading of the sound recipe's grain; `path` below the grain, or a whole one."""
+    if at == "":
+        at = path.split(".")[1]
+    where = path if path and not path.startswith(".") else f"{GRAIN}{path}"
+    return swap(LOADING, f"{LOADING}\n{keys}", where, found, allowed, suggestion, at=at)
 
 
 CASES: dict[str, Broken] = {
@@ -80,6 +86,73 @@ CASES: dict[str, Broken] = {
         f"{GRAIN}.orientation",
         "aligned spheres",
         "no orientation",
+    ),
+    "coating without a diameter": grain(
+        f"coating = {SILICA}", "", "a coating without a diameter", "of equal volume", at="[inclusions.grain]"
+    ),
+    "coating of an unknown material": grain(
+        f'{SIZE}\ncoating = {{ material = "fused-silca", thickness = "2 nm" }}',
+        ".coating.material",
+        "unknown material 'fused-silca'",
+        "built-in",
+        "fused-silica",
+    ),
+    "key of one layer": grain(
+        f'{SIZE}\ncoating = {{ material = "matrix", thicknes = "2 nm" }}',
+        ".coating.thicknes",
+        "unknown key 'thicknes'",
+        "takes material, thickness",
+        "thickness",
+    ),
+    "key of a layer among others": grain(
+        f'{SIZE}\ncoating = [{SILICA}, {{ material = "matrix", thicknes = "2 nm" }}]',
+        ".coating.1.thicknes",
+        "unknown key 'thicknes'",
+        "takes material, thickness",
+        "thickness",
+    ),
+    "layer without a table": grain(
+        f'{SIZE}\ncoating = [{SILICA}, "matrix"]',
+        ".coating.1",
+        "'matrix' where a table is needed",
+        "coating.1 is a table that takes material, thickness",
+    ),
+    "no layers": grain(f"{SIZE}\ncoating = []", ".coating", "an empty list", "1 or more"),
+    "layer without size": grain(
+        f'{SIZE}\ncoating = {{ material = "matrix", thickness = "0 nm" }}',
+        ".coating.thickness",
+        "'0 nm' is out of range",
+        "above 0",
+    ),
+    "coated needles": grain(
+        f'{SIZE}\ncoating = {SILICA}\nshape = {{ kind = "needle" }}',
+        ".coating",
+        "a coating on a needle",
+        "no size",
+        at="coating =",
+    ),
+    "spread of coated grains": grain(
+        f"{SIZE}\ncoating = {SILICA}\n"
+        'shape = { kind = "spheroid", aspect_ratio = 2, aspect_ratio_spread = 0.2 }',
+        ".shape.aspect_ratio_spread",
+        "a spread of coated grains",
+        "one aspect ratio",
+    ),
+    "coating that leaves no room": grain(
+        'diameter = "5 nm"\ncoating = { material = "matrix", thickness = "5 nm" }',
+        "inclusions",
+        "volume fractions of coated inclusions and voids add up to 2.71",
+        "at most 1",
+        at="[inclusions.grain]",
+    ),
+    "layer without density": swap(
+        LOADING,
+        f'weight_fraction = "5 %"\n{SIZE}\ncoating = {{ material = "light", thickness = "1 nm" }}\n'
+        "[materials.light]\npermittivity.infinity = 2.0",
+        "materials.light",
+        "density is missing",
+        "inclusions.grain.weight_fraction needs it",
+        at="[materials.light]",
     ),
 }
 

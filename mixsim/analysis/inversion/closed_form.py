@@ -65,7 +65,7 @@ def _fraction_path(mixture: Mixture) -> str | None:
     if len(mixture.inclusions) != 1 or mixture.voids is not None or mixture.density is not None:
         return None
     grain = mixture.inclusions[0]
-    plain = grain.basis == "volume_fraction" and grain.shape is None
+    plain = grain.basis == "volume_fraction" and grain.plain
     return f"inclusions.{grain.name}.volume_fraction" if plain and mixture.rule.fraction_from else None
 
 

@@ -126,7 +126,7 @@ def _elsewhere(recipe: Recipe, model: ReadingModel, position: int) -> list[str]:
 
 def _bounds(mixture: Mixture, phases: dict[str, Floats], reading: Reading, *, over: bool) -> list[str]:
     """The smallest loading of one filler with which any isotropic mixture could reach a reading."""
-    if len(mixture.inclusions) != 1 or mixture.aligned:
+    if len(mixture.inclusions) != 1 or mixture.aligned or mixture.inclusions[0].shells:
         return []
     grain = mixture.inclusions[0].name
     host = float(np.nanmax(phases["host"]) if over else np.nanmin(phases["host"]))
