@@ -1,4 +1,7 @@
-"""Formulas of the complex refractive index as functions of angular frequency."""
+"""Formulas of the complex refractive index as functions of angular frequency.
+
+At ω = 0 and ω → ∞ each is what it tends to, which may be infinite and says nothing of a material.
+"""
 
 from __future__ import annotations
 
@@ -44,8 +47,7 @@ def constant(omega: ArrayLike, *, n: ArrayLike, k: ArrayLike = 0.0) -> Array:
     >>> complex(constant(1.0, n=1.5))
     (1.5+0j)
     """
-    # 0·ω rather than a filled array: NaN in, NaN out.
-    level = np.asarray(n, dtype=float) + 0.0 * np.asarray(omega, dtype=float)
+    level = np.asarray(n, dtype=float) + _zeros(np.asarray(omega, dtype=float))
     return _complex(level, np.asarray(k, dtype=float))
 
 
@@ -82,9 +84,8 @@ def cauchy(omega: ArrayLike, *, a: ArrayLike, b: ArrayLike = 0.0, c: ArrayLike =
     >>> round(complex(cauchy(omega, a=1.478, b=0.0049e-12)).real, 5)
     1.49211
     """
-    square = _inverse_square_wavelength(omega)
-    fourth = np.asarray(c, dtype=float) * square
-    return _complex(np.asarray(a, dtype=float) + (np.asarray(b, dtype=float) + fourth) * square, 0.0)
+    bent = _powers(_inverse_square_wavelength(omega), (b, c))
+    return _complex(np.asarray(a, dtype=float) + bent, 0.0)
 
 
 def sellmeier(
@@ -148,10 +149,13 @@ def sellmeier(
         found = f"{len(strengths)} strengths and {len(squares)} resonances"
         raise Refusal(found, "a sellmeier index pairs them one to one")
     inverse_square = _inverse_square_wavelength(omega)
-    total: Array = 1.0 + 0.0 * inverse_square
-    with np.errstate(divide="ignore"):
+    total: Array = 1.0 + _zeros(inverse_square)
+    with np.errstate(divide="ignore", invalid="ignore"):
         for strength, square in zip(strengths, squares, strict=True):
-            total = total + np.asarray(strength, dtype=float) / (1.0 - square * inverse_square)
+            b = np.asarray(strength, dtype=float)
+            share = b / (1.0 - _powers(inverse_square, (square,)))
+            # a band without strength is none, even at its resonance
+            total = total + (share if np.all(b) else np.where(b == 0.0, 0.0, share))
     return np.asarray(np.sqrt(_complex(total, 0.0)))[()]
 
 
@@ -190,8 +194,7 @@ def schott(omega: ArrayLike, *, coefficients: Sequence[ArrayLike]) -> Array:
     """
     a0, a1, a2, a3, a4, a5 = _counted(coefficients, 6, "schott")
     inverse = 1e-12 * _inverse_square_wavelength(omega)
-    with np.errstate(divide="ignore", invalid="ignore"):
-        square = a0 + a1 / inverse + inverse * (a2 + inverse * (a3 + inverse * (a4 + inverse * a5)))
+    square = a0 + _powers(_reciprocal(inverse), (a1,)) + _powers(inverse, (a2, a3, a4, a5))
     return np.asarray(np.sqrt(_complex(np.asarray(square), 0.0)))[()]
 
 
@@ -230,7 +233,7 @@ def conrady(omega: ArrayLike, *, coefficients: Sequence[ArrayLike]) -> Array:
     """
     a, b, c = _counted(coefficients, 3, "conrady")
     inverse = 1e-6 * np.sqrt(_inverse_square_wavelength(omega))
-    return _complex(np.asarray(a + b * inverse + c * inverse**3.5), 0.0)
+    return _complex(np.asarray(a + _powers(inverse, (b, c), steps=(1.0, 2.5))), 0.0)
 
 
 def herzberger(omega: ArrayLike, *, coefficients: Sequence[ArrayLike]) -> Array:
@@ -267,10 +270,8 @@ def herzberger(omega: ArrayLike, *, coefficients: Sequence[ArrayLike]) -> Array:
     3.4
     """
     a, b, c, d, e, f = _counted(coefficients, 6, "herzberger")
-    with np.errstate(divide="ignore", invalid="ignore"):
-        square = 1.0 / (1e-12 * _inverse_square_wavelength(omega))
-        share = 1.0 / (square - 0.028)
-        n = a + share * (b + share * c) + square * (d + square * (e + square * f))
+    square = _reciprocal(1e-12 * _inverse_square_wavelength(omega))
+    n = a + _powers(_reciprocal(square - 0.028), (b, c)) + _powers(square, (d, e, f))
     return _complex(np.asarray(n), 0.0)
 
 
@@ -309,7 +310,7 @@ def abbe(omega: ArrayLike, *, n: ArrayLike, abbe_number: ArrayLike) -> Array:
     level, number = np.asarray(n, dtype=float), np.asarray(abbe_number, dtype=float)
     d, f, c = (1.0 / line**2 for line in (587.5618e-9, 486.1327e-9, 656.2725e-9))
     slope = (level - 1.0) / number / (f - c)
-    return _complex(np.asarray(level + slope * (_inverse_square_wavelength(omega) - d)), 0.0)
+    return _complex(np.asarray(level + _powers(_inverse_square_wavelength(omega) - d, (slope,))), 0.0)
 
 
 def _counted(coefficients: Sequence[ArrayLike], count: int, name: str) -> list[Array]:
@@ -320,7 +321,37 @@ def _counted(coefficients: Sequence[ArrayLike], count: int, name: str) -> list[A
 
 def _inverse_square_wavelength(omega: ArrayLike) -> Array:
     inverse = np.asarray(omega, dtype=float) / (2.0 * np.pi * SPEED_OF_LIGHT)
-    return np.asarray(inverse * inverse)
+    with np.errstate(over="ignore"):
+        return np.asarray(inverse * inverse)
+
+
+def _zeros(x: Array) -> Array:
+    """Zeros, NaN where x is: NaN in, NaN out."""
+    return 0.0 * (np.where(np.isinf(x), 0.0, x) if np.isinf(x).any() else x)
+
+
+def _reciprocal(x: Array) -> Array:
+    with np.errstate(divide="ignore"):
+        return np.asarray(1.0 / x)
+
+
+def _powers(x: Array, coefficients: Sequence[ArrayLike], *, steps: Sequence[float] = ()) -> Array:
+    """c₁x + c₂x² + … without a constant; at x = ∞ what its highest term gives, and 0 where there is none.
+
+    `steps` from each power to the next, from 0 on, if they are not one.
+    """
+    held = [np.asarray(item, dtype=float) for item in coefficients]
+    total: Array = np.zeros(())
+    with np.errstate(over="ignore", invalid="ignore"):
+        for c, step in zip(reversed(held), reversed(steps or [1.0] * len(held)), strict=True):
+            total = (total + c) * (x if step == 1.0 else x**step)
+        endless = np.isinf(x)
+        if np.any(endless):
+            leading: Array = np.zeros(())
+            for c in held:
+                leading = np.where(c == 0.0, leading, c)
+            total = np.where(endless, np.where(leading == 0.0, 0.0, leading * np.inf), total)
+    return np.asarray(total)
 
 
 def _complex(real: Array, imaginary: ArrayLike) -> Array:
