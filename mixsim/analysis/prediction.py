@@ -115,8 +115,14 @@ class Prediction:
             if self.pushed is None
             else {
                 "permittivity": {"real": plain(self.pushed.real), "imag": plain(self.pushed.imag)},
+                "permeability": {
+                    "real": plain(self.pushed.permeability_real),
+                    "imag": plain(self.pushed.permeability_imag),
+                },
                 "static": plain(self.pushed.static),
                 "high_frequency": plain(self.pushed.high_frequency),
+                "static_permeability": plain(self.pushed.static_permeability),
+                "high_frequency_permeability": plain(self.pushed.high_frequency_permeability),
                 "from": list(self.pushed.paths),
             },
             "composition": {

@@ -27,7 +27,11 @@ class Pushed:
     real, imag
         Of ε′ and ε″ over frequency [-], with principal axes where the answer has them.
     static, high_frequency
-        Of the limits [-]; NaN where there is none.
+        Of the limits of ε [-]; NaN where there is none.
+    permeability_real, permeability_imag
+        Of μ′ and μ″ over frequency [-], zero where nothing is magnetic.
+    static_permeability, high_frequency_permeability
+        Of the limits of μ [-]; NaN where there is none.
     """
 
     paths: tuple[str, ...]
@@ -35,6 +39,10 @@ class Pushed:
     imag: Floats
     static: Floats
     high_frequency: Floats
+    permeability_real: Floats
+    permeability_imag: Floats
+    static_permeability: Floats
+    high_frequency_permeability: Floats
 
 
 def pushed(recipe: Recipe, mixture: Mixture, omega: Floats) -> Pushed | None:
@@ -65,20 +73,33 @@ def pushed(recipe: Recipe, mixture: Mixture, omega: Floats) -> Pushed | None:
     if not inputs:
         return None
     values = pairs(inputs)
-    response, limits = mixture.response(values, omega).permittivity, mixture.limits(values)
+    response, limits = mixture.response(values, omega), mixture.limits(values)
+    permittivity, permeability = response.permittivity, response.permeability
+    if not mixture.magnetic:
+        permeability = permeability[:, ..., :1]  # one everywhere, broadcast back below
 
     def spread(answers: Any) -> Any:
         return np.sqrt(np.sum(halves(answers) ** 2, axis=0))
 
-    moved = halves(response), halves(limits.static)
-    felt = np.any([np.any((part != 0.0).reshape(len(inputs), -1), axis=-1) for part in moved], axis=0)
+    parts = (permittivity, permeability, limits.static, limits.static_permeability)
+    # where there is no limit, nothing is felt in it
+    moved = [np.nan_to_num(halves(part)).reshape(len(inputs), -1) for part in parts]
+    felt = np.any([np.any(part != 0.0, axis=-1) for part in moved], axis=0)
     paths = tuple(path for path, matters in zip(inputs, felt, strict=True) if matters)
     if not paths:
         return None
+    magnetic_real, magnetic_imag = (
+        np.broadcast_to(spread(part), permittivity.shape[1:])
+        for part in (permeability.real, permeability.imag)
+    )
     return Pushed(
         paths,
-        spread(response.real),
-        spread(response.imag),
+        spread(permittivity.real),
+        spread(permittivity.imag),
         spread(limits.static.real),
         spread(limits.high_frequency.real),
+        magnetic_real,
+        magnetic_imag,
+        spread(limits.static_permeability.real),
+        spread(limits.high_frequency_permeability.real),
     )

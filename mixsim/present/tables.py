@@ -136,16 +136,14 @@ def _composition(answer: Prediction) -> str:
 def _limits(answer: Prediction) -> str:
     limits, unsure = answer.limits, answer.pushed
     said = any(caution.kind == "no-limit" for caution in answer.warnings)
-    rows = [
-        ["static permittivity", _axes(answer, limits.static, None if unsure is None else unsure.static)],
-        [
-            "high-frequency permittivity",
-            _axes(answer, limits.high_frequency, None if unsure is None else unsure.high_frequency),
-        ],
-    ]
+    kinds = ["static", "high_frequency"]
     if answer.magnetic:
-        rows.append(["static permeability", _axes(answer, limits.static_permeability)])
-        rows.append(["high-frequency permeability", _axes(answer, limits.high_frequency_permeability)])
+        kinds += ["static_permeability", "high_frequency_permeability"]
+    rows = []
+    for kind in kinds:
+        name = kind.removesuffix("_permeability").replace("_", "-")
+        name += " permeability" if kind.endswith("_permeability") else " permittivity"
+        rows.append([name, _axes(answer, getattr(limits, kind), unsure and getattr(unsure, kind))])
     if np.any(limits.conductivity > 0.0):
         rows.append(["conductivity at dc", f"{_axes(answer, limits.conductivity)} S/m"])
         rows.append(["level beside it", _axes(answer, limits.plateau)])

@@ -57,6 +57,57 @@ def test_spectra_against_random_draws() -> None:
     assert pushed.imag == pytest.approx(drawn.imag.std(axis=0), rel=0.1)
 
 
+MAGNET = """
+host.material = "rubber"
+inclusions.iron = { material = "powder", volume_fraction = "30 ± 2 %" }
+band = { from = "1 GHz", to = "10 GHz", points = 21 }
+[materials]
+rubber.permittivity.infinity = 3.0
+powder.permittivity.infinity = 10.0
+powder.permeability.infinity = 1.0
+powder.permeability.terms.spin = { model = "debye", step = "2 ± 0.1", relaxation_frequency = "3 GHz" }
+"""
+
+
+def test_permeability_against_random_draws() -> None:
+    recipe = mixsim.parse(MAGNET)
+    answer = mixsim.predict(recipe)
+    assert answer.pushed is not None
+    step = "materials.powder.permeability.terms.spin.step"
+    assert answer.pushed.paths == ("inclusions.iron.volume_fraction", step)
+    random = np.random.default_rng(6)
+    values = {
+        p: recipe.leaves[p].value + (recipe.leaves[p].std or 0) * random.standard_normal(4000)
+        for p in answer.pushed.paths
+    }
+    drawn = recipe.compile().response(values, answer.omega).permeability
+    assert answer.pushed.permeability_real == pytest.approx(drawn.real.std(axis=0), rel=0.1)
+    assert answer.pushed.permeability_imag == pytest.approx(drawn.imag.std(axis=0), rel=0.1)
+    # Maxwell Garnett at dc: μ_s = (1 + 2fβ)/(1 − fβ), β = (μ − 1)/(μ + 2), its two derivatives by hand
+    f, mu = 0.3, 3.0
+    beta = (mu - 1.0) / (mu + 2.0)
+    slope = 3.0 / (1.0 - f * beta) ** 2
+    expected = np.hypot(slope * beta * 0.02, slope * f * 3.0 / (mu + 2.0) ** 2 * 0.1)
+    assert float(answer.pushed.static_permeability) == pytest.approx(expected, rel=1e-3)
+    said = answer.to_dict()["standard_uncertainty"]
+    assert said["permeability"]["real"] == answer.pushed.permeability_real.tolist()
+
+
+def test_without_magnets_nothing_is_unsure_of_the_permeability() -> None:
+    pushed = mixsim.predict(mixsim.parse(TEXT)).pushed
+    assert pushed is not None
+    assert pushed.permeability_real.shape == pushed.real.shape and not np.any(pushed.permeability_real)
+
+
+def test_what_only_a_missing_limit_could_feel_is_not_named() -> None:
+    text = """
+        host.material = "glass"
+        band.values = ["500 nm"]
+        materials.glass = { density = "2.5 ± 0.1 g/cm^3", index = { model = "cauchy", a = 1.5 } }
+    """
+    assert mixsim.predict(mixsim.parse(text)).pushed is None
+
+
 def test_only_what_matters_is_named_and_nothing_without_it() -> None:
     exact = TEXT.replace(" ± 1", "").replace(" ± 0.05", "").replace(" ± 0.2", "")
     assert mixsim.predict(mixsim.parse(exact)).pushed is None

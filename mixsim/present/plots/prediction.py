@@ -97,8 +97,8 @@ def _curves(axes: Axes, answer: Prediction, quantity: str, part: str, flat: floa
             zorder=3,
         )
     low, high = float(np.min(values)), float(np.max(values))
-    if quantity == "permittivity" and answer.pushed is not None:
-        std = getattr(answer.pushed, part)
+    if answer.pushed is not None:
+        std = getattr(answer.pushed, part if quantity == "permittivity" else f"{quantity}_{part}")
         _band(axes, x, values, std, places)
         low, high = float(np.min(values - std)), float(np.max(values + std))
     reach = max(high - low, flat * 0.5 * abs(high + low))

@@ -148,3 +148,18 @@ def test_notes_keep_off_the_mixture(name: str) -> None:
         x = np.linspace(ends.x0, ends.x1, 50)
         y = np.interp(x, *curve.T, left=np.nan, right=np.nan)
         assert not np.any((y > ends.y0) & (y < ends.y1)), text.get_text()
+
+
+def test_the_doubt_of_the_permeability_is_drawn(answers: Any) -> None:
+    unsure = ('volume_fraction = "30 %"', 'volume_fraction = "30 ± 2 %"')
+    answer = answers.prediction("magnet", unsure)
+    panels = {axes.get_ylabel(): axes for axes in figure(answer).axes}
+    for label, part in (("μ′", "real"), ("μ″", "imag")):
+        (band,) = [c for c in panels[label].collections if c.get_gid() == "unsure-0"]
+        (path,) = band.get_paths()
+        place = np.isclose(path.vertices[:, 0], answer.axis.shown[4])
+        value = getattr(answer.permeability, part)[4]
+        std = getattr(answer.pushed, f"permeability_{part}")[4]
+        assert std > 0.0
+        ends = path.vertices[place, 1]
+        assert (ends.min(), ends.max()) == pytest.approx((value - std, value + std))
