@@ -37,8 +37,37 @@ PAGES: dict[str, tuple[tuple[str, str, str], tuple[tuple[str, str, str], float] 
     "silicon-carbide": (("main", "SiC", "Singh-o"), (("main", "SiC", "Wang-4H-o"), 6e-2)),
     "diamond": (("main", "C", "Peter"), (("main", "C", "Phillip"), 2e-2)),
     "aluminium-nitride": (("main", "AlN", "Pastrnak-o"), None),
+    "potassium-bromide": (("main", "KBr", "Li"), None),
+    "potassium-chloride": (("main", "KCl", "Li"), None),
+    "caesium-iodide": (("main", "CsI", "Li"), (("main", "CsI", "Rodney"), 1e-3)),
+    "spinel": (("main", "MgAl2O4", "Tropf"), None),
+    "lithium-niobate": (("main", "LiNbO3", "Zelmon-o"), None),
+    "yttrium-aluminium-garnet": (("main", "Y3Al5O12", "Zelmon"), (("main", "Y3Al5O12", "Bond"), 5e-3)),
+    "tellurium-dioxide": (("main", "TeO2", "Uchida-o"), None),
+    "gallium-nitride": (("main", "GaN", "Barker-o"), None),
+    "ethanol-visible": (("organic", "ethanol", "Chang"), (("organic", "ethanol", "Rheims"), 3e-3)),
+    "methanol-visible": (("organic", "methanol", "Chang"), (("organic", "methanol", "Kozma"), 5e-3)),
+    "1-propanol": (("organic", "propanol", "Chang"), (("organic", "propanol", "Kozma"), 1e-2)),
+    "dimethyl-sulfoxide": (
+        ("organic", "dimethyl_sulfoxide", "Kozma"),
+        (("organic", "dimethyl_sulfoxide", "Li"), 3e-2),  # in the ultraviolet; 3e-3 in the visible
+    ),
+    "acetonitrile": (("organic", "acetonitrile", "Chang"), (("organic", "acetonitrile", "Kozma"), 5e-3)),
+    "chloroform": (("organic", "chloroform", "Chang"), (("organic", "chloroform", "Kedenburg"), 5e-3)),
+    "benzene": (("organic", "benzene", "Chang"), (("organic", "benzene", "Moutzouris"), 1e-2)),
 }
-CAS = {"acetone": "67-64-1", "toluene": "108-88-3", "cyclohexane": "110-82-7"}
+CAS = {
+    "acetone": "67-64-1",
+    "toluene": "108-88-3",
+    "cyclohexane": "110-82-7",
+    "ethanol-visible": "64-17-5",
+    "methanol-visible": "67-56-1",
+    "1-propanol": "71-23-8",
+    "dimethyl-sulfoxide": "67-68-5",
+    "acetonitrile": "75-05-8",
+    "chloroform": "67-66-3",
+    "benzene": "71-43-2",
+}
 
 
 def index(page: tuple[str, str, str], wavelength: np.ndarray) -> np.ndarray:
