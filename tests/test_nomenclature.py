@@ -38,7 +38,9 @@ def formulas() -> Iterator[Callable[..., Any]]:
     for rule in RULES.values():
         given = (rule.function, rule.fraction_from, rule.inclusion_from)
         yield from (function for function in given if function is not None)
-    yield from (mixing.wiener, mixing.hashin_shtrikman)
+    yield from (mixing.wiener, mixing.hashin_shtrikman, mixing.hard_spheres, mixing.hard_discs)
+    yield from (mixing.two_phase_region, mixing.isotropic_region, mixing.three_point_region)
+    yield mixing.many_phase_region
     yield from (mixing.spheroid_factors, mixing.ellipsoid_factors)
     yield from (mixing.coated_grain, mixing.growth_of_sphere, mixing.growth_of_ellipsoid)
     yield from (mixing.confocal_axes, mixing.in_plane_grains, mixing.ordered_grains, mixing.ratios_about)

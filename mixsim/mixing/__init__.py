@@ -2,7 +2,18 @@
 
 from __future__ import annotations
 
-from mixsim.mixing.bounds import hashin_shtrikman, wiener
+from mixsim.mixing.bounds import (
+    Discs,
+    Lens,
+    hard_discs,
+    hard_spheres,
+    hashin_shtrikman,
+    isotropic_region,
+    many_phase_region,
+    three_point_region,
+    two_phase_region,
+    wiener,
+)
 from mixsim.mixing.bruggeman import bruggeman
 from mixsim.mixing.coated import coated_grain, confocal_axes, growth_of_ellipsoid, growth_of_sphere
 from mixsim.mixing.depolarisation import (
@@ -33,7 +44,9 @@ __all__ = [
     "RULES",
     "SPHERE",
     "Depolarisation",
+    "Discs",
     "Factors",
+    "Lens",
     "Rule",
     "aligned_grains",
     "aligned_spheroid",
@@ -43,9 +56,13 @@ __all__ = [
     "ellipsoid_factors",
     "growth_of_ellipsoid",
     "growth_of_sphere",
+    "hard_discs",
+    "hard_spheres",
     "hashin_shtrikman",
     "in_plane_grains",
+    "isotropic_region",
     "lorentz_lorenz",
+    "many_phase_region",
     "maxwell_garnett",
     "ordered_grains",
     "random_grains",
@@ -53,5 +70,7 @@ __all__ = [
     "ratios_about",
     "rule_named",
     "spheroid_factors",
+    "three_point_region",
+    "two_phase_region",
     "wiener",
 ]
