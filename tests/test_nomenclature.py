@@ -31,6 +31,7 @@ def formulas() -> Iterator[Callable[..., Any]]:
     for term in TERMS.values():
         yield from (term.function, term.low)
         routes = [route for ways in term.canonical.values() for route in ways]
+        routes += term.in_grains.values()
         yield from (route.function for route in routes if route.function is not None)
     yield from (model.function for model in INDEX_MODELS.values())
     yield from (descriptions.width_from_wavelength, interpolate, infinity_from_pair, step_from_pair)

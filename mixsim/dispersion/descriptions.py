@@ -181,6 +181,46 @@ def damping_from_collision_time(*, collision_time: ArrayLike) -> Array:
     return np.asarray(1.0 / np.asarray(collision_time, dtype=float))[()]
 
 
+def damping_in_grain(
+    *, damping: ArrayLike, fermi_velocity: ArrayLike, surface_scattering: ArrayLike, diameter: ArrayLike
+) -> Array:
+    """Collision rate in a grain, whose surface stops carriers too: γ = γ_bulk + A v_F/R.
+
+    Parameters
+    ----------
+    damping
+        Collision rate γ_bulk of the bulk [rad/s].
+    fermi_velocity
+        Fermi velocity v_F [m/s].
+    surface_scattering
+        A [-], of order one: 3/4 for diffuse scattering in a sphere, 1 for a quantum box.
+    diameter
+        Of the sphere of the grain's volume, 2R [m].
+
+    Returns
+    -------
+    damping
+        Collision rate γ [rad/s].
+
+    Notes
+    -----
+    Valid for: grains of more than a few hundred atoms.
+
+    References
+    ----------
+    U. Kreibig and M. Vollmer, "Optical Properties of Metal Clusters", Springer (1995).
+
+    Examples
+    --------
+    >>> silver = {"fermi_velocity": 1.4e6, "surface_scattering": 1.0}
+    >>> print(f"{damping_in_grain(damping=1e14, diameter=2e-8, **silver):.3g}")
+    2.4e+14
+    """
+    radius = 0.5 * np.asarray(diameter, dtype=float)
+    speed = np.asarray(surface_scattering, dtype=float) * np.asarray(fermi_velocity, dtype=float)
+    return np.asarray(np.asarray(damping, dtype=float) + speed / radius)[()]
+
+
 def relaxation_time_from_frequency(*, relaxation_frequency: ArrayLike) -> Array:
     """Relaxation time from the relaxation frequency: τ = 1/(2πν).
 

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Iterable, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from typing import Any
 
 from mixsim.errors import Refusal, nearest
@@ -86,6 +86,9 @@ class Term:
         What a person wants to know of it, as text.
     of
         Which of ε and μ physics allows it for.
+    in_grains
+        Canonical parameters that the size of a grain changes, and how: from themselves, from the `diameter`
+        of the grain, and from parameters that only grains need. Such a route is taken where its key is given.
     """
 
     name: str
@@ -97,6 +100,7 @@ class Term:
     equation: str
     source: str
     of: tuple[str, ...] = ("permittivity", "permeability")
+    in_grains: Mapping[str, Route] = field(default_factory=dict)
 
     def resolve(self, given: Iterable[str]) -> Mapping[str, Route]:
         """The way in which each canonical parameter is given.
@@ -136,6 +140,12 @@ class Term:
                     f"{route.key} is given without {absent}", f"{route.key} needs {absent} beside it"
                 )
         used = {name for route in chosen.values() for name in route.needs}
+        for route in self.in_grains.values():
+            beside = [name for name in route.needs if name in self.parameters and name not in self.canonical]
+            if route.key in names:
+                if lacking := " and ".join(name for name in beside if name not in names):
+                    raise Refusal(f"{route.key} is given without {lacking}", f"it needs {lacking} beside it")
+                used.update(beside)
         for name in self.parameters:
             if name in names - used:
                 raise Refusal(
@@ -177,6 +187,7 @@ class Term:
 
     def _companions(self, name: str) -> list[str]:
         routes = [route for ways in self.canonical.values() for route in ways]
+        routes += self.in_grains.values()
         return list(dict.fromkeys(route.key for route in routes if name in route.also))
 
 

@@ -95,7 +95,7 @@ class _Compiler:
         return Constituent(
             name,
             material,
-            self._permittivity(material),
+            self._permittivity(material, self._maybe(f"{path}.diameter")),
             self._permeability(material),
             self._density(material),
             basis,
@@ -131,9 +131,9 @@ class _Compiler:
             inclusion.shape.kind, "ordered" if ordered else inclusion.orientation or "random", numbers
         )
 
-    def _permittivity(self, name: str) -> Spectrum:
-        """Of a material, at the temperature of the piece."""
-        spectrum, difference = self._described(name), self._warmer_by(name)
+    def _permittivity(self, name: str, diameter: Input | None = None) -> Spectrum:
+        """Of a material, at the temperature of the piece, in grains of a diameter where that is given."""
+        spectrum, difference = self._described(name, diameter), self._warmer_by(name)
         coefficient = self._maybe(f"materials.{name}.temperature_coefficient")
         if coefficient is None or difference is None:
             return spectrum
@@ -146,11 +146,11 @@ class _Compiler:
             return None
         return Derived(_difference, {"temperature": here, "own": own})
 
-    def _described(self, name: str) -> Spectrum:
+    def _described(self, name: str, diameter: Input | None) -> Spectrum:
         """Permittivity of a material as it is described."""
         material, path = self.schema.materials[name], f"materials.{name}"
         if material.permittivity is not None:
-            return self._response(material.permittivity, f"{path}.permittivity")
+            return self._response(material.permittivity, f"{path}.permittivity", diameter)
         if name in self.recipe.parts:
             return self._part(name)
         stated = self._maybe(f"{path}.static"), self._maybe(f"{path}.high_frequency")
@@ -205,7 +205,7 @@ class _Compiler:
             return Measured(table, magnetic=True, extension=self._extension(name, magnetic=True))
         return self._response(permeability, f"materials.{name}.permeability")
 
-    def _response(self, response: Any, path: str) -> Spectrum:
+    def _response(self, response: Any, path: str, diameter: Input | None = None) -> Spectrum:
         if response.value is not None:
             return self._pair(response, path)
         susceptibility = self._maybe(f"{path}.susceptibility")
@@ -220,6 +220,7 @@ class _Compiler:
                 {"plasma": shared}
                 if shared and TERMS[content.model].leaves_open("plasma", _given(content))
                 else {},
+                diameter,
             )
             for name, content in response.terms.items()
         )
@@ -251,7 +252,9 @@ class _Compiler:
                 inputs[name] = self._number(f"{path}.{name}", parameter)
         return inputs
 
-    def _term(self, content: Any, path: str, implied: Mapping[str, Input]) -> BoundTerm:
+    def _term(
+        self, content: Any, path: str, implied: Mapping[str, Input], diameter: Input | None = None
+    ) -> BoundTerm:
         """A term of a recipe; `implied` are parameters that stand elsewhere than in it."""
         term = TERMS[content.model]
         given = _given(content) & term.parameters.keys()
@@ -265,15 +268,18 @@ class _Compiler:
                 about = {"width": numbers[name], "resonance": numbers["resonance"]}
                 numbers[name] = Derived(width_from_wavelength, about)
         routes = term.resolve({*given, *implied})
-        return BoundTerm(
-            term,
-            {
-                canonical: numbers[route.key]
-                if route.function is None
-                else Derived(route.function, {name: numbers[name] for name in route.needs})
-                for canonical, route in routes.items()
-            },
-        )
+        inputs = {
+            canonical: numbers[route.key]
+            if route.function is None
+            else Derived(route.function, {name: numbers[name] for name in route.needs})
+            for canonical, route in routes.items()
+        }
+        for canonical, route in term.in_grains.items():
+            if route.key in given and diameter is not None:
+                assert route.function is not None
+                known = {**numbers, canonical: inputs[canonical], "diameter": diameter}
+                inputs[canonical] = Derived(route.function, {name: known[name] for name in route.needs})
+        return BoundTerm(term, inputs)
 
     def _number(self, path: str, parameter: Parameter) -> Input:
         if path in self.recipe.leaves:

@@ -35,6 +35,7 @@ def contradictions(raw: Mapping[str, Any]) -> Iterator[Finding]:
         yield from of_inclusion(name, inclusion)
     for name, dopant in tables(raw, "dopants"):
         yield from _dopant(f"dopants.{name}", dopant, raw)
+    yield from _sizes(raw)
     yield from _names(raw)
     yield from _rule(raw)
     yield from _densities(raw)
@@ -94,6 +95,20 @@ def _dopant(path: str, dopant: Mapping[str, Any], raw: Mapping[str, Any]) -> Ite
     if not used and dopant.get("local_field") == "virtual-cavity":
         allowed = "it acts on strengths that come from the concentration; plasma and step are felt already"
         yield f"{path}.local_field", Refusal("virtual-cavity has nothing to act on", allowed)
+
+
+def _sizes(raw: Mapping[str, Any]) -> Iterator[Finding]:
+    """Grains of a material whose terms depend on their size have one."""
+    for name, inclusion in tables(raw, "inclusions"):
+        material = str(inclusion.get("material"))
+        permittivity = table(table(table(raw, "materials"), material), "permittivity")
+        for term, content in tables(permittivity, "terms"):
+            known = TERMS.get(str(content.get("model")))
+            routes = known.in_grains.values() if known is not None else ()
+            for key in (route.key for route in routes if route.key in content):
+                if "diameter" not in inclusion:
+                    reason = f"materials.{material}.permittivity.terms.{term}.{key} needs it"
+                    yield f"inclusions.{name}", Refusal("diameter is missing", reason)
 
 
 def _names(raw: Mapping[str, Any]) -> Iterator[Finding]:

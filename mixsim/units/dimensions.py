@@ -273,6 +273,14 @@ _ALL: Final = (
         ),
         shown=("cm^2/V/s",),
     ),
+    Dimension(
+        "velocity",
+        "m/s",
+        "a velocity",
+        "1.4e6 m/s",
+        (Unit("m/s"), Unit("km/s", 1e3), Unit("cm/s", per=1e2)),
+        shown=("m/s",),
+    ),
     Dimension("electron masses", "", "a mass in electron masses", "0.35", (), bare=True),
     Dimension(
         "temperature",

@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 import pytest
 
-from mixsim.dispersion import TERMS, width_from_wavelength
+from mixsim.dispersion import TERMS, descriptions, width_from_wavelength
 from mixsim.errors import Refusal
 from mixsim.units import (
     ELECTRON_MASS,
@@ -103,7 +103,22 @@ def test_equivalent_descriptions_agree(name: str, given: dict[str, float]) -> No
 
 def test_every_route_of_the_register_is_compared() -> None:
     compared = {(name, key) for name, given in SAME for key in given}
-    assert compared == {(name, key) for name, term in TERMS.items() for key in term.parameters}
+    of_grains = {
+        (name, key)
+        for name, term in TERMS.items()
+        for route in term.in_grains.values()
+        for key in route.needs
+    }
+    every = {(name, key) for name, term in TERMS.items() for key in term.parameters}
+    assert compared == every - {(name, key) for name, key in of_grains if key not in TERMS[name].canonical}
+
+
+def test_a_surface_stops_carriers_as_well() -> None:
+    """1.39e6 m/s through a grain of 10 nm radius: 1.39e14 1/s beside 1e14 1/s of the bulk, for A = 1."""
+    found = descriptions.damping_in_grain(
+        damping=1e14, fermi_velocity=1.39e6, surface_scattering=[0.0, 0.75, 1.0], diameter=20e-9
+    )
+    assert found == pytest.approx([1e14, 2.0425e14, 2.39e14], rel=1e-14)
 
 
 def test_width_in_wavelength_is_the_difference_of_its_two_ends() -> None:

@@ -197,9 +197,20 @@ DRUDE = Term(
         not_negative("damping", "rate", "collision rate"),
         positive("mobility", "mobility", "mobility of the carriers"),
         positive("collision_time", "time", "time between collisions"),
+        positive(
+            "fermi_velocity", "velocity", "of the carriers: in grains adds A v_F/R to the collision rate"
+        ),
+        not_negative("surface_scattering", "number", "A, of order one, beside fermi_velocity"),
     ),
     summary="free carriers with one collision rate",
     equation="−ωp² / (ω² + iγω)",
     source="P. Drude, Ann. Phys. 306, 566 (1900)",
     of=("permittivity",),
+    in_grains={
+        "damping": Route(
+            "fermi_velocity",
+            descriptions.damping_in_grain,
+            also=("surface_scattering", "damping", "diameter"),
+        )
+    },
 )
