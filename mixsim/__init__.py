@@ -16,7 +16,7 @@ from importlib import import_module
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
-    from mixsim.analysis import audit, fit, invert, judge, predict, sweep
+    from mixsim.analysis import audit, fit, invert, judge, predict, sweep, weigh
     from mixsim.errors import BadInput, MixsimError, Refusal
     from mixsim.recipe import Recipe, load, parse
 
@@ -35,6 +35,7 @@ _HOMES = {
     "parse": "mixsim.recipe",
     "predict": "mixsim.analysis",
     "sweep": "mixsim.analysis",
+    "weigh": "mixsim.analysis",
 }
 
 __all__ = [
@@ -51,6 +52,7 @@ __all__ = [
     "parse",
     "predict",
     "sweep",
+    "weigh",
 ]
 
 

@@ -19,6 +19,7 @@ if TYPE_CHECKING:
     from mixsim.analysis.judging.lot import Lot, judge_lot
     from mixsim.analysis.prediction import Prediction, predict, sweep
     from mixsim.analysis.unknowns import Unknown, freed
+    from mixsim.analysis.weighing import Weighed, weigh
 
 _HOMES = {
     "Audit": "auditing",
@@ -35,6 +36,7 @@ _HOMES = {
     "Reading": "inversion.answer",
     "Unknown": "unknowns",
     "Varied": "band",
+    "Weighed": "weighing",
     "audit": "auditing",
     "axis_of": "band",
     "fit": "fitting.fitting",
@@ -45,6 +47,7 @@ _HOMES = {
     "predict": "prediction",
     "sweep": "prediction",
     "varied": "band",
+    "weigh": "weighing",
 }
 
 __all__ = [
@@ -62,6 +65,7 @@ __all__ = [
     "Reading",
     "Unknown",
     "Varied",
+    "Weighed",
     "audit",
     "axis_of",
     "fit",
@@ -72,6 +76,7 @@ __all__ = [
     "predict",
     "sweep",
     "varied",
+    "weigh",
 ]
 
 

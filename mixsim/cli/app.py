@@ -40,6 +40,7 @@ _COMMANDS: dict[str, tuple[Callable[..., int], str]] = {
         "judge recipe.toml sample.csv --free inclusions.oxide.volume_fraction 0% 40% --set "
         "\"acceptance={of='inclusions.oxide.volume_fraction', lower='3 %', upper='5 %'}\"",
     ),
+    "weigh": (questions.weigh, "weigh recipe.toml --set batch.mass='250 g'"),
     "audit": (questions.audit, "audit gold --out gold.png"),
     "list": (reference.list_, "list rules"),
     "show": (reference.show, "show bruggeman"),

@@ -14,6 +14,7 @@ _ROOMS = {
     "fit": "fit_table",
     "judgement": "verdicts",
     "lot": "verdicts",
+    "weighed": "weigh_sheet",
 }  # where a table stands that has a room of its own
 
 if TYPE_CHECKING:

@@ -34,6 +34,10 @@ AuditOut = Annotated[
         "--out", metavar="FILE", help="Write it to a file: .csv .json .png .svg .pdf; may be repeated."
     ),
 ]
+SheetOut = Annotated[
+    list[str] | None,
+    typer.Option("--out", metavar="FILE", help="Write the sheet to a file: .csv .json; may be repeated."),
+]
 Strict = Annotated[bool, typer.Option("--strict", help="Take cautions as errors.")]
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from pathlib import Path
 from typing import Annotated
 
 import typer
@@ -14,6 +15,7 @@ from mixsim.cli.options import (
     RecipeFile,
     RuleName,
     Set,
+    SheetOut,
     Strict,
     changed_by,
     recipe_from,
@@ -119,6 +121,27 @@ def invert(
     )
     deliver(answer, "inversion", json=json, out=out, strict=strict)
     return {"answered": ANSWERED, "impossible": NO, "undecided": UNDECIDED}[answer.verdict]
+
+
+def weigh(
+    recipe: RecipeFile,
+    settings: Set = None,
+    json: Json = False,
+    out: SheetOut = None,
+    strict: Strict = False,
+) -> int:
+    """Grams of each stock and constituent for a batch.
+
+    Exit status 1: the stocks cannot make the mixture.
+    """
+    from mixsim.analysis import weigh as ask
+    from mixsim.present.atomic import check_place
+
+    for file in out or ():
+        check_place(Path(file), (".csv", ".json"))
+    answer = ask(recipe_from(recipe, settings, None))
+    deliver(answer, "weighed", json=json, out=out, strict=strict)
+    return ANSWERED if answer.reached else NO
 
 
 def audit(

@@ -13,7 +13,7 @@ from typing import Any
 
 import numpy as np
 
-from mixsim.analysis import Fitted, Inversion, Judgement, Lot, Prediction
+from mixsim.analysis import Fitted, Inversion, Judgement, Lot, Prediction, Weighed
 from mixsim.analysis.judging.answer import Judged
 from mixsim.analysis.plain import provenance
 from mixsim.analysis.prediction import CONVENTION
@@ -30,7 +30,7 @@ _QUANTITIES = (
 _CHUNK = 16384  # rows turned into text at a time
 
 
-def write_csv(answer: Prediction | Inversion | Fitted | Judgement | Lot, file: Path) -> None:
+def write_csv(answer: Prediction | Inversion | Fitted | Judgement | Lot | Weighed, file: Path) -> None:
     """Write the rows of an answer: one for each frequency (and varied value), or one for each unknown."""
     with file.open("w", encoding="utf-8", newline="") as stream:
         for line in _comments(answer):
@@ -43,12 +43,14 @@ def write_csv(answer: Prediction | Inversion | Fitted | Judgement | Lot, file: P
             writer.writerows(_fitted(answer))
         elif isinstance(answer, Judgement | Lot):
             writer.writerows(_verdicts(answer))
+        elif isinstance(answer, Weighed):
+            writer.writerows(_sheet(answer))
         else:
             for rows in _prediction(answer):
                 writer.writerows(rows)
 
 
-def _comments(answer: Prediction | Inversion | Fitted | Judgement | Lot) -> Iterator[str]:
+def _comments(answer: Prediction | Inversion | Fitted | Judgement | Lot | Weighed) -> Iterator[str]:
     recipe, origin = answer.recipe, provenance(answer.recipe)
     if recipe.schema.title:
         yield f"title: {recipe.schema.title}"
@@ -69,6 +71,8 @@ def _comments(answer: Prediction | Inversion | Fitted | Judgement | Lot) -> Iter
         yield f"convention: {CONVENTION}"
     elif isinstance(answer, Judgement | Lot):
         yield f"{answer.measurand.name}: {answer.decision}"
+    elif isinstance(answer, Weighed):
+        yield "as the recipe asks" if answer.reached else "the stocks cannot make this mixture"
     else:
         yield f"convention: {CONVENTION}"
     yield from (f"caution, {caution.kind}: {caution.message}" for caution in answer.warnings)
@@ -136,6 +140,14 @@ def _fitted(answer: Fitted) -> Iterator[Sequence[Any]]:
         columns = one.values.tolist(), _cells(one.std), met.predicted.tolist(), met.standardised.tolist()
         for frequency, *numbers in zip(frequencies, *columns, strict=True):
             yield (one.sample, one.quantity, frequency, *numbers, one.source)
+
+
+def _sheet(answer: Weighed) -> Iterator[Sequence[Any]]:
+    """One row for each portion."""
+    yield ("portion", "kind", "mass [g]", "std [g]", f"price [{answer.currency or '-'}]")
+    for one in answer.portions:
+        price = "" if one.price is None else one.price
+        yield (one.name, "stock" if one.stock else "neat", 1e3 * one.mass, 1e3 * one.std, price)
 
 
 def _verdicts(answer: Judgement | Lot) -> Iterator[Sequence[Any]]:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from pathlib import Path
 
-from mixsim.analysis import Audit, Fitted, Inversion, Judgement, Lot, Prediction
+from mixsim.analysis import Audit, Fitted, Inversion, Judgement, Lot, Prediction, Weighed
 from mixsim.errors import Refusal
 from mixsim.present.atomic import check_place, refuse, write_whole
 from mixsim.present.json_text import json_text
@@ -24,7 +24,9 @@ def check(file: str | Path) -> None:
     check_place(Path(file), SUFFIXES)
 
 
-def write(answer: Prediction | Inversion | Fitted | Judgement | Lot | Audit, file: str | Path) -> None:
+def write(
+    answer: Prediction | Inversion | Fitted | Judgement | Lot | Audit | Weighed, file: str | Path
+) -> None:
     """Write an answer to a file in the format that its suffix says.
 
     Parameters
@@ -47,8 +49,10 @@ def write(answer: Prediction | Inversion | Fitted | Judgement | Lot | Audit, fil
         raise refuse(place, refusal.found, refusal.allowed) from None
 
 
-def _write(answer: Prediction | Inversion | Fitted | Judgement | Lot | Audit, file: Path) -> None:
+def _write(answer: Prediction | Inversion | Fitted | Judgement | Lot | Audit | Weighed, file: Path) -> None:
     suffix = file.suffix.lower()
+    if isinstance(answer, Weighed) and suffix not in (".csv", ".json"):
+        raise Refusal(f"a weigh sheet in {suffix}", "one of .csv .json")
     if isinstance(answer, Audit) and suffix in (".csv", ".npz"):
         if suffix == ".npz":
             raise Refusal("an audit in .npz", f"one of .csv .json {' '.join(PLOTS)}")
@@ -63,11 +67,12 @@ def _write(answer: Prediction | Inversion | Fitted | Judgement | Lot | Audit, fi
 
         write_csv(answer, file)
     elif suffix == ".npz":
-        assert not isinstance(answer, Audit)
+        assert not isinstance(answer, Audit | Weighed)
         from mixsim.present.archive import write_npz
 
         write_npz(answer, file)
     else:
+        assert not isinstance(answer, Weighed)
         _plot(answer, file, suffix)
 
 

@@ -16,7 +16,13 @@ from mixsim.units import Leaf, kind_of_axis, read, written_unit
 
 OF_MIXTURE = "name one that the mixture depends on, not one of the band, of a validity or of the readings"
 _ROUNDING = 1e-12
-_ASIDE = ("band.", "measured.", "samples.", "acceptance.")  # tables that the mixture does not depend on
+_ASIDE = (
+    "band.",
+    "measured.",
+    "samples.",
+    "acceptance.",
+    "batch.",
+)  # tables that the mixture does not depend on
 
 
 def disagreements(

@@ -28,6 +28,9 @@ Fraction = Annotated[Leaf, Number("fraction", minimum=0.0, maximum=1.0)]
 Spectral = Annotated[Leaf, Number("spectral", minimum=0.0, exclusive=True)]
 Temperature = Annotated[Leaf, Number("temperature", minimum=0.0, exclusive=True)]
 PerKelvin = Annotated[Leaf, Number("temperature coefficient")]
+Mass = Annotated[Leaf, Number("mass", minimum=0.0, exclusive=True)]
+Volume = Annotated[Leaf, Number("volume", minimum=0.0, exclusive=True)]
+Surface = Annotated[Leaf, Number("surface", minimum=0.0, exclusive=True)]
 Length = Annotated[Leaf, Number("length", minimum=0.0, exclusive=True)]
 Density = Annotated[Leaf, Number("density", minimum=0.0, exclusive=True)]
 Conductivity = Annotated[Leaf, Number("conductivity")]
@@ -263,6 +266,9 @@ class Material(Section):
         default=None, description="stated static permittivity of an index or table"
     )
     high_frequency: Positive | None = None
+    price: str | None = Field(
+        default=None, description='such as "12 EUR/kg"; the currency is kept as written'
+    )
     ash_yield: NotNegative | None = Field(
         default=None, description="mass left of it after burn-off over its mass: 0 burns away, above 1 gains"
     )
@@ -309,6 +315,29 @@ class Sample(Measured):
     calibrates: bool = Field(default=False, description="its loading is known: it teaches the rule")
 
 
+class Stock(Section):
+    """What stands on the shelf: a dispersion, a masterbatch, a raw material."""
+
+    contains: Annotated[dict[Name, Fraction], Field(min_length=1)] = Field(
+        description="weight fractions of constituents; the rest is solvent, which leaves"
+    )
+    solvent_density: Density | None = None
+    price: str | None = Field(
+        default=None, description='such as "12 EUR/kg"; the currency is kept as written'
+    )
+
+
+class Batch(Section):
+    """How much is to be made, and from what."""
+
+    mass: Mass | None = Field(default=None, description="of the dry mixture")
+    volume: Volume | None = Field(default=None, description="of the dry mixture, voids included")
+    area: Surface | None = Field(default=None, description="to be coated, beside thickness")
+    thickness: Length | None = Field(default=None, description="of the dry coat")
+    parts: Annotated[int, Field(ge=1, strict=True)] = Field(default=1, description="that the batch makes")
+    stocks: dict[Name, Stock] = {}
+
+
 class Acceptance(Section):
     """What a piece must be to pass."""
 
@@ -338,4 +367,5 @@ class Schema(Section):
     measured: Measured | None = None
     samples: list[Sample] = []
     acceptance: Acceptance | None = None
+    batch: Batch | None = None
     unknowns: dict[str, Annotated[Span, Ends()]] = {}

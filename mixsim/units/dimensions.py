@@ -311,6 +311,27 @@ _ALL: Final = (
         shown=("mg", "g", "kg"),
     ),
     Dimension(
+        "volume",
+        "m^3",
+        "a volume",
+        "40 cm^3",
+        (
+            Unit("m^3"),
+            Unit("L", per=1e3, aliases=("l",)),
+            Unit("cm^3", per=1e6, aliases=("mL", "ml")),
+            Unit("mm^3", per=1e9),
+        ),
+        shown=("cm^3", "L"),
+    ),
+    Dimension(
+        "surface",
+        "m^2",
+        "a surface",
+        "1 m^2",
+        (Unit("m^2"), Unit("cm^2", per=1e4), Unit("mm^2", per=1e6)),
+        shown=("cm^2", "m^2"),
+    ),
+    Dimension(
         "angle",
         "rad",
         "an angle",

@@ -20,7 +20,7 @@ from mixsim.recipe import drafts, library
 
 from .conftest import Run
 
-COMMANDS = ("draft", "predict", "sweep", "invert", "fit", "judge", "audit", "list", "show", "schema")
+COMMANDS = ("draft", "predict", "sweep", "invert", "fit", "judge", "weigh", "audit", "list", "show", "schema")
 LOADING = "inclusions.filler.volume_fraction"
 CONFIGS = sorted((Path(__file__).parents[2] / "configs").glob("*.toml"))
 

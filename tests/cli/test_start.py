@@ -103,6 +103,7 @@ def test_public_names() -> None:
         "parse",
         "predict",
         "sweep",
+        "weigh",
     ]
     for name in mixsim.__all__:
         assert getattr(mixsim, name) is not None
