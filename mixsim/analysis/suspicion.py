@@ -35,6 +35,13 @@ def _units(recipe: Recipe) -> Iterator[Caution]:
     }
     for path, leaf in places.items():
         others = [other.value for known, other in places.items() if known != path]
+        # a band may be as wide as it likes: its own other end, in the same unit, is no witness
+        owner = path.rpartition(".")[0]
+        if all(
+            known.startswith(f"{owner}.") and written_unit(other) == written_unit(leaf)
+            for known, other in places.items()
+        ):
+            continue
         unit = written_unit(leaf)
         if not others or unit not in MISTAKEN or not path.endswith((".resonance", ".from", ".to")):
             continue

@@ -97,6 +97,15 @@ def test_an_infrared_band_beside_an_infrared_band_is_not_asked_about() -> None:
     assert kinds(text.replace('"400 nm"', '"400 cm^-1"').replace('"800 nm"', '"900 cm^-1"')) == []
 
 
+def test_a_wide_band_is_not_suspected_of_its_own_other_end() -> None:
+    text = """
+        host.material = "paraffin"
+        band = { from = "0.1 GHz", to = "100 GHz", points = 3 }
+    """
+    assert "unit-suspect" not in kinds(text)
+    assert "unit-suspect" in kinds(text.replace("100 GHz", "1.2 THz").replace("0.1 GHz", "1 GHz"))
+
+
 def test_sweep_is_judged_at_its_worst() -> None:
     recipe = mixsim.parse(oxide())
     swept = mixsim.sweep(recipe, [varied(recipe, "inclusions.grain.volume_fraction", "1 %", "70 %", 5)])
