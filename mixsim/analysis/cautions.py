@@ -13,7 +13,8 @@ from mixsim.analysis.caution import Caution
 from mixsim.analysis.rules import applicable_rules, conducts, threshold
 from mixsim.analysis.suspicion import suspicions
 from mixsim.mixture import HOST, VOIDS, Composition, Limits, Mixture, Response
-from mixsim.mixture.spectra import Measured
+from mixsim.mixture.nested import Mixed
+from mixsim.mixture.spectra import Measured, described
 from mixsim.observables import complex_index
 from mixsim.recipe import Recipe
 from mixsim.units import SPEED_OF_LIGHT, show, written_unit
@@ -25,6 +26,7 @@ SAME_TEMPERATURE = 1.0  # K, within which a description may be taken as it is
 DECADE = 2.0  # ratio of the ends of a band over which a constant loss is still handy
 SPREAD = 0.2  # share by which other rules may differ before it is said
 CONTRACTION = 0.1  # of the volume on mixing, which no common solution reaches; common practice
+CAUSAL = 0.05  # of 1 + |ε|: misfit of a table to Kramers–Kronig from which nothing follows beyond its ends
 PASSIVE = 1e-9  # share of |ε| below which a negative loss is rounding
 
 
@@ -112,21 +114,33 @@ def _paths_of(mixture: Mixture, material: str) -> frozenset[str]:
     return frozenset().union(*phases)
 
 
-def extended(mixture: Mixture, omega: NDArray[np.float64]) -> Iterator[Caution]:
-    """Tables that are asked for beyond their ends, and how well they obey causality themselves."""
+def extended(mixture: Mixture, omega: NDArray[np.float64], under: str = "") -> Iterator[Caution]:
+    """Tables that are asked for beyond their ends, and how well they obey causality themselves.
+
+    Those of a material that is a recipe of its own, too: `under` is where it stands.
+    """
     for phase in mixture.phases:
-        spectrum = phase.permittivity
-        continued = spectrum.extension if isinstance(spectrum, Measured) else None
-        if continued is None or not continued.beyond(omega):
+        spectra = [described(spectrum) for spectrum in (phase.permittivity, phase.permeability)]
+        if isinstance(spectra[0], Mixed):
+            yield from extended(spectra[0].mixture, omega, f"{under}materials.{phase.material}.recipe.")
             continue
-        covered = continued.table.range_written
-        share = continued.completion.misfit
+        asked = [part.extension for part in spectra if isinstance(part, Measured) and part.extension]
+        if not asked or not asked[0].beyond(omega):
+            continue
+        share = max(extension.completion.misfit for extension in asked)
+        tied = f"it is tied to the data, which obey Kramers–Kronig to {100 * share:.1g} % of 1 + |ε|"
+        if share > CAUSAL:
+            tied = (
+                f"even near them it means little, as the data miss Kramers–Kronig by {share:.0%} of 1 + |ε|"
+            )
+        else:
+            tied = f"near the ends {tied}"
         yield Caution(
             "extended",
-            f"materials.{phase.material}",
-            f"{phase.material} was measured from {covered}; beyond, a causal and passive continuation stands "
-            f"in its place: near the ends it is tied to the data (which obey Kramers–Kronig to {share:.1g}), "
-            f"far from them it is only one of many that are possible",
+            f"{under}materials.{phase.material}",
+            f"{phase.material} was measured from {asked[0].table.range_written}; beyond, a causal and "
+            f"passive continuation stands in its place: {tied}; far from them it is one of many that are "
+            f"possible",
         )
 
 

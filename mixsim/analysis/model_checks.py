@@ -150,6 +150,9 @@ def covered(recipe: Recipe, name: str, asked: tuple[float, float] | None, unit: 
         reaches = not (asked or ends) or _within(low, high, *numbers.values())
         verdict: Verdict = "passed" if reaches else "failed"
         said = wanted or (f"; {holds}" if valid is not None else "")
+        if not reaches and recipe.schema.materials[name].extension is not None:
+            verdict = "could not tell"
+            said += "; beyond, a causal continuation stands in its place, which nobody has measured"
         return Finding(_RANGE, name, verdict, numbers, f"the table covers {table.range_written}{said}")
     if ends is None:
         return Finding(_RANGE, name, "could not tell", {}, holds + wanted)

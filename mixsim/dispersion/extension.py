@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
-from functools import cached_property
+from functools import cached_property, lru_cache
 from typing import Any
 
 import numpy as np
@@ -11,6 +12,9 @@ from numpy.typing import ArrayLike, NDArray
 
 from mixsim.dispersion.causal import Completion, complete
 from mixsim.dispersion.table import Table, interpolate, interpolate_permeability
+
+FEWEST = 3  # rows of a table that can be continued
+_HELD, _LONGEST = 16, 65536  # axes whose values are kept, and how long one may be
 
 
 @dataclass(frozen=True, eq=False)
@@ -51,8 +55,17 @@ class Extension:
             if np.any(beyond):
                 # what the completion misses of the end is carried on: the two meet there
                 step = inside(end, table=self.table) - self.completion(end)
-                out[beyond] = self.completion(w[beyond]) + np.real(step)
+                out[beyond] = self._completed(np.ascontiguousarray(w[beyond])) + np.real(step)
         return out[()]
+
+    def _completed(self, w: NDArray[np.float64]) -> NDArray[Any]:
+        """The completion beyond the table; every rule asks for it on the same axis."""
+        return self.completion(w) if w.size > _LONGEST else self._kept(w.tobytes())
+
+    @cached_property
+    def _kept(self) -> Callable[[bytes], NDArray[Any]]:
+        completion = self.completion
+        return lru_cache(_HELD)(lambda axis: np.asarray(completion(np.frombuffer(axis))))
 
     def beyond(self, omega: ArrayLike) -> bool:
         """Whether any of some angular frequencies lies outside the table [rad/s]."""

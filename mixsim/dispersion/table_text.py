@@ -61,6 +61,7 @@ _COLUMNS = tuple(dict.fromkeys(name for names in (*COLUMN_SETS, *MAGNETIC_SETS) 
 _UNITS = {kind: [u for u in accepted_units("spectral") if kind_of_axis(u) == kind] for kind in AXES.values()}
 _HEADING = r"(?P<name>[^\[\]]*?)\s*(?:\[\s*(?P<unit>[^\]]*?)\s*\])?"
 _NUMBER = r"[+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?"
+_ALONG = r"(\w+) axis [123]"  # of a prediction with principal axes
 _STATED = r"(?i)#\s*convention\b"
 _CONVENTION = r"(?i)#\s*convention\s*[:=]?\s*exp\s*\(([+-])[ij](?:w|ω|omega)t\)"
 _SIGNS = "'# convention: exp(-iwt)' (lossy k above 0) or '# convention: exp(+iwt)' (lossy k below 0)"
@@ -209,6 +210,9 @@ def _header(number: int, cells: Sequence[str]) -> tuple[str, tuple[str, ...], tu
     if all(re.fullmatch(_NUMBER, cell) for cell in cells):
         raise Refusal(f"line {number}: no header row above the numbers", "such as 'wavelength [nm], n, k'")
     names, units = zip(*(_heading(number, cell) for cell in cells), strict=True)
+    if names[0] not in AXES and (later := [name for name in names[1:] if name in AXES]):
+        found = f"line {number}: {names[0]!r} before the axis {later[0]!r}"
+        raise Refusal(found, "a table holds one spectrum, its axis first; a sweep holds one for each value")
     if names[0] not in AXES:
         raise Refusal(
             f"line {number}: first column {names[0]!r} is not an axis",
@@ -221,6 +225,9 @@ def _header(number: int, cells: Sequence[str]) -> tuple[str, tuple[str, ...], tu
         if name != heading and name in _COLUMNS and name not in names[1:]:
             found = f"line {number}: {heading!r} without {name!r}"
             raise Refusal(found, "an uncertainty stands beside its column")
+        if (along := re.fullmatch(_ALONG, name)) and along[1] in _COLUMNS:
+            found = f"line {number}: {name!r} is along one axis of aligned grains"
+            raise Refusal(found, f"a table holds one spectrum: keep one axis, and call it {along[1]!r}")
         if name not in _COLUMNS:
             allowed = f"columns are {', '.join(_COLUMNS)}"
             raise Refusal(f"line {number}: unknown column {name!r}", allowed, nearest(name, _COLUMNS))

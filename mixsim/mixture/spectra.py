@@ -317,6 +317,13 @@ class LocalPlasma:
         return self.plasma(x) * (around + 2.0) / 3.0
 
 
+def described(spectrum: Spectrum) -> Spectrum:
+    """What a material is by its own description, without the dopants and the warmth added to it."""
+    while isinstance(spectrum, Doped | Warmed):
+        spectrum = spectrum.host if isinstance(spectrum, Doped) else spectrum.base
+    return spectrum
+
+
 def held(part: Spectrum | BoundTerm, x: Values, omega: Any, varied: frozenset[str]) -> Here:
     """A spectrum at some frequencies as a function of the leaves that vary.
 

@@ -7,6 +7,7 @@ from pathlib import Path
 from typing import Any
 
 from mixsim.dispersion import TERMS, Table, read_table
+from mixsim.dispersion.extension import FEWEST
 from mixsim.errors import Refusal
 from mixsim.recipe import library
 from mixsim.recipe.faults import Finding
@@ -88,7 +89,8 @@ def _inherit(name: str, materials: Mapping[str, Any], findings: list[Finding], s
         key: value for key, value in base.items() if key not in _DESCRIPTIONS or not given or key in given
     }
     if given and given != ["index"]:
-        kept = {key: value for key, value in kept.items() if key not in ("static", "high_frequency")}
+        own = ("static", "high_frequency", *(() if "table" in given else ("extension",)))
+        kept = {key: value for key, value in kept.items() if key not in own}
     return _merged(kept, material)
 
 
@@ -138,6 +140,9 @@ def tables(raw: Mapping[str, Any], folder: Path) -> tuple[dict[str, Table], list
         path = f"materials.{name}.table"
         try:
             read[name] = read_table(folder / file)
+            if "extension" in material and (rows := read[name].omega.size) < FEWEST:
+                found = f"extension of {file}, which has {rows} rows"
+                findings.append((f"materials.{name}.extension", Refusal(found, f"at least {FEWEST} rows")))
             if read[name].permeability is not None and "permeability" in material:
                 found = f"permeability beside {file}, which holds one"
                 findings.append((f"materials.{name}.permeability", Refusal(found, "give one of them")))

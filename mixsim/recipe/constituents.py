@@ -32,7 +32,8 @@ def of_material(name: str, material: Mapping[str, Any]) -> Iterator[Finding]:
                 allowed = "it is for index models and tables; terms have exact limits of their own"
                 beside = "permittivity" if "permittivity" in material else "recipe"
                 yield f"{path}.{key}", Refusal(f"{key} beside {beside}", allowed)
-    if "extension" in material and "table" not in material and "based_on" not in material:
+    unknown_base = "based_on" in material and not material.keys() & set(_DESCRIPTIONS)
+    if "extension" in material and "table" not in material and not unknown_base:
         yield f"{path}.extension", Refusal("extension without table", "it continues a measured table")
     yield from _warming(path, material)
     yield from _index(f"{path}.index", table(material, "index"))

@@ -365,3 +365,24 @@ def test_columns_that_follow_from_others_are_skipped() -> None:
 def test_columns_that_lack_their_partner(text: str, found: str) -> None:
     with pytest.raises(Refusal, match=found):
         read_table(f"{MINUS}frequency [GHz], {text}")
+
+
+@pytest.mark.parametrize(
+    ("header", "found", "allowed"),
+    [
+        (
+            "materials.m.permittivity.infinity, frequency [GHz], permittivity_real, permittivity_imag",
+            "line 2: 'materials.m.permittivity.infinity' before the axis 'frequency'",
+            "a sweep holds one for each value",
+        ),
+        (
+            "frequency [GHz], permittivity_real axis 1, permittivity_real axis 2, permittivity_real axis 3",
+            "line 2: 'permittivity_real axis 1' is along one axis",
+            "call it 'permittivity_real'",
+        ),
+    ],
+)
+def test_many_spectra_in_one_file_are_refused_as_such(header: str, found: str, allowed: str) -> None:
+    with pytest.raises(Refusal) as caught:
+        read_table(MINUS + header + "\n1, 1, 4, 0\n1, 2, 4, 0\n")
+    assert found in caught.value.found and allowed in caught.value.allowed

@@ -13,6 +13,7 @@ import pytest
 
 import mixsim
 from mixsim.dispersion import read_table
+from mixsim.errors import Refusal
 from mixsim.mixture import Response
 from mixsim.present import comma_separated
 from mixsim.present.files import write
@@ -69,6 +70,27 @@ def test_a_written_prediction_is_a_measured_table(
     )
     again = mixsim.predict(mixsim.load(tmp_path / "again.toml"))
     assert again.permittivity[0] == pytest.approx(answer.permittivity[0], rel=1e-9)
+
+
+def test_a_written_magnetic_prediction_is_a_measured_table(answers: Any, tmp_path: Path) -> None:
+    answer = answers.prediction("magnet")
+    write(answer, tmp_path / "measured.csv")
+    table = read_table(tmp_path / "measured.csv")
+    assert table.permeability is not None
+    assert table.permittivity.tolist() == answer.permittivity.tolist()
+    assert table.permeability.tolist() == answer.permeability.tolist()
+    text = 'host.material = "m"\nmaterials.m.table = "measured.csv"\nband.values = ["1 GHz", "4.6 GHz"]\n'
+    again = mixsim.predict(mixsim.parse(text, folder=tmp_path))
+    assert again.permeability == pytest.approx(answer.permeability[[0, 4]], rel=1e-9)
+
+
+def test_what_holds_many_spectra_is_no_table(answers: Any, tmp_path: Path) -> None:
+    write(answers.sweep((answers.loading, "1 %", "9 %", 3)), tmp_path / "swept.csv")
+    with pytest.raises(Refusal, match="before the axis 'wavenumber'"):
+        read_table(tmp_path / "swept.csv")
+    write(answers.prediction("needles"), tmp_path / "aligned.csv")
+    with pytest.raises(Refusal, match="'permittivity_real axis 1' is along one axis"):
+        read_table(tmp_path / "aligned.csv")
 
 
 @pytest.mark.parametrize("chunk", [7, 100, 16384])

@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, replace
 from pathlib import Path
 
 import numpy as np
 
 from mixsim.analysis.caution import Caution
+from mixsim.analysis.cautions import extended
 from mixsim.analysis.fitting.answer import Fitted
 from mixsim.analysis.fitting.doubt import UNIFORM, Doubt, doubt_of
 from mixsim.analysis.fitting.fitting import Asked, answered, asked, held_numbers, solved
@@ -140,8 +141,18 @@ def judge(
         pieces=verdicts,
         calibrators=tuple(sample.name for sample in model.samples if sample.calibrates),
         estimates={name: (found.value, found.std) for name, found in fitted.estimates.items()},
-        warnings=(*fitted.warnings, *_cautions(limits, verdicts)),
+        warnings=tuple(
+            dict.fromkeys((*fitted.warnings, *continued(recipe, pieces), *_cautions(limits, verdicts)))
+        ),
     )
+
+
+def continued(recipe: Recipe, pieces: Sequence[Sample]) -> Iterator[Caution]:
+    """Tables that the frequency of what is judged lies beyond."""
+    acceptance = recipe.schema.acceptance
+    if acceptance is not None and acceptance.at is not None:
+        for piece in pieces:
+            yield from extended(piece.mixture, np.array([acceptance.at.value]))
 
 
 def limits_of(recipe: Recipe) -> Limits:

@@ -13,9 +13,10 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
+from mixsim.analysis.cautions import extended
 from mixsim.analysis.fitting.fitting import Asked, asked
 from mixsim.analysis.fitting.model import FitModel
-from mixsim.analysis.judging.judging import Limits, limits_of
+from mixsim.analysis.judging.judging import Limits, continued, limits_of
 from mixsim.analysis.judging.measurand import Measurand
 from mixsim.analysis.least_squares import gauss_newton, jacobian
 from mixsim.analysis.observed.observation import Observation
@@ -171,7 +172,9 @@ def judge_lot(recipe: Recipe, file: str | Path, *, free: Sequence[Unknown] | Non
         for name, fault, verdict in zip(names, faults, verdicts, strict=True)
     )
     rule = model.samples[0].mixture.rule.name
-    return Lot(recipe, rule, limits.measurand, limits.lower, limits.upper, rows)
+    (sample,) = model.samples
+    said = dict.fromkeys((*extended(sample.mixture, sample.omega), *continued(recipe, [sample])))
+    return Lot(recipe, rule, limits.measurand, limits.lower, limits.upper, rows, tuple(said))
 
 
 def verdict_of(name: str, value: float, std: float, off: float, limits: Limits) -> Row:

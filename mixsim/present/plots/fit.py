@@ -10,6 +10,7 @@ from mixsim.analysis import Fitted
 from mixsim.analysis.fitting.answer import Met
 from mixsim.errors import Refusal
 from mixsim.observables import QUANTITIES
+from mixsim.present.plots.beyond import said, shade
 from mixsim.present.plots.style import (
     DASHES,
     FEW,
@@ -31,6 +32,8 @@ USUAL = 2.0  # standard uncertainties within which most readings lie
 
 def draw(figure: Figure, answer: Fitted) -> None:
     """Draw a fit: a column for each quantity, readings and fit above, what is left over below."""
+    from matplotlib.lines import Line2D
+
     spectral = [met for met in answer.met if met.observation.omega is not None]
     quantities = list(dict.fromkeys(met.observation.quantity for met in spectral))
     if not quantities:
@@ -54,10 +57,11 @@ def draw(figure: Figure, answer: Fitted) -> None:
         below.axhspan(-USUAL, USUAL, color=MUTED, alpha=0.12, lw=0)
         below.set_ylabel("off, in ±" if column == 0 else "")
         spectral_axis(below, unit, spacing)
-    headed(figure, answer.recipe.schema.title or "fit", _below(answer))
+    shade(grid[0], answer, unit)  # below, a band of grey means something else
+    headed(figure, answer.recipe.schema.title or "fit", _below(answer) + said(answer))
     legend = legend_below(figure, list(handles.values()), list(handles))
     for handle in legend.legend_handles:
-        if handle.get_marker() == ".":
+        if isinstance(handle, Line2D) and handle.get_marker() == ".":
             handle.set(markersize=7.0, alpha=1.0)  # those of the plot are too small to be recognised
 
 

@@ -8,11 +8,11 @@ from typing import TYPE_CHECKING, Any
 import numpy as np
 
 from mixsim.analysis import Prediction
+from mixsim.present.plots.beyond import said, shade
 from mixsim.present.plots.levels import mark_levels
 from mixsim.present.plots.style import (
     DASHES,
     MUTED,
-    SMALL,
     STRONG,
     headed,
     legend_below,
@@ -21,7 +21,7 @@ from mixsim.present.plots.style import (
     spectral_axis,
 )
 from mixsim.present.principal import principal_axes
-from mixsim.units import show, spectral_to
+from mixsim.units import show
 
 if TYPE_CHECKING:
     from matplotlib.axes import Axes
@@ -40,9 +40,8 @@ def draw(figure: Figure, answer: Prediction) -> None:
         loss(grid[1, column], answer, quantity)
         spectral_axis(grid[1, column], answer.axis.unit, answer.axis.spacing)
         real_part(grid[0, column], answer, quantity, width=1.0 / len(quantities))
-    for axes in grid.flat:
-        _beyond(axes, answer)
-    headed(figure, answer.recipe.schema.title or "prediction", _made_of(answer))
+    shade(grid.flat, answer, answer.axis.unit)
+    headed(figure, answer.recipe.schema.title or "prediction", _made_of(answer) + said(answer))
     cut = {name for axes in grid.flat for name in _off_scale(axes)}
     lines = {line.get_gid(): line for line in grid[0, 0].lines if line.get_gid()}
     labels = [line.get_label() + (", partly off scale" if gid in cut else "") for gid, line in lines.items()]
@@ -118,28 +117,6 @@ def _curves(axes: Axes, answer: Prediction, quantity: str, part: str, flat: floa
     room = ROOM * (high - low) or 0.01 * (abs(high) or 1.0)
     axes.set_ylim(low - room, high + room)
     axes.margins(x=0.01)
-
-
-def _beyond(axes: Axes, answer: Prediction) -> None:
-    """Shade where a table is continued beyond its ends."""
-    for name, table in answer.recipe.tables.items():
-        if answer.recipe.schema.materials[name].extension is None:
-            continue
-        ends = spectral_to(np.array([table.omega[0], table.omega[-1]]), answer.axis.unit)
-        low, high = float(ends.min()), float(ends.max())
-        left, right = float(answer.axis.shown.min()), float(answer.axis.shown.max())
-        for start, stop in ((left, min(low, right)), (max(high, left), right)):
-            if stop > start:
-                axes.axvspan(start, stop, color=MUTED, alpha=0.12, lw=0, gid=f"beyond-{name}")
-                axes.annotate(
-                    f"{name} continued",
-                    (0.5 * (start + stop), 1.0),
-                    xycoords=("data", "axes fraction"),
-                    ha="center",
-                    va="bottom",
-                    fontsize=SMALL - 1.0,
-                    color=MUTED,
-                )
 
 
 def _off_scale(axes: Axes) -> Iterator[str]:

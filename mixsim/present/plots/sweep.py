@@ -8,6 +8,7 @@ import numpy as np
 
 from mixsim.analysis import Prediction
 from mixsim.errors import Refusal
+from mixsim.present.plots.beyond import said, shade
 from mixsim.present.plots.maps import draw_maps
 from mixsim.present.plots.style import (
     DASHED,
@@ -43,13 +44,15 @@ def draw(figure: Figure, answer: Prediction) -> None:
         )
     if answer.permittivity.ndim > len(answer.vary) + 1:
         raise Refusal("a plot of a sweep with principal axes", ".csv and .npz hold all three")
+    over_frequency = len(answer.vary) == 1 and len(answer.omega) > 1
     if len(answer.vary) == 2:
         draw_maps(figure, answer)
-    elif len(answer.omega) == 1:
-        _against_value(figure, answer)
-    else:
+    elif over_frequency:
         _spectra(figure, answer)
-    headed(figure, answer.recipe.schema.title or "sweep", answer.rule)
+    else:
+        _against_value(figure, answer)
+    title = answer.recipe.schema.title or "sweep"
+    headed(figure, title, answer.rule + said(answer, shaded=over_frequency))
 
 
 def _spectra(figure: Figure, answer: Prediction) -> None:
@@ -63,6 +66,7 @@ def _spectra(figure: Figure, answer: Prediction) -> None:
         for row, part in enumerate(("real", "imag")):
             curves(grid[row, column], answer, quantity, part)
         spectral_axis(grid[1, column], answer.axis.unit, answer.axis.spacing)
+    shade(grid[:, : len(quantities)].flat, answer, answer.axis.unit)
     _bar(figure, list(grid[0, : len(quantities)]), answer)
     if beside:
         levels(grid[0, 1], answer)
