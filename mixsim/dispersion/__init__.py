@@ -7,7 +7,7 @@ from mixsim.dispersion.data_sheet import infinity_from_pair, step_from_pair
 from mixsim.dispersion.descriptions import width_from_wavelength
 from mixsim.dispersion.index import INDEX_MODELS, IndexModel
 from mixsim.dispersion.kramers_kronig import kramers_kronig
-from mixsim.dispersion.registry import Parameter, Route, Term
+from mixsim.dispersion.registry import Route, Term
 from mixsim.dispersion.table import Table, interpolate, interpolate_permeability, read_table
 from mixsim.dispersion.terms import TERMS
 
@@ -16,7 +16,6 @@ __all__ = [
     "TERMS",
     "Completion",
     "IndexModel",
-    "Parameter",
     "Route",
     "Table",
     "Term",

@@ -10,7 +10,7 @@ from dataclasses import dataclass
 from typing import Any
 
 from mixsim.dispersion.index_formulas import abbe, cauchy, conrady, constant, herzberger, schott, sellmeier
-from mixsim.dispersion.registry import Parameter, by_name, not_negative, positive
+from mixsim.parameter import Parameter, by_name, not_negative, positive
 
 
 @dataclass(frozen=True, slots=True)

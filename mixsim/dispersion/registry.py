@@ -2,44 +2,12 @@
 
 from __future__ import annotations
 
-import math
 from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass, field
 from typing import Any
 
 from mixsim.errors import Refusal, nearest
-
-
-@dataclass(frozen=True, slots=True)
-class Parameter:
-    """One number (or list of numbers) of a term or index model.
-
-    Attributes
-    ----------
-    name
-        Word in the recipe.
-    dimension
-        Name of its dimension in `mixsim.units`.
-    minimum, exclusive
-        Least SI value allowed, or None; and whether it is itself refused.
-    default
-        Value in SI where the recipe may leave it out without changing what is meant, or None.
-    meaning
-        What it is, for people.
-    is_list
-        Whether it takes a list of such numbers.
-    maximum
-        Greatest SI value allowed.
-    """
-
-    name: str
-    dimension: str
-    minimum: float | None
-    exclusive: bool
-    default: float | None
-    meaning: str
-    is_list: bool = False
-    maximum: float = math.inf
+from mixsim.parameter import Parameter
 
 
 @dataclass(frozen=True, slots=True)
@@ -189,23 +157,3 @@ class Term:
         routes = [route for ways in self.canonical.values() for route in ways]
         routes += self.in_grains.values()
         return list(dict.fromkeys(route.key for route in routes if name in route.also))
-
-
-def positive(name: str, dimension: str, meaning: str) -> Parameter:
-    """Parameter that must be above zero and has no default."""
-    return Parameter(name, dimension, minimum=0.0, exclusive=True, default=None, meaning=meaning)
-
-
-def bounded(name: str, meaning: str, *, least: float, most: float) -> Parameter:
-    """Plain number between two ends, both allowed."""
-    return Parameter(name, "number", least, False, None, meaning, maximum=most)
-
-
-def not_negative(name: str, dimension: str, meaning: str, default: float | None = None) -> Parameter:
-    """Parameter that must be zero or above."""
-    return Parameter(name, dimension, minimum=0.0, exclusive=False, default=default, meaning=meaning)
-
-
-def by_name(*parameters: Parameter) -> Mapping[str, Parameter]:
-    """Parameters by their names."""
-    return {parameter.name: parameter for parameter in parameters}

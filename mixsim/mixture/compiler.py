@@ -11,7 +11,6 @@ from mixsim.dispersion import (
     INDEX_MODELS,
     TERMS,
     IndexModel,
-    Parameter,
     infinity_from_pair,
     step_from_pair,
     width_from_wavelength,
@@ -35,6 +34,7 @@ from mixsim.mixture.spectra import (
     TermSum,
     Warmed,
 )
+from mixsim.parameter import Parameter
 from mixsim.recipe import Coating, Recipe, loading_of, shells_of
 from mixsim.units import read
 

@@ -5,9 +5,10 @@ from __future__ import annotations
 from collections.abc import Iterable, Mapping
 from typing import TYPE_CHECKING, Any
 
-from mixsim.dispersion import INDEX_MODELS, TERMS, IndexModel, Parameter, Term
+from mixsim.dispersion import INDEX_MODELS, TERMS, IndexModel, Term
 from mixsim.mixing import RULES, Rule
 from mixsim.observables import QUANTITIES, Quantity
+from mixsim.parameter import Parameter
 from mixsim.present.all_words import in_all_words
 from mixsim.present.columns import described, paragraph, table, width
 from mixsim.recipe import library

@@ -11,7 +11,8 @@ from typing import TYPE_CHECKING, Annotated, Any, Literal
 
 from pydantic import BaseModel, ConfigDict, Discriminator, Field, Tag, create_model
 
-from mixsim.dispersion import INDEX_MODELS, TERMS, Parameter
+from mixsim.dispersion import INDEX_MODELS, TERMS
+from mixsim.parameter import Parameter
 from mixsim.recipe.leaves import Ends, Number, Span
 from mixsim.units import Leaf
 

@@ -13,8 +13,9 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 import mixsim.dispersion
-from mixsim.dispersion import INDEX_MODELS, TERMS, Parameter, Term
+from mixsim.dispersion import INDEX_MODELS, TERMS, Term
 from mixsim.errors import Refusal
+from mixsim.parameter import Parameter
 from mixsim.units import dimension_named
 
 OMEGA = np.array([1.0e14, 0.9e15, 2.2e15, 3.0e15, 4.7e15])

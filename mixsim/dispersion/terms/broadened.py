@@ -6,8 +6,9 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from mixsim.dispersion import descriptions
-from mixsim.dispersion.registry import Route, Term, by_name, not_negative, positive
+from mixsim.dispersion.registry import Route, Term
 from mixsim.dispersion.terms.parts import Array, floats
+from mixsim.parameter import by_name, not_negative, positive
 
 _SHARP = 2.0 * np.sqrt(np.log(2.0))  # full width at half maximum of exp(−x²)
 

@@ -5,8 +5,9 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import ArrayLike
 
-from mixsim.dispersion.registry import Route, Term, bounded, by_name, not_negative, positive
+from mixsim.dispersion.registry import Route, Term
 from mixsim.dispersion.terms.parts import Array, blank, floats
+from mixsim.parameter import bounded, by_name, not_negative, positive
 from mixsim.units import VACUUM_PERMITTIVITY
 
 

@@ -6,8 +6,9 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from mixsim.dispersion import descriptions
-from mixsim.dispersion.registry import Route, Term, bounded, by_name, not_negative, positive
+from mixsim.dispersion.registry import Route, Term
 from mixsim.dispersion.terms.parts import Array, blank, floats, over
+from mixsim.parameter import bounded, by_name, not_negative, positive
 
 _STEP_AND_TIME = {
     "step": (Route("step"),),
