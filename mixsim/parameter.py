@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 from collections.abc import Mapping
 from dataclasses import dataclass
+from typing import TypeVar
 
 
 @dataclass(frozen=True, slots=True)
@@ -72,6 +73,9 @@ class Choice:
         return spelt if spelt in self.words else None
 
 
+Entry = TypeVar("Entry", Parameter, Choice, Parameter | Choice)
+
+
 def positive(name: str, dimension: str, meaning: str) -> Parameter:
     """Parameter that must be above zero and has no default."""
     return Parameter(name, dimension, minimum=0.0, exclusive=True, default=None, meaning=meaning)
@@ -87,6 +91,6 @@ def not_negative(name: str, dimension: str, meaning: str, default: float | None 
     return Parameter(name, dimension, minimum=0.0, exclusive=False, default=default, meaning=meaning)
 
 
-def by_name(*parameters: Parameter) -> Mapping[str, Parameter]:
+def by_name(*parameters: Entry) -> Mapping[str, Entry]:
     """Parameters by their names."""
     return {parameter.name: parameter for parameter in parameters}

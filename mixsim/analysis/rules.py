@@ -13,8 +13,18 @@ from mixsim.recipe import Recipe
 
 def applicable_rules(recipe: Recipe, mixture: Mixture) -> tuple[str, ...]:
     """Names of the rules, other than the mixture's own, that could describe it."""
+    return tuple(rule.name for rule in _others(recipe, mixture) if not mixture.lacking(rule))
+
+
+def lacking_rules(recipe: Recipe, mixture: Mixture) -> Mapping[str, tuple[str, ...]]:
+    """Rules that could describe the mixture, were the recipe to give what they need: name → parameters."""
+    missing = {rule.name: mixture.lacking(rule) for rule in _others(recipe, mixture)}
+    return {name: parameters for name, parameters in missing.items() if parameters}
+
+
+def _others(recipe: Recipe, mixture: Mixture) -> list[Rule]:
     others = (rule for rule in RULES.values() if rule is not mixture.rule)
-    return tuple(rule.name for rule in others if _applies(rule, recipe, mixture))
+    return [rule for rule in others if _applies(rule, recipe, mixture)]
 
 
 def conducts(mixture: Mixture, name: str) -> bool:
@@ -59,6 +69,10 @@ def _applies(rule: Rule, recipe: Recipe, mixture: Mixture) -> bool:
     if any(grain.shape is not None for grain in mixture.inclusions) and not rule.takes_shapes:
         return False
     if mixture.density is not None and rule.additive_only:
+        return False
+    if rule.ordered and not mixture.rule.ordered:
+        return False
+    if rule.most_phases is not None and len(mixture.phases) > rule.most_phases:
         return False
     for name, inclusion in recipe.schema.inclusions.items():
         apart = {"insulated": True, "touching": False, None: None}[inclusion.contact]

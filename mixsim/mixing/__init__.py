@@ -36,7 +36,8 @@ from mixsim.mixing.orientation import (
     random_spheroid,
     ratios_about,
 )
-from mixsim.mixing.registry import RULES, Rule, rule_named
+from mixsim.mixing.registry import RULES, rule_named
+from mixsim.mixing.rule import Rule
 
 __all__ = [
     "DISC",

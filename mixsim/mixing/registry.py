@@ -5,77 +5,23 @@ A new rule is one module, its test and one entry of `RULES`.
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
-from dataclasses import dataclass
+from collections.abc import Mapping
 
 from mixsim.errors import Refusal, nearest
 from mixsim.mixing.bruggeman import bruggeman
 from mixsim.mixing.bruggeman import fraction_from as bruggeman_fraction
 from mixsim.mixing.bruggeman import inclusion_from as bruggeman_inclusion
 from mixsim.mixing.bruggeman import percolation_threshold as bruggeman_threshold
-from mixsim.mixing.depolarisation import Array
+from mixsim.mixing.cubic_arrays import CUBIC_RULE
+from mixsim.mixing.layers import LAYER_RULES
 from mixsim.mixing.lorentz_lorenz import fraction_from as lorentz_lorenz_fraction
 from mixsim.mixing.lorentz_lorenz import inclusion_from as lorentz_lorenz_inclusion
 from mixsim.mixing.lorentz_lorenz import lorentz_lorenz
 from mixsim.mixing.maxwell_garnett import fraction_from as maxwell_garnett_fraction
 from mixsim.mixing.maxwell_garnett import inclusion_from as maxwell_garnett_inclusion
 from mixsim.mixing.maxwell_garnett import maxwell_garnett
-
-RuleFunction = Callable[..., Array]
-
-
-@dataclass(frozen=True, slots=True)
-class Rule:
-    """One mixing rule.
-
-    Attributes
-    ----------
-    name
-        Word in the recipe.
-    function
-        ``function(phases, *, fractions, depolarisations, **own parameters)``, host first.
-    summary, equation, assumptions, dilute_limit, valid_for, source
-        What a person wants to know of it, as text.
-    takes_shapes
-        Whether grains may be other than spheres.
-    takes_aligned
-        Whether such grains may be aligned, so that the answer has principal axes.
-    symmetric
-        Whether no phase is the host.
-    additive_only
-        Whether the fractions must add up to one.
-    homogeneous
-        Whether scaling every phase scales the answer; not so where vacuum is the silent host.
-    fraction_from
-        ``(mixture, *, host, inclusion)``: closed-form fraction of the second of two phases
-        of spheres, or None.
-    inclusion_from
-        ``(mixture, *, host, fraction)``: closed-form permittivity of that phase, or None.
-    percolation
-        Fraction from which spheres of a conducting phase conduct through the mixture [-], or None where
-        they never do below one.
-    threshold_of
-        ``(depolarisation)``: that fraction of grains of other shapes, or None.
-    """
-
-    name: str
-    function: RuleFunction
-    summary: str
-    equation: str
-    assumptions: str
-    dilute_limit: str
-    valid_for: str
-    source: str
-    takes_shapes: bool
-    takes_aligned: bool
-    symmetric: bool
-    additive_only: bool
-    homogeneous: bool
-    fraction_from: RuleFunction | None
-    inclusion_from: RuleFunction | None
-    percolation: float | None
-    threshold_of: Callable[..., Array] | None = None
-
+from mixsim.mixing.power_rules import POWER_RULES
+from mixsim.mixing.rule import Rule
 
 _CLAUSIUS_MOSSOTTI = "exact: ε_h (1 + 3 f (ε_i − ε_h)/(ε_i + 2 ε_h)) for spheres"
 
@@ -136,7 +82,12 @@ RULES: Mapping[str, Rule] = {
             fraction_from=lorentz_lorenz_fraction,
             inclusion_from=lorentz_lorenz_inclusion,
             percolation=None,
+            bounds="none",
+            dilute_exact=False,
         ),
+        *POWER_RULES,
+        *LAYER_RULES,
+        CUBIC_RULE,
     )
 }
 

@@ -16,7 +16,7 @@ from mixsim.dispersion import (
     width_from_wavelength,
 )
 from mixsim.dispersion.extension import Extension
-from mixsim.mixing import rule_named
+from mixsim.mixing import RULES, rule_named
 from mixsim.mixture.inputs import Derived, Fixed, Input, Leafed
 from mixsim.mixture.mixture import HOST, Constituent, Mixture
 from mixsim.mixture.nested import InnerDensity, Mixed
@@ -82,11 +82,21 @@ class _Compiler:
             voids=self._maybe("voids.volume_fraction"),
             density=self._maybe("mixing.density"),
             rule=rule_named(self.schema.mixing.rule),
+            given=self._rule_parameters(),
             number_densities={dopant: given for dopant, given in densities.items() if given is not None},
         )
 
     def _maybe(self, path: str) -> Input | None:
         return Leafed(path) if path in self.recipe.leaves else None
+
+    def _rule_parameters(self) -> dict[str, Leafed | str]:
+        """Whatever the recipe gives of the parameters of rules."""
+        given: dict[str, Leafed | str] = {}
+        for name in (name for rule in RULES.values() for name in rule.parameters):
+            value = getattr(self.schema.mixing, name)
+            if value is not None:
+                given[name] = value if isinstance(value, str) else Leafed(f"mixing.{name}")
+        return given
 
     def _inclusion(self, name: str) -> Constituent:
         inclusion = self.schema.inclusions[name]

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 from functools import cached_property
 from typing import Any
 
@@ -15,11 +15,12 @@ from mixsim.errors import Refusal, nearest
 from mixsim.mixing import SPHERE, Depolarisation, Rule, rule_named
 from mixsim.mixture.blocks import Axes, blocks, numbers
 from mixsim.mixture.coats import Coat, CoatedAxis
-from mixsim.mixture.inputs import Input, Values
+from mixsim.mixture.inputs import Input, Leafed, Values
 from mixsim.mixture.response import Array, Composition, Limits, Response
 from mixsim.mixture.shapes import Shape
 from mixsim.mixture.spectra import VACUUM, Spectrum, held
 from mixsim.mixture.static import LowFrequency, low_frequency
+from mixsim.parameter import Choice, Parameter
 from mixsim.units import VACUUM_PERMITTIVITY
 
 HOST, VOIDS = "host", "voids"
@@ -124,6 +125,8 @@ class Mixture:
         The mixing rule.
     number_densities
         Ions per volume of host, by name of the dopant.
+    given
+        Parameters of rules, as far as the recipe gives them: numbers, or words.
     """
 
     defaults: Mapping[str, float]
@@ -133,6 +136,7 @@ class Mixture:
     density: Input | None
     rule: Rule
     number_densities: Mapping[str, Input]
+    given: Mapping[str, Leafed | str] = field(default_factory=dict)
 
     def response(self, values: Mapping[str, ArrayLike], omega: ArrayLike) -> Response:
         """Permittivity and permeability of the mixture.
@@ -295,7 +299,10 @@ class Mixture:
 
         spectra = [getattr(kind, quantity) for kind in self.kinds]
         rates, plateaus = zip(*(spectrum.low(x) for spectrum in spectra), strict=True)
-        return low_frequency(mix, rates, plateaus), mix([spectrum.high(x) for spectrum in spectra])
+        high = mix([spectrum.high(x) for spectrum in spectra])
+        if self.rule.low is not None and len(rates) > 1:
+            return LowFrequency(*self.rule.low(rates, plateaus, **composed)), high
+        return low_frequency(mix, rates, plateaus), high
 
     def density_of(self, x: Values) -> Any:
         """Density for some numbers [kg/m³]; NaN where a constituent has none."""
@@ -329,8 +336,42 @@ class Mixture:
             }
 
     def with_rule(self, name: str) -> Mixture:
-        """The same constituents under another rule."""
-        return replace(self, rule=rule_named(name))
+        """The same constituents under another rule.
+
+        Raises
+        ------
+        Refusal
+            Where there is no such rule, or it needs a parameter that the recipe does not give.
+        """
+        rule = rule_named(name)
+        if lacking := self.lacking(rule):
+            missing = " and ".join(lacking)
+            raise Refusal(f"the rule {name} without {missing}", f"give {missing} in [mixing]")
+        return replace(self, rule=rule)
+
+    def lacking(self, rule: Rule) -> tuple[str, ...]:
+        """Parameters that a rule needs and the recipe does not give."""
+        return tuple(
+            name
+            for name, parameter in rule.parameters.items()
+            if self._given(parameter) is None and (parameter.default is None or name in self.given)
+        )
+
+    def parameters(self, x: Values) -> dict[str, Any]:
+        """What the rule takes of its own, at some values of the leaves."""
+        values: dict[str, Any] = {}
+        for name, parameter in self.rule.parameters.items():
+            given = self._given(parameter)
+            known = parameter.default if given is None else given
+            values[name] = known(x) if isinstance(known, Leafed) else known
+        return values
+
+    def _given(self, parameter: Parameter | Choice) -> Leafed | str | None:
+        """What the recipe gives for it; None also for a word that only another rule knows."""
+        given = self.given.get(parameter.name)
+        if isinstance(parameter, Choice):
+            return parameter.meant(given) if isinstance(given, str) else None
+        return given if isinstance(given, Leafed) else None
 
     @cached_property
     def phases(self) -> tuple[Constituent, ...]:
@@ -363,21 +404,22 @@ class Mixture:
                 raise Refusal(f"unknown path {path!r}", "a path of the recipe", nearest(path, self.defaults))
         return Axes(self.defaults, values, principal=self.aligned)
 
-    def _mixed(self, phases: Sequence[Any], composed: tuple[tuple[Any, ...], list[Depolarisation]]) -> Any:
+    def _mixed(self, phases: Sequence[Any], composed: Mapping[str, Any]) -> Any:
         if len(phases) == 1 and self.density is None:
             return phases[0]  # it fills the volume, whatever the rule
-        fractions, shapes = composed
-        return self.rule.function(phases, fractions=fractions, depolarisations=shapes)
+        return self.rule.function(phases, **composed)
 
-    def _composed(self, x: Values) -> tuple[tuple[Any, ...], list[Depolarisation]]:
-        """Fractions and depolarisations of the phases that the rule is given."""
+    def _composed(self, x: Values) -> Mapping[str, Any]:
+        """What the rule is told beside the phases: fractions, depolarisations, its own parameters."""
         volumes = iter(self._fractions(x))
         fractions = []
         for part in (self.host, *self.inclusions, *self._void):
             whole = next(volumes) * part.growths(x)[-1]
             fractions += [whole] * len(part.kinds)
-        shapes = (kind.shape for kind in self.kinds)
-        return tuple(fractions), [SPHERE if shape is None else shape(x) for shape in shapes]
+        shapes: list[Depolarisation] = [
+            SPHERE if kind.shape is None else kind.shape(x) for kind in self.kinds
+        ]
+        return {"fractions": tuple(fractions), "depolarisations": shapes, **self.parameters(x)}
 
     def _volumes(self, x: Values) -> dict[str, Any]:
         """Volume fraction of everything that is made of one material, by name."""

@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING, Any
 from mixsim.dispersion import INDEX_MODELS, TERMS, IndexModel, Term
 from mixsim.mixing import RULES, Rule
 from mixsim.observables import QUANTITIES, Quantity
-from mixsim.parameter import Parameter
+from mixsim.parameter import Choice, Parameter
 from mixsim.present.all_words import in_all_words
 from mixsim.present.columns import described, paragraph, table, width
 from mixsim.recipe import library
@@ -66,7 +66,7 @@ def _head(name: str, kind: str, facts: Iterable[tuple[str, str]]) -> str:
 
 def _rule(rule: Rule) -> str:
     threshold = "" if rule.percolation is None else f"{rule.percolation:.4g} by volume, for spheres"
-    return _head(
+    head = _head(
         rule.name,
         "mixing rule",
         [
@@ -81,6 +81,7 @@ def _rule(rule: Rule) -> str:
             ("source", rule.source),
         ],
     )
+    return f"{head}\n\n{_parameters(rule.parameters.values())}" if rule.parameters else head
 
 
 def _shapes(rule: Rule) -> str:
@@ -118,9 +119,13 @@ def _index(model: IndexModel) -> str:
     return f"{head}\n\n{_parameters(model.parameters.values())}"
 
 
-def _parameters(parameters: Iterable[Parameter]) -> str:
+def _parameters(parameters: Iterable[Parameter | Choice]) -> str:
     rows, taking = [], dict[str, list[str]]()
     for p in parameters:
+        if isinstance(p, Choice):
+            default = "" if p.default is None else f"{p.default} if left out"
+            rows.append((p.name, f"{p.meaning}: {', '.join(p.words)}", f'"{p.words[0]}"', default))
+            continue
         default = "" if p.default is None else f"{p.default:g} if left out"
         meaning = f"{p.meaning}{' (a list)' if p.is_list else ''}"
         rows.append((p.name, meaning, dimension_named(p.dimension).example, default))
@@ -128,7 +133,7 @@ def _parameters(parameters: Iterable[Parameter]) -> str:
             taking.setdefault(accepted, []).append(p.name)
     shown = table(("parameter", "meaning", "for example", "default"), rows, left=4)
     units = [paragraph(f"{', '.join(names)}: {units}") for units, names in taking.items()]
-    return "\n".join([shown, "", *units])
+    return "\n".join([shown, "", *units]).rstrip()
 
 
 def _quantity(quantity: Quantity) -> str:

@@ -8,6 +8,8 @@ from collections.abc import Collection, Iterator, Mapping
 from mixsim.composition import BASES, Basis, Loading, volume_fractions
 from mixsim.dispersion.descriptions import width_from_wavelength
 from mixsim.errors import Refusal, nearest
+from mixsim.mixing import RULES
+from mixsim.parameter import Choice
 from mixsim.recipe.faults import Finding
 from mixsim.recipe.layers import coating_of
 from mixsim.recipe.leaves import Number, Span
@@ -115,6 +117,19 @@ def _room(schema: Schema) -> Iterator[Finding]:
             "inclusions",
             Refusal(f"volume fractions of {what} add up to {filled:.6g}", "the sum is at most 1"),
         )
+        return
+    rule = RULES[schema.mixing.rule]
+    if rule.densest is not None:
+        words = {
+            n: p.meant(getattr(schema.mixing, n)) for n, p in rule.parameters.items() if isinstance(p, Choice)
+        }
+        densest = rule.densest(**words)
+        if filled > densest:
+            found = f"a loading of {filled:.6g} with the rule {rule.name}"
+            yield (
+                "inclusions",
+                Refusal(found, f"its structure has room for {densest:.4f}, where grains touch"),
+            )
 
 
 def _unknowns(schema: Schema, leaves: Mapping[str, Leaf], ranges: Mapping[str, Number]) -> Iterator[Finding]:

@@ -12,7 +12,8 @@ from typing import Any
 
 from mixsim.dispersion import TERMS
 from mixsim.errors import Refusal, nearest
-from mixsim.mixing import RULES
+from mixsim.mixing import RULES, Rule
+from mixsim.parameter import Choice, Parameter
 from mixsim.recipe import library
 from mixsim.recipe.constituents import of_material, of_term
 from mixsim.recipe.faults import Finding
@@ -151,6 +152,11 @@ def _rule(raw: Mapping[str, Any]) -> Iterator[Finding]:
             Refusal(f"unknown rule {name!r}", f"known are {', '.join(RULES)}", nearest(name, RULES)),
         )
         return
+    yield from _parameters(mixing, rule)
+    phases = 1 + len(table(raw, "inclusions")) + ("voids" in raw)
+    if rule.most_phases is not None and phases > rule.most_phases:
+        allowed = f"{name} takes {rule.most_phases} phases, host and voids included"
+        yield "mixing.rule", Refusal(f"{phases} phases with the rule {name}", allowed)
     if "density" in mixing and rule.additive_only:
         free = ", ".join(n for n, r in RULES.items() if not r.additive_only)
         yield (
@@ -170,6 +176,34 @@ def _rule(raw: Mapping[str, Any]) -> Iterator[Finding]:
                 f"inclusions.{inclusion}.shape",
                 Refusal(f"grains that are not spheres with the rule {name}", f"{able} take them"),
             )
+
+
+def _parameters(mixing: Mapping[str, Any], rule: Rule) -> Iterator[Finding]:
+    """What a rule takes of its own: all that it needs, and nothing that only other rules take."""
+    takes = f"{rule.name} takes {', '.join(rule.parameters) or 'no parameter of its own'}"
+    every = {name for other in RULES.values() for name in other.parameters}
+    for key in mixing:
+        if key in every and key not in rule.parameters:
+            owners = ", ".join(n for n, r in RULES.items() if key in r.parameters)
+            yield (
+                f"mixing.{key}",
+                Refusal(f"{key} with the rule {rule.name}", f"{takes}; {key} is for {owners}"),
+            )
+    for name in rule.needed:
+        if name not in mixing:
+            needed = rule.parameters[name]
+            allowed = f"the rule {rule.name} needs {name}, {needed.meaning}"
+            yield "mixing", Refusal(f"{name} is missing", f"{allowed}{_one_of(needed)}")
+    for name, parameter in rule.parameters.items():
+        word = mixing.get(name)
+        if isinstance(parameter, Choice) and isinstance(word, str) and parameter.meant(word) is None:
+            allowed = f"with the rule {rule.name} one of {', '.join(parameter.words)}"
+            found = f"unknown {name} {word!r}"
+            yield f"mixing.{name}", Refusal(found, allowed, nearest(word, parameter.words))
+
+
+def _one_of(parameter: Parameter | Choice) -> str:
+    return f": {', '.join(parameter.words)}" if isinstance(parameter, Choice) else ""
 
 
 def _densities(raw: Mapping[str, Any]) -> Iterator[Finding]:

@@ -19,7 +19,7 @@ from mixsim.recipe.faults import Finding, as_meant, faults_of, findings_of
 from mixsim.recipe.leaves import Number, ranges, walk
 from mixsim.recipe.nesting import adopted, densities, parts, settings_inside
 from mixsim.recipe.schema import Schema
-from mixsim.recipe.settings import COMMAND_LINE, apply, parsed
+from mixsim.recipe.settings import COMMAND_LINE, apply, drop_foreign_parameters, parsed
 from mixsim.recipe.syntax import parsed_toml, text_of
 from mixsim.units import Leaf, show, written_unit
 
@@ -184,6 +184,8 @@ def _parsed(
     findings: list[Finding] = []
     for path, value in own.items():
         findings += apply(raw, path, value, own)
+    if "mixing.rule" in own:
+        drop_foreign_parameters(raw, own)
     findings += complete(raw)
     found, wrong, faults = parts(
         raw, inside, parse=_parsed, file=file, folder=folder, text=text, within=within

@@ -12,7 +12,8 @@ from typing import TYPE_CHECKING, Annotated, Any, Literal
 from pydantic import BaseModel, ConfigDict, Discriminator, Field, Tag, create_model
 
 from mixsim.dispersion import INDEX_MODELS, TERMS
-from mixsim.parameter import Parameter
+from mixsim.mixing import RULES
+from mixsim.parameter import Choice, Parameter
 from mixsim.recipe.leaves import Ends, Number, Span
 from mixsim.units import Leaf
 
@@ -65,16 +66,19 @@ def _model_section(
 ) -> type[Section]:
     """Table of one registered term or index model, made from its registry entry."""
     fields: dict[str, Any] = {"model": (Literal[name], Field(description=summary))}
-    for key, parameter in parameters.items():
-        minimum = -math.inf if parameter.minimum is None else parameter.minimum
-        number = Number(
-            parameter.dimension, minimum=minimum, maximum=parameter.maximum, exclusive=parameter.exclusive
-        )
-        kind: Any = Annotated[Leaf, number]
-        if parameter.is_list:
-            kind = Annotated[list[kind], Field(min_length=1)]
-        fields[key] = (kind | None, Field(default=None, description=parameter.meaning))
+    fields |= {key: _field(parameter) for key, parameter in parameters.items()}
     return create_model("".join(part.title() for part in name.split("-")), __base__=base, **fields)
+
+
+def _field(parameter: Parameter) -> Any:
+    minimum = -math.inf if parameter.minimum is None else parameter.minimum
+    number = Number(
+        parameter.dimension, minimum=minimum, maximum=parameter.maximum, exclusive=parameter.exclusive
+    )
+    kind: Any = Annotated[Leaf, number]
+    if parameter.is_list:
+        kind = Annotated[list[kind], Field(min_length=1)]
+    return (kind | None, Field(default=None, description=parameter.meaning))
 
 
 TERM_SECTIONS = {n: _model_section(n, t.parameters, t.summary) for n, t in TERMS.items()}
@@ -194,13 +198,35 @@ class Voids(Section):
     volume_fraction: Fraction
 
 
-class Mixing(Section):
-    """The rule that makes one medium of many."""
+class Rule(Section):
+    """The rule that makes one medium of many; what rules take of their own stands beside it."""
 
     rule: str = "maxwell-garnett"
     density: Density | None = Field(
         default=None, description="measured density of the mixture; replaces additive volumes"
     )
+
+
+def _rule_fields() -> dict[str, Any]:
+    """Parameters of all rules; which of them the chosen rule takes is checked with the recipe.
+
+    A name means the same, over the same range, in every rule that takes it; words may differ.
+    """
+    fields: dict[str, Any] = {}
+    for rule in RULES.values():
+        for name, parameter in rule.parameters.items():
+            said = f"{parameter.meaning}, of the rule {rule.name}"
+            if isinstance(parameter, Choice):
+                fields[name] = (str | None, Field(default=None, description=said))
+            else:
+                fields[name] = (_field(parameter)[0], Field(default=None, description=said))
+    return fields
+
+
+if TYPE_CHECKING:
+    Mixing = Rule
+else:
+    Mixing = create_model("Mixing", __base__=Rule, __doc__=Rule.__doc__, **_rule_fields())
 
 
 class Response(Section):

@@ -9,6 +9,7 @@ from typing import Any
 import tomli
 
 from mixsim.errors import BadInput, Fault, Refusal, nearest
+from mixsim.mixing import RULES
 from mixsim.recipe import library
 from mixsim.recipe.completion import inherited
 from mixsim.recipe.consistency import unknown_material
@@ -98,6 +99,17 @@ def apply(raw: dict[str, Any], path: str, value: Any, settings: Mapping[str, Any
     else:
         return [(path, Refusal(f"no item {last!r}", f"the list has {len(node)}, counted from 0"))]
     return []
+
+
+def drop_foreign_parameters(raw: Mapping[str, Any], settings: Mapping[str, Any]) -> None:
+    """Take out of a recipe, in place, what its former rule took and the one set does not."""
+    mixing = raw.get("mixing")
+    rule = RULES.get(str(mixing.get("rule"))) if isinstance(mixing, dict) else None
+    if rule is None or not isinstance(mixing, dict):
+        return
+    for name in {name for other in RULES.values() for name in other.parameters} - rule.parameters.keys():
+        if f"mixing.{name}" not in settings:
+            mixing.pop(name, None)
 
 
 def _is_item(part: str, items: Sequence[Any]) -> bool:

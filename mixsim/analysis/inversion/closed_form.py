@@ -80,7 +80,7 @@ def _fraction(mixture: Mixture, kind: str, value: float) -> Any:
     assert mixture.rule.fraction_from is not None
     x = mixture.defaults
     host, grain = (_level(phase, kind, x) for phase in (mixture.host, mixture.inclusions[0]))
-    return np.real(mixture.rule.fraction_from(value, host=host, inclusion=grain))
+    return np.real(mixture.rule.fraction_from(value, host=host, inclusion=grain, **mixture.parameters(x)))
 
 
 def _plasma(mixture: Mixture, path: str, static: float, found: Mapping[str, Any]) -> Any:
@@ -95,7 +95,8 @@ def _plasma(mixture: Mixture, path: str, static: float, found: Mapping[str, Any]
     grain, host = mixture.inclusions[0], _level(mixture.host, "static", x)
     if path in mixture.host.permittivity.paths or grain.amount is None or np.any(host == _CONDUCTOR):
         return None
-    level = np.real(mixture.rule.inclusion_from(static, host=host, fraction=grain.amount(x)))
+    own = mixture.parameters(x)
+    level = np.real(mixture.rule.inclusion_from(static, host=host, fraction=grain.amount(x), **own))
     return _band(grain.permittivity, path, level, x)
 
 

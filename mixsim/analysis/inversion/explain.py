@@ -160,7 +160,8 @@ def _ceiling(mixture: Mixture, host: float, fractions: Sequence[float]) -> float
     """What the rule gives for spheres that conduct perfectly; infinite where they conduct through it."""
     if mixture.inclusions[0].shape is not None:
         return np.inf
-    most = float(np.real(mixture.rule.function([host, _CONDUCTOR * host], fractions=fractions)))
+    own = mixture.parameters(mixture.defaults)
+    most = float(np.real(mixture.rule.function([host, _CONDUCTOR * host], fractions=fractions, **own)))
     return most if most < _CONDUCTOR**0.25 * host else np.inf
 
 

@@ -15,7 +15,7 @@ from mixsim.analysis.inversion.asked import few_enough, readings_of
 from mixsim.analysis.inversion.decide import Solution, solve
 from mixsim.analysis.inversion.doubt import Doubt, doubt_of
 from mixsim.analysis.inversion.model import ReadingModel
-from mixsim.analysis.rules import applicable_rules
+from mixsim.analysis.rules import applicable_rules, lacking_rules
 from mixsim.analysis.suspicion import suspicions
 from mixsim.analysis.unknowns import Unknown, unknowns_of
 from mixsim.errors import BadInput
@@ -179,12 +179,16 @@ def _by_rule(
     for name in applicable_rules(recipe, mixture):
         solutions[name] = solve(recipe, mixture.with_rule(name), unknowns, readings)
     model = ReadingModel(mixture, unknowns, readings)
-    return tuple(
+    answers = [
         RuleAnswer(name, _named(model, solution.place))
         if solution.verdict == "answered" and solution.place is not None
         else RuleAnswer(name, None, solution.reasons[0])
         for name, solution in solutions.items()
-    )
+    ]
+    for name, missing in lacking_rules(recipe, mixture).items():
+        needed = " and ".join(f"mixing.{parameter}" for parameter in missing)
+        answers.append(RuleAnswer(name, None, f"left out: it needs {needed}"))
+    return tuple(answers)
 
 
 def _family(model: ReadingModel, solution: Solution) -> dict[str, Floats] | None:
