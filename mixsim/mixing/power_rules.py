@@ -78,7 +78,7 @@ POWER_RULES = (
         fraction_from=fraction_from,
         inclusion_from=inclusion_from,
         percolation=0.0,
-        parameters=by_name(bounded("exponent", "of the power that adds, −1 to 1", least=-1.0, most=1.0)),
+        parameters=by_name(bounded("exponent", "the power that adds, from −1 to 1", least=-1.0, most=1.0)),
         bounds="wiener",
         dilute_exact=False,
         low=power_law_low,

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterable, Mapping
 from typing import TYPE_CHECKING, Any
 
@@ -128,7 +129,10 @@ def _parameters(parameters: Iterable[Parameter | Choice]) -> str:
             continue
         default = "" if p.default is None else f"{p.default:g} if left out"
         meaning = f"{p.meaning}{' (a list)' if p.is_list else ''}"
-        rows.append((p.name, meaning, dimension_named(p.dimension).example, default))
+        example = dimension_named(p.dimension).example
+        if p.minimum is not None and math.isfinite(p.maximum):
+            example = f"{0.25 * p.minimum + 0.75 * p.maximum:g}"
+        rows.append((p.name, meaning, example, default))
         if accepted := ", ".join(accepted_units(p.dimension)):
             taking.setdefault(accepted, []).append(p.name)
     shown = table(("parameter", "meaning", "for example", "default"), rows, left=4)

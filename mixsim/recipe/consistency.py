@@ -192,8 +192,8 @@ def _parameters(mixing: Mapping[str, Any], rule: Rule) -> Iterator[Finding]:
     for name in rule.needed:
         if name not in mixing:
             needed = rule.parameters[name]
-            allowed = f"the rule {rule.name} needs {name}, {needed.meaning}"
-            yield "mixing", Refusal(f"{name} is missing", f"{allowed}{_one_of(needed)}")
+            allowed = f"the rule {rule.name} needs it: {needed.meaning}{_one_of(needed)}"
+            yield "mixing", Refusal(f"{name} is missing", allowed)
     for name, parameter in rule.parameters.items():
         word = mixing.get(name)
         if isinstance(parameter, Choice) and isinstance(word, str) and parameter.meant(word) is None:
@@ -203,7 +203,7 @@ def _parameters(mixing: Mapping[str, Any], rule: Rule) -> Iterator[Finding]:
 
 
 def _one_of(parameter: Parameter | Choice) -> str:
-    return f": {', '.join(parameter.words)}" if isinstance(parameter, Choice) else ""
+    return f", one of {', '.join(parameter.words)}" if isinstance(parameter, Choice) else ""
 
 
 def _densities(raw: Mapping[str, Any]) -> Iterator[Finding]:

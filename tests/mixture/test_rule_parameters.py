@@ -55,7 +55,7 @@ def test_what_a_rule_does_not_take_or_lacks_is_refused_by_name() -> None:
     assert said.startswith("mixing.exponent: exponent with the rule bruggeman; bruggeman takes no parameter")
     assert "power-law" in said
     said = refused(POWER.replace(', exponent = "0.5 ± 0.1"', ""))
-    assert said.startswith("mixing: exponent is missing; the rule power-law needs exponent")
+    assert said.startswith("mixing: exponent is missing; the rule power-law needs it: the power that adds")
     said = refused(CUBIC.replace("body-centered", "body-centrd"))
     assert said.startswith("mixing.lattice: unknown lattice 'body-centrd'") and said.endswith("body-centred")
     assert "at most 1" in refused(POWER, mixing__exponent="1.5")
