@@ -10,6 +10,8 @@ from mixsim.mixing import RULES, SPHERE, Rule
 from mixsim.mixture import Mixture
 from mixsim.recipe import Recipe
 
+STRONG = 10.0  # contrast beyond which rules that miss the dilute limit are no alternative
+
 
 def applicable_rules(recipe: Recipe, mixture: Mixture) -> tuple[str, ...]:
     """Names of the rules, other than the mixture's own, that could describe it."""
@@ -64,6 +66,21 @@ def threshold(mixture: Mixture, fractions: Mapping[str, float]) -> float | None:
     return float(np.min(sum(parts) / inverse))
 
 
+def _strong(mixture: Mixture) -> bool:
+    """Whether a phase conducts, or stands so far off the host that a mean of powers says nothing."""
+    x = mixture.defaults
+    levels = []
+    for phase in mixture.phases:
+        rate, low = phase.permittivity.low(x)
+        if np.any(np.asarray(rate) != 0.0):
+            return True
+        levels.append([complex(np.ravel(level)[0]) for level in (low, phase.permittivity.high(x))])
+    host, *others = np.abs(np.array(levels))
+    with np.errstate(divide="ignore", invalid="ignore"):
+        apart = [np.maximum(other / host, host / other) for other in others]
+    return any(bool(np.nanmax(ratio, initial=1.0) > STRONG) for ratio in apart)
+
+
 def _applies(rule: Rule, recipe: Recipe, mixture: Mixture) -> bool:
     """Shapes, densities and contact must suit; molecules in vacuum are no alternative to grains in a host."""
     if any(grain.shape is not None for grain in mixture.inclusions) and not rule.takes_shapes:
@@ -71,6 +88,8 @@ def _applies(rule: Rule, recipe: Recipe, mixture: Mixture) -> bool:
     if mixture.density is not None and rule.additive_only:
         return False
     if rule.ordered and not mixture.rule.ordered:
+        return False
+    if not rule.dilute_exact and rule.homogeneous and _strong(mixture):
         return False
     if rule.most_phases is not None and len(mixture.phases) > rule.most_phases:
         return False

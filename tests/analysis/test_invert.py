@@ -228,7 +228,7 @@ def test_the_same_seed_gives_the_same_answer() -> None:
 def test_other_rules_stand_beside_the_answer() -> None:
     answer = ask(LATTICE, (LOADING, "0 %", "60 %"), static="3.2 ± 0.01")
     by_rule = {found.rule: found.values for found in answer.by_rule}
-    assert list(by_rule) == ["maxwell-garnett", "bruggeman"]
+    assert list(by_rule)[:2] == ["maxwell-garnett", "bruggeman"]
     own, other = by_rule["maxwell-garnett"], by_rule["bruggeman"]
     assert own is not None
     assert other is not None
