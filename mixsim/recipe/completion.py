@@ -117,10 +117,12 @@ def _said_otherwise(base: Mapping[str, Any], over: Mapping[str, Any]) -> set[str
     term = TERMS.get(str(base.get("model")))
     if term is None:
         return gone
-    for routes in term.canonical.values():
+    opened = False  # what the base took from a plasma that its terms share
+    for name, routes in term.canonical.items():
         keys = {route.key for route in routes}
         gone |= (base.keys() & keys) if over.keys() & keys else set()
-    if not gone - over.keys():
+        opened |= bool(over.keys() & keys) and term.leaves_open(name, base)
+    if not (gone - over.keys() or opened):
         return gone
     left = (base.keys() - gone) | over.keys()
     chosen = [route for routes in term.canonical.values() for route in routes if route.key in left]

@@ -108,7 +108,7 @@ def test_a_material_of_the_library_can_be_set_in_other_words() -> None:
         f"materials.gold.{FREE}.carrier_density": "5.9e22 cm^-3",
         f"materials.gold.{FREE}.effective_mass": "1",
     }
-    assert f"materials.gold.{FREE}.plasma" not in parse('host.material = "gold"', settings=carriers).leaves
+    assert f"materials.gold.{FREE}.strength" not in parse('host.material = "gold"', settings=carriers).leaves
 
 
 def test_an_item_of_an_inherited_list_can_be_set() -> None:
@@ -187,14 +187,22 @@ def test_a_term_in_other_words_drops_only_what_they_replace() -> None:
     changed = gold(f"{FREE} = {{ carrier_density = '5.9e22 cm^-3', effective_mass = 1.0 }}")
     own = {path.rsplit(".", 1)[1] for path in changed if path.startswith(f"{FREE}.")}
     assert own == {"carrier_density", "effective_mass", "damping"}
-    assert changed["permittivity.terms.band1.plasma"] == gold("")["permittivity.terms.band1.plasma"]
+    assert changed["permittivity.terms.band1.strength"] == gold("")["permittivity.terms.band1.strength"]
+
+
+def test_a_term_may_leave_the_shared_plasma_of_its_base() -> None:
+    own = gold(f"{FREE}.plasma = '8 eV'")
+    assert own.keys() - gold("").keys() == {f"{FREE}.plasma"}
+    assert own[f"{FREE}.strength"] == 0.76
+    other = gold(f"{FREE} = {{ conductivity = '4e7 S/m', collision_time = '12 fs' }}")
+    assert {f"{FREE}.strength", f"{FREE}.damping"} & other.keys() == set()
 
 
 def test_a_base_may_have_a_base() -> None:
     text = 'host.material = "c"\nmaterials.c.based_on = "b"\n[materials.b]\nbased_on = "gold"\n'
     leaves = parse(text + 'density = "1 g/cm^3"\n').leaves
     assert leaves["materials.c.density"].value == 1000.0
-    assert "materials.c.permittivity.terms.free.plasma" in leaves
+    assert "materials.c.permittivity.terms.free.strength" in leaves
 
 
 def test_tables_lie_beside_the_recipe(tmp_path: Path) -> None:
