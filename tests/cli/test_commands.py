@@ -191,7 +191,7 @@ def test_show_tells_a_rule_a_term_and_a_material(run: Run) -> None:
     )
     gold = run("show", "gold").stdout
     assert "kind of evidence: memory" in gold
-    assert "permittivity.terms.free.plasma" in gold
+    assert "permittivity.plasma" in gold
 
 
 def test_show_tells_every_number_of_a_recipe(run: Run) -> None:
@@ -274,7 +274,7 @@ def test_materials_are_listed_by_evidence_place_and_word(run: Run) -> None:
         return {line.split("  ")[0] for line in shown if not line.startswith(" ")}
 
     every = names()
-    assert len(every) == len(library.names()) >= 130
+    assert len(every) == len(library.names()) >= 190
     published = names("--evidence", "published")
     assert "fused-silica" in published
     assert "gold" not in published
@@ -282,7 +282,7 @@ def test_materials_are_listed_by_evidence_place_and_word(run: Run) -> None:
     assert "epoxy" in microwave
     assert "silicon" not in microwave
     ferrites = {"nickel-zinc-ferrite", "manganese-zinc-ferrite", "barium-hexaferrite"}
-    assert names("--text", "FERRITE") == ferrites
+    assert ferrites < names("--text", "FERRITE") < every
     assert names("--text", "dry", "--at", "1 GHz") < names("--at", "1 GHz")
 
 
