@@ -44,6 +44,7 @@ def formulas() -> Iterator[Callable[..., Any]]:
     yield mixing.many_phase_region
     yield from (mixing.spheroid_factors, mixing.ellipsoid_factors)
     yield from (mixing.coated_grain, mixing.growth_of_sphere, mixing.growth_of_ellipsoid)
+    yield from (mixing.inside_factor, mixing.dipole_grain, mixing.value_at)
     yield from (mixing.confocal_axes, mixing.in_plane_grains, mixing.ordered_grains, mixing.ratios_about)
     yield composition.number_density_from_weight_fraction
     yield composition.number_density_from_mole_fraction

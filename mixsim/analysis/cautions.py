@@ -11,15 +11,14 @@ from numpy.typing import NDArray
 from mixsim.analysis.band import Axis, Varied
 from mixsim.analysis.caution import Caution
 from mixsim.analysis.rules import applicable_rules, conducts, threshold
+from mixsim.analysis.sizes import sizes
 from mixsim.analysis.suspicion import suspicions
 from mixsim.mixture import HOST, VOIDS, Composition, Limits, Mixture, Response
 from mixsim.mixture.nested import Mixed
 from mixsim.mixture.spectra import Measured, described
-from mixsim.observables import complex_index
 from mixsim.recipe import Recipe
-from mixsim.units import SPEED_OF_LIGHT, show, written_unit
+from mixsim.units import show
 
-SIZE_PARAMETER = 0.3  # πdn/λ: scattering and retardation enter at its square, here a tenth
 RANDOM_PACKING = 0.64  # of equal hard spheres, common practice
 TOUCHING = 0.16  # volume fraction at which random hard spheres percolate, common practice
 SAME_TEMPERATURE = 1.0  # K, within which a description may be taken as it is
@@ -47,7 +46,7 @@ def cautions(
         *_ranges(recipe, mixture, axis),
         *_temperatures(recipe, mixture, vary),
         *extended(mixture, axis.omega),
-        *_sizes(recipe, axis, constituents, largest),
+        *sizes(recipe, axis, constituents, largest),
         *_not_finite(axis, response),
         *_not_causal(recipe, mixture, axis),
         *_crowding(recipe, mixture, composition),
@@ -147,44 +146,6 @@ def extended(mixture: Mixture, omega: NDArray[np.float64], under: str = "") -> I
 def _span(axis: Axis) -> str:
     first, last = (show(float(axis.omega[i]), "spectral", axis.unit) for i in (0, -1))
     return f"from {first} to {last}" if len(axis.omega) > 1 else f"at {first}"
-
-
-def _sizes(
-    recipe: Recipe, axis: Axis, constituents: Mapping[str, Response], largest: Mapping[str, float]
-) -> Iterator[Caution]:
-    host = constituents[HOST]
-    around = complex_index(axis.omega, host.permittivity, host.permeability).real
-    for name, inclusion in recipe.schema.inclusions.items():
-        if inclusion.diameter is None:
-            continue
-        path = f"inclusions.{name}.diameter"
-        size = largest.get(path, inclusion.diameter.value)
-        grains = f"grains of {show(size, 'length', written_unit(inclusion.diameter))}"
-        parameter = np.pi * size * around * axis.omega / (2 * np.pi * SPEED_OF_LIGHT)
-        worst = int(np.argmax(parameter))
-        where = show(float(axis.omega[worst]), "spectral", axis.unit)
-        if parameter[worst] > SIZE_PARAMETER:
-            yield Caution(
-                "quasi-static",
-                path,
-                f"{grains} reach a size parameter πdn/λ of "
-                f"{parameter[worst]:.2g} at {where}: scattering and retardation, which the rule leaves out, "
-                f"matter above {SIZE_PARAMETER:g}",
-            )
-        grain = constituents[name]
-        extinction = complex_index(axis.omega, grain.permittivity, grain.permeability).imag
-        with np.errstate(divide="ignore"):
-            ratio = size * axis.omega * extinction / SPEED_OF_LIGHT
-        worst = int(np.argmax(ratio))
-        if ratio[worst] > 1.0:
-            depth = show(size / float(ratio[worst]), "length")
-            where = show(float(axis.omega[worst]), "spectral", axis.unit)
-            yield Caution(
-                "skin-depth",
-                path,
-                f"{grains} are thicker than the skin depth {depth} at {where}: "
-                f"the field does not fill them as the rule assumes",
-            )
 
 
 def _crowding(recipe: Recipe, mixture: Mixture, composition: Composition) -> Iterator[Caution]:

@@ -31,13 +31,16 @@ from mixsim.mixing.orientation import (
     aligned_grains,
     aligned_spheroid,
     in_plane_grains,
+    log_normal_places,
     ordered_grains,
     random_grains,
     random_spheroid,
     ratios_about,
+    value_at,
 )
 from mixsim.mixing.registry import RULES, rule_named
 from mixsim.mixing.rule import Rule
+from mixsim.mixing.waves import dipole_grain, inside_factor
 
 __all__ = [
     "DISC",
@@ -54,6 +57,7 @@ __all__ = [
     "bruggeman",
     "coated_grain",
     "confocal_axes",
+    "dipole_grain",
     "ellipsoid_factors",
     "growth_of_ellipsoid",
     "growth_of_sphere",
@@ -61,7 +65,9 @@ __all__ = [
     "hard_spheres",
     "hashin_shtrikman",
     "in_plane_grains",
+    "inside_factor",
     "isotropic_region",
+    "log_normal_places",
     "lorentz_lorenz",
     "many_phase_region",
     "maxwell_garnett",
@@ -73,5 +79,6 @@ __all__ = [
     "spheroid_factors",
     "three_point_region",
     "two_phase_region",
+    "value_at",
     "wiener",
 ]

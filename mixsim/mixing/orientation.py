@@ -151,11 +151,36 @@ def ratios_about(aspect_ratio: Any, *, aspect_ratio_spread: Any) -> Iterator[tup
     >>> round(sum(weight for _, weight in pairs), 12), round(float(sum(r * w for r, w in pairs)), 4)
     (1.0, 2.0921)
     """
-    places = np.arange(-_REACH, _REACH + 0.5 * _STEP, _STEP)
-    weights = np.exp(-0.5 * places**2)
-    weights /= weights.sum()
-    for place, weight in zip(places, weights, strict=True):
-        yield aspect_ratio * np.exp(aspect_ratio_spread * place), float(weight)
+    for place, weight in log_normal_places(_STEP):
+        yield value_at(median=aspect_ratio, spread=aspect_ratio_spread, place=place), weight
+
+
+def log_normal_places(step: float) -> Iterator[tuple[float, float]]:
+    """Places of a log-normal distribution, in standard deviations of the logarithm, and their shares.
+
+    Parameters
+    ----------
+    step
+        Between them [-].
+
+    Returns
+    -------
+    place, share
+        The shares add up to one [-].
+
+    Examples
+    --------
+    >>> [(place, round(share, 3)) for place, share in log_normal_places(2.5)]
+    [(-5.0, 0.0), (-2.5, 0.04), (0.0, 0.919), (2.5, 0.04), (5.0, 0.0)]
+    """
+    places = np.arange(-_REACH, _REACH + 0.5 * step, step)
+    shares = np.exp(-0.5 * places**2)
+    yield from zip(places.tolist(), (shares / shares.sum()).tolist(), strict=True)
+
+
+def value_at(*, median: Any, spread: Any, place: Any) -> Any:
+    """Value of a log-normal distribution at a place: median · exp(spread · place) [unit of the median]."""
+    return median * np.exp(spread * place)
 
 
 def random_spheroid(aspect_ratio: ArrayLike) -> Depolarisation:

@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from mixsim.mixture.compiler import compile_recipe
-from mixsim.mixture.mixture import HOST, VOIDS, Constituent, Mixture
+from mixsim.mixture.constituent import Constituent
+from mixsim.mixture.mixture import HOST, VOIDS, Mixture
 from mixsim.mixture.response import Composition, Limits, Response
 
 __all__ = [

@@ -16,9 +16,10 @@ from mixsim.dispersion import (
     width_from_wavelength,
 )
 from mixsim.dispersion.extension import Extension
-from mixsim.mixing import RULES, rule_named
+from mixsim.mixing import RULES, log_normal_places, rule_named, value_at
+from mixsim.mixture.constituent import Constituent, Size
 from mixsim.mixture.inputs import Derived, Fixed, Input, Leafed
-from mixsim.mixture.mixture import HOST, Constituent, Mixture
+from mixsim.mixture.mixture import HOST, Mixture
 from mixsim.mixture.nested import InnerDensity, Mixed
 from mixsim.mixture.shapes import Shape
 from mixsim.mixture.spectra import (
@@ -35,7 +36,7 @@ from mixsim.mixture.spectra import (
     Warmed,
 )
 from mixsim.parameter import Parameter
-from mixsim.recipe import Coating, Recipe, loading_of, shells_of
+from mixsim.recipe import SIZE_STEP, Coating, Recipe, loading_of, shells_of
 from mixsim.units import read
 
 
@@ -113,7 +114,25 @@ class _Compiler:
             self._shape(name),
             self._maybe(f"{path}.diameter"),
             tuple(self._shell(name, *shell) for shell in shells_of(inclusion)),
+            sizes=self._sizes(name),
+            waves=inclusion.waves,
         )
+
+    def _sizes(self, name: str) -> tuple[Size, ...]:
+        """Grains of every size that the distribution holds; none where they are all alike."""
+        path = f"inclusions.{name}"
+        if f"{path}.diameter_spread" not in self.recipe.leaves:
+            return ()
+        given: dict[str, Input] = {
+            "median": Leafed(f"{path}.diameter"),
+            "spread": Leafed(f"{path}.diameter_spread"),
+        }
+        found = []
+        for place, share in log_normal_places(SIZE_STEP):
+            diameter = Derived(value_at, {**given, "place": Fixed(place)})
+            permittivity = self._permittivity(self.schema.inclusions[name].material, diameter)
+            found.append(Size(share, diameter, permittivity))
+        return tuple(found)
 
     def _shell(self, inclusion: str, key: str, shell: Coating) -> Constituent:
         """A layer around the grains of an inclusion; `key` is its place below the inclusion."""

@@ -10,101 +10,19 @@ from typing import Any
 import numpy as np
 from numpy.typing import ArrayLike
 
-from mixsim.composition import Basis, Loading, volume_fractions
+from mixsim.composition import Loading, volume_fractions
 from mixsim.errors import Refusal, nearest
 from mixsim.mixing import SPHERE, Depolarisation, Rule, rule_named
 from mixsim.mixture.blocks import Axes, blocks, numbers
-from mixsim.mixture.coats import Coat, CoatedAxis
+from mixsim.mixture.constituent import Constituent, Kind
 from mixsim.mixture.inputs import Input, Leafed, Values
 from mixsim.mixture.response import Array, Composition, Limits, Response
-from mixsim.mixture.shapes import Shape
-from mixsim.mixture.spectra import VACUUM, Spectrum, held
+from mixsim.mixture.spectra import VACUUM, held
 from mixsim.mixture.static import LowFrequency, low_frequency
 from mixsim.parameter import Choice, Parameter
 from mixsim.units import VACUUM_PERMITTIVITY
 
 HOST, VOIDS = "host", "voids"
-
-
-@dataclass(frozen=True, eq=False)
-class Constituent:
-    """One phase of the mixture.
-
-    Attributes
-    ----------
-    name
-        "host", the name of the inclusion, or "voids".
-    material
-        Name of its material.
-    permittivity, permeability
-        What it is.
-    density
-        Density, where its material has one.
-    basis, amount
-        Its loading; None for host and voids.
-    shape
-        Shape of its grains and how they lie; None for spheres.
-    diameter
-        Of the sphere of a grain's volume, where it is given.
-    shells
-        Layers around its grains, from the core outwards.
-    thickness
-        Of such a layer; None for all that is none.
-    """
-
-    name: str
-    material: str
-    permittivity: Spectrum
-    permeability: Spectrum
-    density: Input | None = None
-    basis: Basis | None = None
-    amount: Input | None = None
-    shape: Shape | None = None
-    diameter: Input | None = None
-    shells: tuple[Constituent, ...] = ()
-    thickness: Input | None = None
-
-    @property
-    def plain(self) -> bool:
-        """Whether its grains are spheres without a coating."""
-        return self.shape is None and not self.shells
-
-    @cached_property
-    def coat(self) -> Coat | None:
-        """Sizes of its layers; None where there are none."""
-        thicknesses = tuple(shell.thickness for shell in self.shells if shell.thickness is not None)
-        if not self.shells:
-            return None
-        assert self.diameter is not None
-        return Coat(self.diameter, thicknesses, self.shape)
-
-    def growths(self, x: Values) -> list[Any]:
-        """Volume out to the end of each of its layers over that of the core, and first 1 for itself."""
-        return [np.asarray(1.0), *([] if self.coat is None else self.coat.growths(x))]
-
-    @cached_property
-    def kinds(self) -> tuple[Kind, ...]:
-        """What a rule is given for it: itself, or a homogeneous grain for each axis of a coated one."""
-        if self.coat is None:
-            return (Kind(self.permittivity, self.permeability, self.shape),)
-        found = []
-        for place in range(self.coat.kinds):
-            axis = CoatedAxis(self.coat, place)
-            permittivity, permeability = (
-                axis.spectrum(getattr(self, quantity), [getattr(shell, quantity) for shell in self.shells])
-                for quantity in ("permittivity", "permeability")
-            )
-            found.append(Kind(permittivity, permeability, None if self.shape is None else axis))
-        return tuple(found)
-
-
-@dataclass(frozen=True, eq=False)
-class Kind:
-    """One phase as a rule is given it; shape is None for spheres."""
-
-    permittivity: Spectrum
-    permeability: Spectrum
-    shape: Shape | CoatedAxis | None
 
 
 @dataclass(frozen=True, eq=False)
@@ -386,12 +304,16 @@ class Mixture:
     @cached_property
     def kinds(self) -> tuple[Kind, ...]:
         """Phases in the order in which the rule is given them, host first."""
-        return tuple(kind for part in (self.host, *self.inclusions, *self._void) for kind in part.kinds)
+        return tuple(kind for kinds in self._by_part for kind in kinds)
+
+    @cached_property
+    def _by_part(self) -> tuple[tuple[Kind, ...], ...]:
+        return tuple(part.kinds(self.host) for part in (self.host, *self.inclusions, *self._void))
 
     @property
     def magnetic(self) -> bool:
-        """Whether any constituent has a permeability other than one."""
-        return any(phase.permeability is not VACUUM for phase in self.phases)
+        """Whether anything in it has a permeability other than one, eddy currents included."""
+        return any(kind.permeability is not VACUUM for kind in self.kinds)
 
     @property
     def aligned(self) -> bool:
@@ -411,15 +333,12 @@ class Mixture:
 
     def _composed(self, x: Values) -> Mapping[str, Any]:
         """What the rule is told beside the phases: fractions, depolarisations, its own parameters."""
-        volumes = iter(self._fractions(x))
-        fractions = []
-        for part in (self.host, *self.inclusions, *self._void):
-            whole = next(volumes) * part.growths(x)[-1]
-            fractions += [whole] * len(part.kinds)
+        cores = zip(self._fractions(x), self._by_part, strict=True)
+        fractions = tuple(core * kind.volume(x) for core, kinds in cores for kind in kinds)
         shapes: list[Depolarisation] = [
             SPHERE if kind.shape is None else kind.shape(x) for kind in self.kinds
         ]
-        return {"fractions": tuple(fractions), "depolarisations": shapes, **self.parameters(x)}
+        return {"fractions": fractions, "depolarisations": shapes, **self.parameters(x)}
 
     def _volumes(self, x: Values) -> dict[str, Any]:
         """Volume fraction of everything that is made of one material, by name."""

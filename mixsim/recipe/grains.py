@@ -30,6 +30,7 @@ def of_inclusion(name: str, inclusion: Mapping[str, Any]) -> Iterator[Finding]:
     if kind in _KINDS:
         yield from _orientation(path, str(kind), inclusion)
     yield from _coating(path, shape, inclusion)
+    yield from _size(path, inclusion)
 
 
 def is_round(inclusion: Mapping[str, Any]) -> bool:
@@ -84,6 +85,17 @@ def _coating(path: str, shape: Mapping[str, Any], inclusion: Mapping[str, Any]) 
     if "aspect_ratio_spread" in shape:
         allowed = "coated grains take one aspect ratio"
         yield f"{path}.shape.aspect_ratio_spread", Refusal("a spread of coated grains", allowed)
+
+
+def _size(path: str, inclusion: Mapping[str, Any]) -> Iterator[Finding]:
+    """A spread of sizes, and waves, need a diameter; waves are known of plain spheres only."""
+    waves = inclusion.get("waves", "none")
+    for key, given in (("diameter_spread", "diameter_spread" in inclusion), ("waves", waves != "none")):
+        if given and "diameter" not in inclusion:
+            yield f"{path}.{key}", Refusal(f"{key} without a diameter", "give diameter, the median by volume")
+    if waves in ("inside", "dipole") and (not is_round(inclusion) or "coating" in inclusion):
+        what = "coated grains" if is_round(inclusion) else "grains that are not spheres"
+        yield f"{path}.waves", Refusal(f"waves in {what}", "they are known of spheres of one material")
 
 
 def _a(kind: str) -> str:

@@ -5,8 +5,10 @@ from __future__ import annotations
 from collections.abc import Iterator, Mapping
 from typing import Any
 
-from mixsim.mixing import growth_of_ellipsoid, growth_of_sphere
+from mixsim.mixing import growth_of_ellipsoid, growth_of_sphere, log_normal_places, value_at
 from mixsim.recipe.schema import Coating, Inclusion, Material
+
+SIZE_STEP = 0.5  # between the sizes of a distribution, in standard deviations: what depends on size is smooth
 
 
 def shells_of(inclusion: Inclusion) -> tuple[tuple[str, Coating], ...]:
@@ -30,7 +32,7 @@ def raw_shells(inclusion: Mapping[str, Any]) -> Iterator[tuple[str, Mapping[str,
 
 def coating_of(inclusion: Inclusion, materials: Mapping[str, Material]) -> tuple[float, float | None]:
     """Volume of all layers over that of the core, and their mass per volume of core [kg/m^3], if known."""
-    inside, total, volume = 1.0, 0.0, 0.0
+    inside, total, volume = 1.0, 0.0, 0.0  # of the mean grain, where there are grains of many sizes
     mass: float | None = 0.0
     for _, shell in shells_of(inclusion):
         assert inclusion.diameter is not None
@@ -45,8 +47,17 @@ def coating_of(inclusion: Inclusion, materials: Mapping[str, Material]) -> tuple
 def _growth(inclusion: Inclusion, thickness: float) -> float:
     assert inclusion.diameter is not None
     shape, diameter = inclusion.shape, inclusion.diameter.value
+    spread = inclusion.diameter_spread
+    if spread is not None:
+        places = log_normal_places(SIZE_STEP)
+        sizes = [
+            (value_at(median=diameter, spread=spread.value, place=place), share) for place, share in places
+        ]
+    else:
+        sizes = [(diameter, 1.0)]
     if shape.kind == "sphere":
-        return float(growth_of_sphere(diameter, thickness=thickness))
+        return sum(share * float(growth_of_sphere(size, thickness=thickness)) for size, share in sizes)
     axes = (1.0, 1.0, shape.aspect_ratio.value) if shape.aspect_ratio else [a.value for a in shape.axes or ()]
     first, second, third = axes
-    return float(growth_of_ellipsoid(diameter, thickness=thickness, first=first, second=second, third=third))
+    of_core = {"first": first, "second": second, "third": third}
+    return sum(s * float(growth_of_ellipsoid(size, thickness=thickness, **of_core)) for size, s in sizes)

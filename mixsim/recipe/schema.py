@@ -172,6 +172,14 @@ class Inclusion(Section):
     diameter: Length | None = Field(
         default=None, description="equivalent-volume diameter; the quasi-static limit is checked against it"
     )
+    diameter_spread: NotNegative | None = Field(
+        default=None,
+        description="log-normal: standard deviation of its logarithm, about the median by volume",
+    )
+    waves: Literal["none", "inside", "dipole"] = Field(
+        default="none",
+        description="that count: inside grains (skin effect, eddy currents), or their dipole (scattering)",
+    )
     coating: Coatings | None = Field(
         default=None, description="a layer, or a list of them from the core outwards; loading is of the core"
     )

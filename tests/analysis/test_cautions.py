@@ -198,3 +198,34 @@ def test_long_grains_conduct_earlier_and_the_caution_says_by_how_much() -> None:
     path = "inclusions.grain.volume_fraction"
     below, above = compiled.limits({path: np.array([0.0285, 0.0290])}).conductivity
     assert below == 0.0 < above
+
+
+def test_waves_that_count_are_not_cautioned_of_and_where_they_stop_is() -> None:
+    """1.5 πd/λ in the matrix: 0.47 for 40 nm at 400 nm, 0.71 for 60 nm."""
+
+    def said(diameter: str, waves: str, more: str = VISIBLE) -> dict[str, str]:
+        extra = f'{INSULATED}inclusions.grain.diameter = "{diameter}"\ninclusions.grain.waves = "{waves}"'
+        answer = mixsim.predict(mixsim.parse(oxide(extra=extra, more=more)))
+        return {caution.kind: caution.message for caution in answer.warnings}
+
+    assert "waves = 'dipole' takes them in" in said("40 nm", "none")["quasi-static"]
+    assert said("40 nm", "dipole").keys() == {"no-limit"}
+    assert "dipole alone no longer carries" in said("60 nm", "dipole")["quasi-static"]
+    far = 'band.values = ["20 µm"]\n'
+    assert "waves = 'inside' takes that in" in said("2 µm", "none", far)["skin-depth"]
+    assert "skin-depth" not in said("2 µm", "inside", far)
+
+
+def test_waves_inside_large_strong_grains_and_the_large_ones_of_a_spread() -> None:
+    text = """
+        band.values = ["3 GHz"]
+        host.material = "polyethylene"
+        inclusions.grain = { material = "titania-ceramic", volume_fraction = "10 %", diameter = "4 mm" }
+    """
+    inside = [c.message for c in mixsim.predict(mixsim.parse(text)).warnings if c.kind == "quasi-static"]
+    assert len(inside) == 1 and "waves wide inside" in inside[0]
+    small = text.replace("4 mm", "2 mm")
+    assert "quasi-static" not in kinds(small)
+    spread = small.replace('"2 mm"', '"2 mm", diameter_spread = 0.4')
+    found = [c.message for c in mixsim.predict(mixsim.parse(spread)).warnings if c.kind == "quasi-static"]
+    assert len(found) == 1 and "grains of up to 4.45" in found[0]

@@ -117,6 +117,31 @@ CASES: dict[str, Broken] = {
         "'matrix' where a table is needed",
         "coating.1 is a table that takes material, thickness",
     ),
+    "spread without a diameter": grain(
+        "diameter_spread = 0.2", ".diameter_spread", "diameter_spread without a diameter", "the median"
+    ),
+    "waves without a diameter": grain(
+        'waves = "inside"', ".waves", "waves without a diameter", "give diameter"
+    ),
+    "waves in coated grains": grain(
+        f'{SIZE}\ncoating = {SILICA}\nwaves = "dipole"',
+        ".waves",
+        "waves in coated grains",
+        "spheres of one material",
+    ),
+    "waves in spheroids": grain(
+        f'{SIZE}\nshape = {{ kind = "spheroid", aspect_ratio = 2 }}\nwaves = "dipole"',
+        ".waves",
+        "waves in grains that are not spheres",
+        "spheres of one material",
+    ),
+    "word for waves": grain(
+        f'{SIZE}\nwaves = "dipoles"',
+        ".waves",
+        "unknown waves 'dipoles'",
+        "one of none, inside, dipole",
+        "dipole",
+    ),
     "no layers": grain(f"{SIZE}\ncoating = []", ".coating", "an empty list", "1 or more"),
     "layer without size": grain(
         f'{SIZE}\ncoating = {{ material = "matrix", thickness = "0 nm" }}',

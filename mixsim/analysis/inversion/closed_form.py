@@ -14,8 +14,7 @@ from numpy.typing import NDArray
 
 from mixsim.analysis.inversion.answer import Reading
 from mixsim.analysis.unknowns import Unknown
-from mixsim.mixture import Mixture
-from mixsim.mixture.mixture import Constituent
+from mixsim.mixture import Constituent, Mixture
 from mixsim.mixture.spectra import Spectrum
 
 Floats = NDArray[np.float64]
