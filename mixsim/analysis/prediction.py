@@ -15,8 +15,8 @@ from mixsim.analysis.caution import Caution
 from mixsim.analysis.cautions import cautions
 from mixsim.analysis.plain import complex_parts, plain, provenance
 from mixsim.analysis.pushed import Pushed, pushed
-from mixsim.dispersion import interpolate
-from mixsim.errors import BadInput, Fault, Refusal
+from mixsim.analysis.reach import within_tables
+from mixsim.errors import BadInput, Fault
 from mixsim.mixture import Composition, Limits, Mixture, Response
 from mixsim.observables import QUANTITIES
 from mixsim.recipe import COMMAND_LINE, Recipe
@@ -225,7 +225,7 @@ def _evaluated(recipe: Recipe, vary: tuple[Varied, ...]) -> Prediction:
     }
     composition = mixture.composition(values)
     _room(mixture, composition, vary)
-    _reach(recipe, mixture, axis)
+    within_tables(recipe, mixture, axis.omega)
     response = mixture.response(values, axis.omega)
     constituents = mixture.constituents(axis.omega)
     limits = mixture.limits(values)
@@ -235,22 +235,6 @@ def _evaluated(recipe: Recipe, vary: tuple[Varied, ...]) -> Prediction:
     return Prediction(
         recipe, rule, axis, response, limits, composition, constituents, said, magnetic, vary, unsure
     )
-
-
-def _reach(recipe: Recipe, mixture: Mixture, axis: Axis) -> None:
-    """Refuse a band that a measured table does not cover: it is never extrapolated."""
-    faults = []
-    for part in recipe.parts.values():
-        _reach(part, part.compile(), axis)
-    for name in dict.fromkeys(phase.material for phase in mixture.phases):
-        continued = recipe.schema.materials[name].extension is not None if name in recipe.tables else False
-        if (table := recipe.tables.get(name)) is not None and not continued:
-            try:
-                interpolate(axis.omega, table=table)
-            except Refusal as refusal:
-                faults.append(recipe.fault(f"materials.{name}.table", refusal.found, refusal.allowed))
-    if faults:
-        raise BadInput(faults)
 
 
 def _room(mixture: Mixture, composition: Composition, vary: tuple[Varied, ...]) -> None:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable, Iterator, Mapping
 from typing import TYPE_CHECKING, Any
 
 from mixsim.dispersion import INDEX_MODELS, TERMS, IndexModel, Term
@@ -34,7 +34,7 @@ def entry(name: str) -> str | None:
 
 
 def numbers(recipe: Recipe, *, wrapped: bool) -> str:
-    """Every number of a recipe: path, as written, in SI, and what it must be.
+    """Every number of a recipe: path, as written, in SI, and what it must be; then its measured tables.
 
     Parameters
     ----------
@@ -49,11 +49,26 @@ def numbers(recipe: Recipe, *, wrapped: bool) -> str:
         rows.append((path, leaf.written, _in_si(leaf), allowed))
     headings = ("path", "as written", "in SI", "must be")
     shown = table(headings, rows, left=4)
+    tables = "".join(f"\n\n{measured}" for measured in _tables(recipe))
     if not wrapped or max(map(len, shown.splitlines())) <= width():
-        return shown
+        return shown + tables
     beneath = table(headings[1:], [row[1:] for row in rows], left=3).splitlines()
     pairs = zip([headings[0], *recipe.leaves], beneath, strict=True)
-    return "\n".join(f"{path}\n  {line}" for path, line in pairs)
+    return "\n".join(f"{path}\n  {line}" for path, line in pairs) + tables
+
+
+def _tables(recipe: Recipe, under: str = "") -> Iterator[str]:
+    """Each measured table in a sentence: where it stands, what it covers, and what holds beyond."""
+    for name, held in recipe.tables.items():
+        material = recipe.schema.materials[name]
+        beyond = "a causal continuation" if material.extension is not None else "nothing"
+        what = "ε" if held.permeability is None else "ε and μ"
+        yield paragraph(
+            f"{under}materials.{name}.table: {material.table}, {what} at {held.omega.size} rows from "
+            f"{held.range_written}; beyond, {beyond}"
+        )
+    for name, part in recipe.parts.items():
+        yield from _tables(part, f"{under}materials.{name}.recipe.")
 
 
 def _in_si(leaf: Leaf) -> str:

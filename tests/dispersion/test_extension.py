@@ -166,6 +166,22 @@ def test_a_verdict_beyond_the_table_says_so(tmp_path: Path) -> None:
     assert "extended" not in [c.kind for c in within.warnings]
 
 
+def test_a_fit_beyond_the_table_is_refused_where_the_table_stands(tmp_path: Path) -> None:
+    written(tmp_path)
+    text = """
+        host.material = "paraffin"
+        inclusions.g = { material = "measured", volume_fraction = "10 %", contact = "insulated" }
+        materials.measured.table = "m.csv"
+        measured.readings = [{ at = "8 GHz", permittivity = "2.6 ± 0.1" }]
+        unknowns."inclusions.g.volume_fraction" = ["0 %", "30 %"]
+    """
+    with pytest.raises(BadInput, match=r"recipe:4: materials.measured.table: 8 GHz lies outside"):
+        mixsim.fit(mixsim.parse(text, folder=tmp_path))
+    continued = text + '    materials.measured.extension = "causal"'
+    fitted = mixsim.fit(mixsim.parse(continued, folder=tmp_path))
+    assert "extended" in [caution.kind for caution in fitted.warnings]
+
+
 def test_an_audit_does_not_blame_the_table_for_it(tmp_path: Path) -> None:
     written(tmp_path)
     for asked, verdict in (

@@ -241,3 +241,13 @@ def test_numbers_of_a_recipe_stand_below_their_paths_where_a_line_is_too_long(an
     assert lines[3 + 2 * list(recipe.leaves).index(answers.loading)].split()[:3] == ["10", "%", "0.1"]
     one = entries.numbers(recipe, wrapped=False).splitlines()
     assert len(one) == len(recipe.leaves) + 1
+
+
+def test_tables_of_a_recipe_stand_below_its_numbers(tmp_path: Path) -> None:
+    (tmp_path / "m.csv").write_text("# convention: exp(-iwt)\nfrequency [GHz], n\n1, 2\n2, 2\n3, 2\n")
+    text = 'host.material = "m"\nmaterials.m.table = "m.csv"\n'
+    said = entries.numbers(mixsim.parse(text, folder=tmp_path), wrapped=False)
+    assert said.endswith("materials.m.table: m.csv, ε at 3 rows from 1 GHz to 3 GHz; beyond, nothing")
+    text += 'materials.m.extension = "causal"\n'
+    said = entries.numbers(mixsim.parse(text, folder=tmp_path), wrapped=False)
+    assert " ".join(said.split()).endswith("from 1 GHz to 3 GHz; beyond, a causal continuation")

@@ -19,6 +19,7 @@ from mixsim.analysis.inversion.answer import Estimate
 from mixsim.analysis.least_squares import Fit, Loss, jacobian
 from mixsim.analysis.observed.gather import samples_of
 from mixsim.analysis.observed.samples import Sample
+from mixsim.analysis.reach import within_tables
 from mixsim.analysis.rules import applicable_rules
 from mixsim.analysis.suspicion import suspicions
 from mixsim.analysis.uncertainty.inputs import Uncertain, uncertain_leaves
@@ -138,6 +139,8 @@ def asked(
 ) -> Asked:
     """Readings and unknowns gathered and checked; as `fit`."""
     samples = samples_of(recipe, [Path(file) for file in data], noise)
+    for sample in samples:
+        within_tables(recipe, sample.mixture, sample.omega)
     model = _model(recipe, samples, _unknowns(recipe, free, prior))
     if prior:
         model = _model(recipe, samples, _felt(model))
