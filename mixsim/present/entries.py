@@ -7,7 +7,7 @@ from collections.abc import Iterable, Iterator, Mapping
 from typing import TYPE_CHECKING, Any
 
 from mixsim.dispersion import INDEX_MODELS, TERMS, IndexModel, Term
-from mixsim.mixing import RULES, Rule
+from mixsim.mixing import RULES, Rule, random_spheroid
 from mixsim.observables import QUANTITIES, Quantity
 from mixsim.parameter import Choice, Parameter
 from mixsim.present.all_words import in_all_words
@@ -82,6 +82,9 @@ def _head(name: str, kind: str, facts: Iterable[tuple[str, str]]) -> str:
 
 def _rule(rule: Rule) -> str:
     threshold = "" if rule.percolation is None else f"{rule.percolation:.4g} by volume, for spheres"
+    if rule.threshold_of is not None:
+        rods, flakes = (float(rule.threshold_of(random_spheroid(ratio))) for ratio in (10.0, 0.1))
+        threshold += f"; {rods:.2g} for random rods of 10:1, {flakes:.2g} for random flakes of 1:10"
     head = _head(
         rule.name,
         "mixing rule",
