@@ -174,7 +174,9 @@ def _materials(evidence: str, at: str) -> Rows:
     for name, content in library.definitions():
         low, high = library.band(content)
         if (not evidence or content["kind"] == evidence) and (place is None or low <= place <= high):
-            yield name, str(content["title"])
+            # by what it was held, not how close: show tells that
+            by = "; ".join(check.split(",")[0] for check in content.get("check", "none").split("; "))
+            yield name, f"{content['title']} ({content['kind']}; checked: {by})"
 
 
 def _write_material(name: str, out: str) -> None:

@@ -173,10 +173,11 @@ def _material(name: str, content: Mapping[str, Any]) -> str:
             ("is", content["title"]),
             ("kind of evidence", content["kind"]),
             ("source", " ".join(content["source"].split())),
+            ("checked against", content.get("check", "none")),
             ("holds", span),
         ],
     )
-    skip = ("title", "kind", "source", "valid")
+    skip = ("title", "kind", "source", "check", "valid")
     rows = [(path, value) for path, value in _flat(content, "") if path.split(".")[0] not in skip]
     shown = f"{head}\n\n{described(('key', 'value'), rows)}"
     words = in_all_words(name)

@@ -88,6 +88,7 @@ def _inherit(name: str, materials: Mapping[str, Any], findings: list[Finding], s
     kept = {
         key: value for key, value in base.items() if key not in _DESCRIPTIONS or not given or key in given
     }
+    kept.pop("check", None)  # it was of the material as it stood
     if given and given != ["index"]:
         own = ("static", "high_frequency", *(() if "table" in given else ("extension",)))
         kept = {key: value for key, value in kept.items() if key not in own}

@@ -274,6 +274,7 @@ class Material(Section):
     title: str = ""
     source: str = ""
     kind: Literal["published", "memory", "practice", "invented"] | None = None
+    check: str = Field(default="", description="what others say of it that it was held to, and how close")
     based_on: Name | None = None
     valid: Valid | None = None
     valid_temperature: ValidTemperature | None = None

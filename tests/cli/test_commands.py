@@ -284,6 +284,13 @@ def test_materials_are_listed_by_evidence_place_and_word(run: Run) -> None:
     ferrites = {"nickel-zinc-ferrite", "manganese-zinc-ferrite", "barium-hexaferrite"}
     assert ferrites < names("--text", "FERRITE") < every
     assert names("--text", "dry", "--at", "1 GHz") < names("--at", "1 GHz")
+    assert "nylon" in names("--text", "checked: none")
+    assert "gold" in every - names("--text", "checked: none")
+    assert "gold" in names("--text", "open table of the same fit")
+    assert "checked against: none\n" in run("show", "nylon").stdout
+    assert (
+        "checked against: open table of the same fit, 3e-4 in ε over the band" in run("show", "gold").stdout
+    )
 
 
 def test_a_material_is_drawn_over_its_band(run: Run) -> None:

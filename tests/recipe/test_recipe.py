@@ -159,6 +159,7 @@ def test_a_definition_of_the_same_name_replaces_or_is_based_on() -> None:
     based = parse('host.material = "g"\n[materials.g]\nbased_on = "gold"\npermittivity.infinity = 9.0\n')
     assert based.leaves["materials.g.permittivity.infinity"].value == 9.0
     assert len([path for path in based.leaves if "terms" in path]) > 15
+    assert based.schema.materials["g"].source and not based.schema.materials["g"].check
 
 
 def test_a_change_of_one_number_keeps_the_rest() -> None:
