@@ -16,6 +16,7 @@ from mixsim.present.plots.style import (
     STRONG,
     headed,
     legend_below,
+    log_axis,
     marker_of,
     no_loss,
     spectral_axis,
@@ -29,6 +30,7 @@ if TYPE_CHECKING:
 
 ROOM = 0.07  # of the range, left free above and below
 BEYOND = 2.0  # times the range of the mixture: what lies further out runs off the scale
+STEEP = 100.0  # times its median: greatest loss from which a logarithmic scale shows more
 FLAT = 0.35  # of its size: range of a mixture that hardly changes
 
 
@@ -60,8 +62,12 @@ def loss(axes: Axes, answer: Prediction, quantity: str = "permittivity") -> Axes
     """Draw ε″ (or μ″)."""
     _curves(axes, answer, quantity, "imag", 0.0)
     axes.set_ylabel("ε″" if quantity == "permittivity" else "μ″")
-    if not np.any(getattr(answer, quantity).imag):
+    values = getattr(answer, quantity).imag
+    if not np.any(values):
         no_loss(axes)
+    elif answer.axis.spacing == "log" and values.min() > 0.0 and values.max() > STEEP * np.median(values):
+        axes.set_ylim(values.min() / 2.0, values.max() * 2.0)
+        log_axis(axes, ordinate=True)
     return axes
 
 

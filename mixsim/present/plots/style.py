@@ -126,6 +126,21 @@ def legend_above(axes: Axes, *, columns: int = 2) -> Any:
     )
 
 
+def written_out(number: float) -> str:
+    """A number of an axis: in full, or as a power of ten where that would be long.
+
+    Examples
+    --------
+    >>> written_out(20000.0), written_out(1e7), written_out(2e-6)
+    ('20000', '10⁷', '2×10⁻⁶')
+    """
+    if 1e-4 <= abs(number) < 1e6 or number == 0.0:
+        return f"{number:g}"
+    mantissa, exponent = f"{number:.3e}".split("e")
+    power = "10" + str(int(exponent)).translate(str.maketrans("-0123456789", "⁻⁰¹²³⁴⁵⁶⁷⁸⁹"))
+    return power if float(mantissa) == 1.0 else f"{float(mantissa):g}×{power}"
+
+
 def log_ticks(axis: Axis, low: float, high: float) -> None:
     """Write the numbers of a logarithmic axis out."""
     from matplotlib.ticker import LogLocator, MaxNLocator, NullFormatter
@@ -134,7 +149,7 @@ def log_ticks(axis: Axis, low: float, high: float) -> None:
         axis.set_major_locator(MaxNLocator(5, steps=[1, 2, 5, 10]))
     else:
         axis.set_major_locator(LogLocator(subs=(1.0, 2.0, 5.0) if high < 300.0 * low else (1.0,)))
-    axis.set_major_formatter("{x:g}")
+    axis.set_major_formatter(lambda number, _: written_out(number))
     axis.set_minor_formatter(NullFormatter())
 
 

@@ -97,6 +97,17 @@ def test_a_material_alone_is_one_curve_with_its_doubt_in_view() -> None:
     assert "maxwell-garnett" not in drawn.get_suptitle()
 
 
+def test_loss_over_many_decades_is_read_on_a_logarithmic_scale() -> None:
+    """Conduction falls as 1/ω: on a linear scale only its first decade would be seen."""
+    answer = mixsim.predict(mixsim.parse(mixsim.recipe.library.alone("sea-water")))
+    above, below = figure(answer).axes
+    assert (above.get_yscale(), below.get_yscale()) == ("linear", "log")
+    low, high = below.get_ylim()
+    assert low < answer.permittivity.imag.min() and answer.permittivity.imag.max() < high
+    written = [label.get_text() for label in below.get_xticklabels()]
+    assert "10⁶" in written and not [label for label in written if "e+" in label]
+
+
 def test_a_far_limit_is_an_arrow(answers: Any) -> None:
     answer = answers.prediction("film", ("step = 0.3", "step = 30.0"))
     static, high = notes(figure(answer).axes[0])
