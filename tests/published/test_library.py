@@ -51,3 +51,14 @@ def test_an_index_that_claims_a_page_was_read_there(name: str) -> None:
     assert (content["kind"] == "published") == any(
         isinstance(check, checks.Origin) for check in checks.CHECKS.get(name, ())
     )
+
+
+@pytest.mark.parametrize("name", [name for name in library.names() if name != "vacuum"])
+def test_a_file_says_what_a_formulator_needs(name: str) -> None:
+    content = library.definition(name)
+    assert content is not None
+    assert {"density", "recipe"} & content.keys(), "grams need a density"
+    warm = " ".join((content["title"], content["source"]))
+    assert "temperature" in content or "°C" in warm or "room temperature" in warm
+    if content["kind"] == "practice":
+        assert "±" in str({key: content[key] for key in content if key not in ("title", "source")})
