@@ -103,7 +103,7 @@ def fit(
     >>> answer = mixsim.fit(recipe)
     >>> estimate = answer.estimates["inclusions.filler.volume_fraction"]
     >>> print(answer.verdict, recipe.show(estimate.path, estimate.value, estimate.std))
-    answered 19.95 ± 0.32 %
+    answered 19.95 ± 0.81 %
     """
     question = asked(recipe, data, free=free, noise=noise, prior=prior)
     fits = solved(question, starts=starts, seed=seed, loss=loss, progress=progress)

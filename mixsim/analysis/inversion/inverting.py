@@ -78,7 +78,7 @@ def invert(
     >>> answer = mixsim.invert(recipe)
     >>> estimate = answer.estimates["inclusions.filler.volume_fraction"]
     >>> print(answer.verdict, recipe.show(estimate.path, estimate.value, estimate.std))
-    answered 19.95 ± 0.45 %
+    answered 19.95 ± 0.86 %
     """
     readings = readings_of(recipe, static=static, high_frequency=high_frequency)
     unknowns = unknowns_of(recipe, free)

@@ -111,7 +111,7 @@ def judge(
     ... ''')
     >>> judgement = mixsim.judge(recipe)
     >>> print(judgement.decision, f"{judgement.pieces[0].probability:.3f}")
-    pass 1.000
+    pass 0.990
     """
     limits = limits_of(recipe)
     question = asked(recipe, data, free=free, noise=noise)
