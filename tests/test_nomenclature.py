@@ -21,6 +21,7 @@ from mixsim.dispersion import (
     step_from_pair,
     thermo_optic,
 )
+from mixsim.dispersion.laws import LAWS
 from mixsim.mixing import RULES
 
 DEVELOPERS = (Path(__file__).parents[1] / "DEVELOPERS.md").read_text(encoding="utf-8")
@@ -35,6 +36,9 @@ def formulas() -> Iterator[Callable[..., Any]]:
         yield from (route.function for route in routes if route.function is not None)
     yield from (model.function for model in INDEX_MODELS.values())
     yield from (descriptions.width_from_wavelength, interpolate, infinity_from_pair, step_from_pair)
+    yield descriptions.oscillators_from_absorption_peak
+    for law in LAWS.values():
+        yield from (law.function, law.static, law.high)
     yield from (kramers_kronig, thermo_optic.index_of_air, thermo_optic.thermo_optic_shift)
     for rule in RULES.values():
         given = (rule.function, rule.fraction_from, rule.inclusion_from)

@@ -137,9 +137,11 @@ def _listed(kind: str) -> Rows:
         yield from ((rule.name, rule.summary) for rule in RULES.values())
     elif kind == "models":
         from mixsim.dispersion import INDEX_MODELS, TERMS
+        from mixsim.dispersion.laws import LAWS
 
         yield from ((term.name, f"term: {term.summary}") for term in TERMS.values())
         yield from ((model.name, f"index: {model.summary}") for model in INDEX_MODELS.values())
+        yield from ((law.name, f"law: {law.summary}") for law in LAWS.values())
     elif kind == "materials":
         from mixsim.recipe import library
 

@@ -16,6 +16,7 @@ from mixsim.dispersion import (
     width_from_wavelength,
 )
 from mixsim.dispersion.extension import Extension
+from mixsim.dispersion.laws import LAWS
 from mixsim.mixing import RULES, log_normal_places, rule_named, value_at
 from mixsim.mixture.constituent import Constituent, Size
 from mixsim.mixture.inputs import Derived, Fixed, Input, Leafed
@@ -28,7 +29,9 @@ from mixsim.mixture.spectra import (
     Doped,
     Index,
     IndexWarming,
+    Lawful,
     Level,
+    LocalIndex,
     LocalPlasma,
     Measured,
     Spectrum,
@@ -237,6 +240,9 @@ class _Compiler:
     def _response(self, response: Any, path: str, diameter: Input | None = None) -> Spectrum:
         if response.value is not None:
             return self._pair(response, path)
+        if response.law is not None:
+            own = Leafed(f"{path.rpartition('.')[0]}.temperature")
+            return Lawful(LAWS[response.law], self._maybe("conditions.temperature") or own)
         susceptibility = self._maybe(f"{path}.susceptibility")
         level: Input = Leafed(f"{path}.infinity")
         if susceptibility is not None:
@@ -320,7 +326,14 @@ class _Compiler:
         self, dopant: str, name: str, content: Any, host: Spectrum, density: Input | None
     ) -> BoundTerm:
         by_concentration = density is not None and _wants_concentration(content)
-        implied = {"number_density": density} if by_concentration and density is not None else {}
+        implied: dict[str, Input] = {}
+        if by_concentration and density is not None:
+            implied["number_density"] = density
+        if _given(content) >= {"absorption_peak"} and content.background_index is None:
+            place = self._number(
+                f"dopants.{dopant}.terms.{name}.resonance", TERMS["lorentz"].parameters["resonance"]
+            )
+            implied["background_index"] = LocalIndex(place, host)
         bound = self._term(content, f"dopants.{dopant}.terms.{name}", implied)
         if not by_concentration or self.schema.dopants[dopant].local_field == "none":
             return bound
@@ -357,8 +370,9 @@ def _given(content: Any) -> set[str]:
 
 def _wants_concentration(content: Any) -> bool:
     """Whether a dopant's term leaves its strength to the concentration of the dopant."""
-    given = (content.plasma, content.step, content.number_density) if content.model == "lorentz" else (True,)
-    return not any(given)
+    if content.model != "lorentz":
+        return False
+    return not any((content.plasma, content.step, content.number_density, content.absorption_peak))
 
 
 def _difference(*, temperature: Any, own: Any) -> Any:

@@ -16,6 +16,7 @@ import numpy as np
 
 from mixsim.dispersion import IndexModel, Table, Term, interpolate, interpolate_permeability
 from mixsim.dispersion.extension import Extension
+from mixsim.dispersion.laws import Law
 from mixsim.dispersion.thermo_optic import index_of_air, thermo_optic_shift
 from mixsim.mixture.inputs import Fixed, Input, Values, paths_of
 
@@ -322,6 +323,42 @@ def described(spectrum: Spectrum) -> Spectrum:
     while isinstance(spectrum, Doped | Warmed):
         spectrum = spectrum.host if isinstance(spectrum, Doped) else spectrum.base
     return spectrum
+
+
+@dataclass(frozen=True, eq=False)
+class LocalIndex:
+    """Refractive index of a host where an absorber in it has its band."""
+
+    resonance: Input
+    host: Spectrum
+
+    @cached_property
+    def paths(self) -> frozenset[str]:
+        return paths_of((self.resonance, self.host))
+
+    def __call__(self, x: Values) -> Any:
+        return np.real(np.sqrt(np.asarray(self.host.at(x, self.resonance(x)), dtype=complex)))
+
+
+@dataclass(frozen=True, eq=False)
+class Lawful:
+    """A substance whose permittivity is known at every temperature."""
+
+    law: Law
+    temperature: Input
+
+    @property
+    def paths(self) -> frozenset[str]:
+        return self.temperature.paths
+
+    def at(self, x: Values, omega: Any) -> Any:
+        return self.law.function(omega, temperature=self.temperature(x))
+
+    def low(self, x: Values) -> tuple[Any, Any]:
+        return 0.0, self.law.static(temperature=self.temperature(x))
+
+    def high(self, x: Values) -> Any:
+        return self.law.high(temperature=self.temperature(x))
 
 
 def held(part: Spectrum | BoundTerm, x: Values, omega: Any, varied: frozenset[str]) -> Here:

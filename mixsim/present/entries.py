@@ -7,6 +7,7 @@ from collections.abc import Iterable, Iterator, Mapping
 from typing import TYPE_CHECKING, Any
 
 from mixsim.dispersion import INDEX_MODELS, TERMS, IndexModel, Term
+from mixsim.dispersion.laws import LAWS, Law
 from mixsim.mixing import RULES, Rule, random_spheroid
 from mixsim.observables import QUANTITIES, Quantity
 from mixsim.parameter import Choice, Parameter
@@ -25,6 +26,7 @@ def entry(name: str) -> str | None:
         (RULES, _rule),
         (TERMS, _term),
         (INDEX_MODELS, _index),
+        (LAWS, _law),
         (QUANTITIES, _quantity),
     ]
     found = [make(register[name]) for register, make in makers if name in register]
@@ -120,6 +122,14 @@ def _term(term: Term) -> str:
         [("for", term.summary), ("equation", term.equation), *ways, ("source", term.source)],
     )
     return f"{head}\n\n{_parameters(term.parameters.values())}"
+
+
+def _law(law: Law) -> str:
+    return _head(
+        law.name,
+        "law of a substance at its temperature",
+        [("for", law.summary), ("equation", law.equation), ("source", law.source)],
+    )
 
 
 def _index(model: IndexModel) -> str:

@@ -81,12 +81,14 @@ def _dopant(path: str, dopant: Mapping[str, Any], raw: Mapping[str, Any]) -> Ite
         not isinstance(term, Mapping) or str(term.get("model")) not in TERMS for term in terms.values()
     )
     for name, content in tables(dopant, "terms"):
-        if content.get("model") == "lorentz" and not {"plasma", "step", "number_density"} & set(content):
+        if content.get("model") == "lorentz" and not (
+            {"plasma", "step", "number_density", "absorption_peak"} & set(content)
+        ):
             if not present:
                 allowed = f"give {', '.join(CONCENTRATIONS)} of the dopant, or plasma or step of the term"
                 yield f"{path}.terms.{name}", Refusal("neither concentration nor plasma frequency", allowed)
             used = True
-        yield from of_term(f"{path}.terms.{name}", content, ("number_density",))
+        yield from of_term(f"{path}.terms.{name}", content, ("number_density", "background_index"))
     if present and not used:
         found = f"{present[0]} is used by none of the terms"
         yield (

@@ -36,6 +36,10 @@ def of_material(name: str, material: Mapping[str, Any]) -> Iterator[Finding]:
     if "extension" in material and "table" not in material and not unknown_base:
         yield f"{path}.extension", Refusal("extension without table", "it continues a measured table")
     yield from _warming(path, material)
+    response = table(material, "permittivity")
+    if "law" in response and "temperature" not in material and "based_on" not in material:
+        found, allowed = "law without temperature", "say at which temperature the substance usually is"
+        yield f"{path}.permittivity", Refusal(found, allowed)
     yield from _index(f"{path}.index", table(material, "index"))
 
 
@@ -55,6 +59,9 @@ def _warming(path: str, material: Mapping[str, Any]) -> Iterator[Finding]:
 
 def _response(path: str, quantity: str, response: Mapping[str, Any]) -> Iterator[Finding]:
     """ε or μ: a data sheet's pair, or a level and terms."""
+    if "law" in response:
+        yield from _law(path, quantity, response)
+        return
     if "value" in response:
         yield from _pair(path, response)
         return
@@ -64,6 +71,15 @@ def _response(path: str, quantity: str, response: Mapping[str, Any]) -> Iterator
             allowed = "a data sheet's pair has value, loss_tangent, at"
             yield f"{path}.{key}", Refusal(f"{key} without value", allowed)
     yield from _terms(path, quantity, response)
+
+
+def _law(path: str, quantity: str, response: Mapping[str, Any]) -> Iterator[Finding]:
+    """A substance by its law, alone."""
+    if quantity != "permittivity":
+        yield f"{path}.law", Refusal("a law of the permeability", "laws are for permittivities")
+    for key in response:
+        if key != "law":
+            yield f"{path}.{key}", Refusal(f"{key} beside law", "a law stands alone")
 
 
 def _index(path: str, index: Mapping[str, Any]) -> Iterator[Finding]:
@@ -125,6 +141,13 @@ def _terms(path: str, quantity: str, response: Mapping[str, Any]) -> Iterator[Fi
         yield f"{path}.plasma", Refusal("a plasma frequency that no term shares", allowed)
 
 
+def _felt(implied: tuple[str, ...], given: set[str]) -> set[str]:
+    """Of what stands elsewhere, that which a term of these parameters needs."""
+    if "absorption_peak" in given:
+        return {"background_index"} & set(implied) - given
+    return set() if given & {"plasma", "step"} else set(implied) - {"background_index"}
+
+
 def of_term(path: str, content: Mapping[str, Any], implied: tuple[str, ...]) -> Iterator[Finding]:
     """Contradictions and gaps of one term; `implied` are parameters that stand elsewhere than in it."""
     term = TERMS.get(str(content.get("model")))
@@ -132,7 +155,7 @@ def of_term(path: str, content: Mapping[str, Any], implied: tuple[str, ...]) -> 
         return
     given = {key for key in content if key in term.parameters}
     try:
-        term.resolve({*given, *(name for name in implied if not given & {"plasma", "step"})})
+        term.resolve({*given, *_felt(implied, given)})
     except Refusal as refusal:
         yield path, refusal
     if "resonance" not in given:

@@ -12,6 +12,7 @@ from typing import TYPE_CHECKING, Annotated, Any, Literal
 from pydantic import BaseModel, ConfigDict, Discriminator, Field, Tag, create_model
 
 from mixsim.dispersion import INDEX_MODELS, TERMS
+from mixsim.dispersion.laws import LAWS
 from mixsim.mixing import RULES
 from mixsim.parameter import Choice, Parameter
 from mixsim.recipe.leaves import Ends, Number, Span
@@ -244,6 +245,9 @@ class Response(Section):
     susceptibility: Susceptibility | None = Field(default=None, description="that level less one")
     plasma: Spectral | None = Field(default=None, description="shared by terms that give only strength")
     terms: dict[Name, Term] = {}
+    law: Literal[tuple(LAWS)] | None = Field(  # type: ignore[valid-type]
+        default=None, description="substance known at every temperature"
+    )
     value: Positive | None = Field(default=None, description="of a data sheet, at one frequency")
     loss_tangent: NotNegative | None = Field(default=None, description="beside value")
     at: Spectral | None = Field(default=None, description="the frequency of the two")

@@ -303,6 +303,14 @@ _ALL: Final = (
         shown=("ppm/K",),
     ),
     Dimension(
+        "absorption",
+        "1/m",
+        "an absorption coefficient, base e",
+        "10 1/cm",
+        (Unit("1/m", aliases=("m^-1",)), Unit("1/cm", 1e2, aliases=("cm^-1",)), Unit("1/mm", 1e3)),
+        shown=("1/cm",),
+    ),
+    Dimension(
         "mass",
         "kg",
         "a mass",

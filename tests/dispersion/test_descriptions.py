@@ -18,6 +18,7 @@ from mixsim.units import (
 
 PLASMA, RESONANCE, DAMPING, MASS, TIME = 2.4e15, 3.1e15, 1.8e14, 0.35, 8.27e-12
 DENSITY = PLASMA**2 * VACUUM_PERMITTIVITY * ELECTRON_MASS / ELEMENTARY_CHARGE**2
+LIGHT = 299_792_458.0
 LINE = {"resonance": RESONANCE, "damping": DAMPING}
 
 SHAPES = {
@@ -38,6 +39,19 @@ SAME = [
     ("lorentz", {"plasma": PLASMA, **LINE}),
     ("lorentz", {"plasma": 2 * PLASMA, "strength": 0.25, **LINE}),
     ("lorentz", {"step": (PLASMA / RESONANCE) ** 2, **LINE}),
+    (
+        "lorentz",
+        {"absorption_peak": PLASMA**2 / (LIGHT * 1.5 * DAMPING), "background_index": 1.5, **LINE},
+    ),
+    (
+        "gaussian",
+        {
+            "absorption_peak": 0.3 * RESONANCE / (LIGHT * 1.5),
+            "background_index": 1.5,
+            "resonance": RESONANCE,
+            "width": 4e14,
+        },
+    ),
     ("lorentz", {"number_density": DENSITY, **LINE}),
     ("lorentz", {"number_density": 4 * DENSITY, "strength": 0.25, **LINE}),
     ("drude", {"plasma": PLASMA, "damping": DAMPING}),

@@ -290,9 +290,22 @@ GAUSSIAN = Term(
     name="gaussian",
     function=gaussian,
     low=gaussian_low,
-    canonical={name: (Route(name),) for name in ("amplitude", "resonance", "width")},
+    canonical={
+        "amplitude": (
+            Route("amplitude"),
+            Route(
+                "absorption_peak",
+                descriptions.amplitude_from_absorption_peak,
+                also=("resonance", "background_index"),
+            ),
+        ),
+        "resonance": (Route("resonance"),),
+        "width": (Route("width"),),
+    },
     parameters=by_name(
         not_negative("amplitude", "number", "height of the imaginary part"),
+        not_negative("absorption_peak", "absorption", "peak absorption of a weak band, base e"),
+        positive("background_index", "number", "index of the medium at the band, beside absorption_peak"),
         positive("resonance", "spectral", "centre of the band"),
         positive("width", "rate", "full width at half maximum"),
     ),
