@@ -34,7 +34,8 @@ def steps() -> list[tuple[str, list[str]]]:
 
 
 def test_tour(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
-    (tmp_path / "examples").symlink_to(ROOT / "examples")
+    for folder in ("configs", "examples"):
+        (tmp_path / folder).symlink_to(ROOT / folder)
     monkeypatch.chdir(tmp_path)
     assert len(steps()) >= 7
     for command, shown in steps():

@@ -111,3 +111,16 @@ def test_syntactic_foam_is_lighter_and_thinner_than_its_resin() -> None:
     bare = {"inclusions.bubble.coating.thickness": 1e-12}
     with_walls, without = at("syntactic-foam", omega), foam.response(bare, omega).permittivity
     assert np.all((without.real > 1.0) & (without.real < with_walls.real) & (with_walls.real < 2.2))
+
+
+def test_stable_ceramic_holds_still_where_the_drifts_add_to_nothing() -> None:
+    """Where logarithms add, so do drifts: 100 ppm/K of one against 1600 ppm/K of the other, f = 1/17."""
+    recipe = mixsim.load(FOLDER / "temperature-stable-ceramic.toml")
+    loading = np.array([[0.0], [1 / 17], [0.1]])
+    swept = recipe.compile().response(
+        {"inclusions.calcium.volume_fraction": loading, "conditions.temperature": np.array([297.15, 299.15])},
+        np.array([2e9 * np.pi]),
+    )
+    cold, warm = swept.permittivity[..., 0].real.T
+    drift = np.log(warm / cold) / 2.0 * 1e6  # ppm/K about 25 °C
+    assert drift == pytest.approx([100.0, 0.0, -70.0], abs=0.05)
