@@ -87,7 +87,7 @@ class Compilation:
     tolerance: float
 
     def words(self, name: str) -> str:
-        span = f"{300 / self.high * 1e3:.2g} to {300 / self.low * 1e3:.2g} GHz"
+        span = f"{300 / self.high * 1e3:.2g} to {300 / self.low * 1e3:.4g} GHz"
         return f"open compilation, {self.tolerance:.0%} in ε from {span}"
 
     def deviation(self, name: str) -> float:
@@ -233,6 +233,7 @@ CHECKS: dict[str, tuple[Check, ...]] = {
         Compilation(("main", "H2O", "Segelstein"), 5e3, 3e6, 0.03),
         Elsewhere("standard static level, 0.1", "test_water_static"),
     ),
+    "water-terahertz": (Compilation(("main", "H2O", "Segelstein"), 300.0, 3e6, 0.11),),
     "water-visible": (
         *_crystal("H2O", "Daimon-20.0C"),
         Elsewhere("standard index, 3e-5", "test_water_index"),
